@@ -1,6 +1,6 @@
 module isofacet
 
-go 1.26
+go 1.26.0
 
 require (
 	github.com/VividCortex/ewma v1.2.0
