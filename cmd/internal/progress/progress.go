@@ -1,0 +1,153 @@
+package progress
+
+import (
+	"io"
+	"os"
+	"sync"
+	"sync/atomic"
+	"time"
+
+	"github.com/vbauerster/mpb/v8"
+	"github.com/vbauerster/mpb/v8/decor"
+	"golang.org/x/term"
+)
+
+// A Mode is when progress is shown.
+type Mode string
+
+const (
+	Auto   Mode = "auto"   // on a terminal
+	Always Mode = "always" // on anything
+	Never  Mode = "never"
+)
+
+// delay is how long the display stays quiet after it was made. Work that ends
+// sooner needs no bar, and a bar that flashes by only disturbs.
+const delay = 300 * time.Millisecond
+
+// batch is the smallest step that reaches a bar, see the cost above.
+const batch = 4096
+
+// Shown reports whether progress is drawn on w under mode.
+func Shown(mode Mode, w io.Writer) bool {
+	switch mode {
+	case Always:
+		return true
+	case Never:
+		return false
+	}
+	f, ok := w.(*os.File)
+	return ok && term.IsTerminal(int(f.Fd()))
+}
+
+// A Display holds the bars of one run of the program.
+type Display struct {
+	w     io.Writer
+	shown bool
+	start time.Time
+
+	mu   sync.Mutex
+	bars *mpb.Progress // nil until the first bar stands
+	bar  *mpb.Bar      // the bar of the stage at work, nil between stages
+}
+
+// New returns a display on w that draws bars only if shown.
+func New(w io.Writer, shown bool) *Display {
+	return &Display{w: w, shown: shown, start: time.Now()}
+}
+
+// Stage begins a stage of work. It returns a function that takes how much is
+// done of how much (total 0 where it is not known) and one that ends the stage.
+// The first is nil when nothing is shown, so that the work need not count.
+func (d *Display) Stage(name string) (report func(done, total int), finish func()) {
+	if !d.shown {
+		return nil, func() {}
+	}
+	var last atomic.Int64
+	report = func(done, total int) {
+		before := last.Load()
+		if done != total && int64(done)-before < batch || !last.CompareAndSwap(before, int64(done)) {
+			return
+		}
+		if time.Since(d.start) < delay {
+			return
+		}
+		d.draw(name, int64(done), int64(total))
+	}
+	return report, d.endStage
+}
+
+// draw brings the bar of the stage at work to done of total.
+func (d *Display) draw(name string, done, total int64) {
+	d.mu.Lock()
+	defer d.mu.Unlock()
+	if d.bars == nil {
+		d.bars = mpb.New(mpb.WithOutput(d.w), mpb.WithAutoRefresh(), mpb.WithWidth(64))
+	}
+	if d.bar == nil {
+		d.bar = d.bars.AddBar(0,
+			mpb.BarRemoveOnComplete(),
+			mpb.PrependDecorators(decor.Name(name, decor.WC{W: 16, C: decor.DindentRight})),
+			mpb.AppendDecorators(decor.Any(share)))
+	}
+	d.bar.SetTotal(total, false)
+	d.bar.SetCurrent(done)
+}
+
+// share prints how far a bar has come: a percentage where the total is known.
+func share(s decor.Statistics) string {
+	if s.Total <= 0 {
+		return " " + thousands(s.Current)
+	}
+	return " " + thousands(s.Current*100/s.Total) + " %"
+}
+
+// thousands writes n with a blank between groups of three digits.
+func thousands(n int64) string {
+	var digits []byte
+	for i := 0; n > 0 || i == 0; i++ {
+		if i > 0 && i%3 == 0 {
+			digits = append(digits, ' ')
+		}
+		digits = append(digits, byte('0'+n%10))
+		n /= 10
+	}
+	for i, j := 0, len(digits)-1; i < j; i, j = i+1, j-1 {
+		digits[i], digits[j] = digits[j], digits[i]
+	}
+	return string(digits)
+}
+
+// endStage takes the bar away.
+func (d *Display) endStage() {
+	d.mu.Lock()
+	defer d.mu.Unlock()
+	if d.bar != nil {
+		d.bar.Abort(true)
+		d.bar.Wait()
+		d.bar = nil
+	}
+}
+
+// Write writes text above the bar that stands, or straight to the output.
+func (d *Display) Write(text []byte) (int, error) {
+	d.mu.Lock()
+	defer d.mu.Unlock()
+	if d.bars != nil {
+		return d.bars.Write(text)
+	}
+	return d.w.Write(text)
+}
+
+// Close takes away what is drawn; afterwards the display only passes text on.
+// Closing twice is harmless.
+func (d *Display) Close() {
+	d.endStage()
+	d.mu.Lock()
+	defer d.mu.Unlock()
+	d.shown = false
+	if d.bars != nil {
+		d.bars.Wait()
+		d.bars = nil
+	}
+}
