@@ -1,0 +1,175 @@
+package triangulate
+
+import (
+	"github.com/paulmach/orb"
+
+	"isofacet/triangulate/exact"
+)
+
+// Place tells how a position lies in a mesh.
+type Place uint8
+
+// The places. Edges and vertices on the outline belong to the surface.
+const (
+	Outside  Place = iota // in no triangle
+	Inside                // strictly inside one triangle
+	OnEdge                // on an edge, between its two vertices
+	OnVertex              // at a vertex
+)
+
+// String returns the word that outputs use.
+func (p Place) String() string {
+	return [...]string{"outside", "inside", "edge", "vertex"}[p]
+}
+
+// Location is the exact place of a position in a mesh.
+type Location struct {
+	Place Place
+	// Triangle owns the position: the one that holds p + (e, e²) for an
+	// infinitesimal e > 0; if that is outside, the first one met turning
+	// counter-clockwise about p. NoTriangle outside.
+	Triangle Triangle
+	// Edge is, on an edge, the owner's half-edge along it; at a vertex, the
+	// owner's half-edge that starts there; else NoHalfEdge.
+	Edge HalfEdge
+	// Vertex is the vertex at the position, if there is one, else NoVertex.
+	Vertex Vertex
+}
+
+var nowhere = Location{Outside, NoTriangle, NoHalfEdge, NoVertex}
+
+// Locator finds positions in a mesh. It remembers where it was and may be used
+// by one goroutine at a time.
+type Locator struct {
+	m    *Mesh
+	last Triangle
+	turn uint32 // which edge is tried first; see walk
+}
+
+// Locator returns a new locator. The first one of a mesh makes an index of
+// about 2 bytes a vertex.
+func (m *Mesh) Locator() *Locator {
+	m.startsOnce.Do(func() { m.starts = newStarts(m) })
+	return &Locator{m: m}
+}
+
+// Locate returns the place of p, which must be finite; every decision is exact,
+// so it does not depend on what was asked before.
+//
+// Expected time O(1) for evenly spread vertices; O(sqrt n) where they crowd.
+func (l *Locator) Locate(p orb.Point) Location {
+	if len(l.m.half) == 0 {
+		return nowhere
+	}
+	return l.walk(l.m.starts.near(p), p)
+}
+
+// LocateNext is Locate for a position that is likely near the one before: it
+// walks from there.
+func (l *Locator) LocateNext(p orb.Point) Location {
+	if len(l.m.half) == 0 {
+		return nowhere
+	}
+	return l.walk(l.last, p)
+}
+
+// walk goes from t towards p, each time across an edge that has p strictly on
+// its other side.
+//
+// In a Delaunay mesh that ends whichever edge is tried first; with constrained
+// edges it could go round in circles for ever if the choice were fixed, so the
+// first edge to try changes from step to step (Devillers, Pion & Teillaud
+// 2002, the remembering stochastic walk).
+func (l *Locator) walk(t Triangle, p orb.Point) Location {
+	T, pos := l.m.half, l.m.pos
+	h := t.HalfEdge(0)
+	came := NoHalfEdge // the edge that we came over, p is left of it
+step:
+	for {
+		if came == NoHalfEdge {
+			l.turn = l.turn*1664525 + 1013904223
+			h = h.Triangle().HalfEdge(int(l.turn>>16) % 3)
+		}
+		onEdge, zeros := NoHalfEdge, 0
+		e := h
+		for range 3 {
+			if e != came {
+				o, d := pos[T[e].origin], pos[T[e.next()].origin]
+				switch exact.OrientXY(o[0], o[1], d[0], d[1], p[0], p[1]) {
+				case -1:
+					twin := T[e].twin
+					if twin == NoHalfEdge {
+						l.last = e.Triangle()
+						return nowhere
+					}
+					came = twin
+					l.turn = l.turn*1664525 + 1013904223
+					if h = twin.next(); l.turn>>31 == 1 {
+						h = twin.prev()
+					}
+					continue step
+				case 0:
+					zeros++
+					if onEdge == NoHalfEdge || e.next() != onEdge {
+						// The later of two in turn starts at the vertex they share.
+						onEdge = e
+					}
+				}
+			}
+			e = e.next()
+		}
+		l.last = h.Triangle()
+		switch zeros {
+		case 0:
+			return Location{Inside, h.Triangle(), NoHalfEdge, NoVertex}
+		case 1:
+			return l.m.onEdge(onEdge)
+		}
+		return l.m.onVertex(onEdge)
+	}
+}
+
+// ahead tells whether p + (e, e²), e infinitesimal, lies to the left of a line
+// through p in the direction (dx, dy).
+func ahead(dx, dy float64) bool { return dy < 0 || dy == 0 && dx > 0 }
+
+// onEdge is the location of a position between the ends of h.
+func (m *Mesh) onEdge(h HalfEdge) Location {
+	o, d := m.pos[m.Origin(h)], m.pos[m.Dest(h)]
+	// The signs of differences are exact in floating point.
+	if twin := m.half[h].twin; twin != NoHalfEdge && !ahead(d[0]-o[0], d[1]-o[1]) {
+		h = twin
+	}
+	return Location{OnEdge, h.Triangle(), h, NoVertex}
+}
+
+// onVertex is the location at the origin of h.
+func (m *Mesh) onVertex(h HalfEdge) Location {
+	v := m.half[h].origin
+	p := m.pos[v]
+	first := m.firstClockwise(h)
+	for e := first; ; {
+		a, b := m.pos[m.Dest(e)], m.pos[m.Apex(e)]
+		if ahead(a[0]-p[0], a[1]-p[1]) && ahead(p[0]-b[0], p[1]-b[1]) {
+			return Location{OnVertex, e.Triangle(), e, v}
+		}
+		e = m.half[e.prev()].twin
+		if e == NoHalfEdge || e == first {
+			return Location{OnVertex, first.Triangle(), first, v}
+		}
+	}
+}
+
+// firstClockwise turns clockwise about the origin of h until the outside lies
+// beyond, or returns h when there is no outside.
+func (m *Mesh) firstClockwise(h HalfEdge) HalfEdge {
+	for e := h; ; {
+		twin := m.half[e].twin
+		if twin == NoHalfEdge {
+			return e
+		}
+		if e = twin.next(); e == h {
+			return h
+		}
+	}
+}

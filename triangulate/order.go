@@ -1,0 +1,104 @@
+package triangulate
+
+import (
+	"iter"
+	"slices"
+
+	"isofacet/triangulate/exact"
+)
+
+// byPosition lists the vertices in (x, y) order.
+func (m *Mesh) byPosition() []Vertex {
+	order := make([]Vertex, len(m.pos))
+	for i := range order {
+		order[i] = Vertex(i)
+	}
+	slices.SortFunc(order, func(a, b Vertex) int { return exact.CompareXY(m.pos[a], m.pos[b]) })
+	return order
+}
+
+// Ordered returns the vertices in (x, y) order, the order in which they are
+// written. Time O(n log n).
+func (m *Mesh) Ordered() []Vertex { return m.byPosition() }
+
+// Rank returns, for every vertex, its place in (x, y) order. Time O(n log n).
+func (m *Mesh) Rank() []int32 {
+	rank := make([]int32, len(m.pos))
+	for i, v := range m.byPosition() {
+		rank[v] = int32(i)
+	}
+	return rank
+}
+
+// CanonicalTriangles ranges over the triangles in the order in which they are
+// written, each with its corners: the smallest corner in (x, y) order first,
+// counter-clockwise, triangles sorted by their corners' ranks. The sequence
+// depends on the set of positions alone. rank is what Rank returns.
+// Time O(n log n), 16 bytes a triangle.
+func (m *Mesh) CanonicalTriangles(rank []int32) iter.Seq2[Triangle, [3]Vertex] {
+	type keyed struct {
+		t Triangle
+		r [3]int32
+	}
+	ts := make([]keyed, m.NumTriangles())
+	for t := range m.Triangles() {
+		c := m.Canonical(t, rank)
+		ts[t] = keyed{t, [3]int32{rank[c[0]], rank[c[1]], rank[c[2]]}}
+	}
+	slices.SortFunc(ts, func(a, b keyed) int { return slices.Compare(a.r[:], b.r[:]) })
+	return func(yield func(Triangle, [3]Vertex) bool) {
+		for _, k := range ts {
+			if !yield(k.t, m.Canonical(k.t, rank)) {
+				return
+			}
+		}
+	}
+}
+
+// Canonical returns the corners of t counter-clockwise from the smallest in
+// (x, y) order.
+func (m *Mesh) Canonical(t Triangle, rank []int32) [3]Vertex {
+	c := m.Corners(t)
+	switch {
+	case rank[c[1]] < rank[c[0]] && rank[c[1]] < rank[c[2]]:
+		return [3]Vertex{c[1], c[2], c[0]}
+	case rank[c[2]] < rank[c[0]] && rank[c[2]] < rank[c[1]]:
+		return [3]Vertex{c[2], c[0], c[1]}
+	}
+	return c
+}
+
+// Hull returns the vertices on the boundary of the convex hull, those in the
+// middle of a straight side included, counter-clockwise from the smallest in
+// (x, y) order. When all vertices lie on one line it returns them in (x, y)
+// order. Time O(n).
+func (m *Mesh) Hull() []Vertex {
+	if len(m.half) == 0 {
+		return m.byPosition()
+	}
+	start := NoHalfEdge
+	for h := range HalfEdge(len(m.half)) {
+		if m.Twin(h) == NoHalfEdge &&
+			(start == NoHalfEdge || exact.CompareXY(m.pos[m.Origin(h)], m.pos[m.Origin(start)]) < 0) {
+			start = h
+		}
+	}
+	var hull []Vertex
+	for h := start; ; {
+		hull = append(hull, m.Origin(h))
+		h = m.nextOutside(h)
+		if h == start {
+			return hull
+		}
+	}
+}
+
+// nextOutside returns the half-edge after the outline's h, counter-clockwise
+// round the surface.
+func (m *Mesh) nextOutside(h HalfEdge) HalfEdge {
+	h = h.next()
+	for m.half[h].twin != NoHalfEdge {
+		h = m.half[h].twin.next()
+	}
+	return h
+}
