@@ -73,7 +73,7 @@ func BenchmarkInCircle(b *testing.B) {
 			return InCircleXY(q[0], q[1], q[2], q[3], q[4], q[5], q[6], q[7])
 		})
 		run("tied", func(q *[8]float64) int {
-			return InCircleTied([2]float64{q[0], q[1]}, [2]float64{q[2], q[3]}, [2]float64{q[4], q[5]}, [2]float64{q[6], q[7]})
+			return InCircleTiedXY(q[0], q[1], q[2], q[3], q[4], q[5], q[6], q[7])
 		})
 		run("slow", func(q *[8]float64) int {
 			return inCircleSlow(q[0], q[1], q[2], q[3], q[4], q[5], q[6], q[7])

@@ -4,12 +4,13 @@
 // In go coordinates as float64, out come signs: Orient tells on which side of a
 // line a point lies, InCircle whether a point lies in a circle through three
 // others, InCircleTied the same with cocircular ties settled by coordinates.
-// Sum adds numbers and products exactly and rounds once.
+// Area2 is the area of a triangle, right to the last places for the thinnest
+// sliver. Sum adds numbers and products exactly and rounds once.
 //
-//	a, b, c := [2]float64{430000, 5600000}, [2]float64{430000.1, 5600000}, [2]float64{430000.1, 5600000.1}
-//	d := [2]float64{430000, 5600000.1}
+//	a, b := [2]float64{430000.25, 5600000.25}, [2]float64{430000.5, 5600000.25}
+//	c, d := [2]float64{430000.5, 5600000.5}, [2]float64{430000.25, 5600000.5}
 //	exact.Orient(a, b, c)          // +1: a, b, c turn left
-//	exact.InCircle(a, b, c, d)     // 0: the four are on one circle as float64
+//	exact.InCircle(a, b, c, d)     // 0: the four are on one circle
 //	exact.InCircleTied(a, b, c, d) // +1 or -1, the same for every caller
 //
 //	var s exact.Sum

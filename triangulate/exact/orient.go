@@ -90,21 +90,26 @@ func compare(p, q float64) int {
 	return 0
 }
 
-// orientExpansion sums the six products of the expanded determinant
+// orientExpansion is the sign of the determinant as an expansion.
+func orientExpansion(ax, ay, bx, by, cx, cy float64) int {
+	var det [12]float64
+	n := orientTerms(&det, ax, ay, bx, by, cx, cy)
+	return signOf(det[n-1])
+}
+
+// orientTerms sums the six products of the expanded determinant
 //
 //	ax by - ay bx + bx cy - by cx + cx ay - cy ax
 //
-// as an expansion of at most twelve terms.
-func orientExpansion(ax, ay, bx, by, cx, cy float64) int {
+// as an expansion of at most twelve terms and returns their number.
+func orientTerms(det *[12]float64, ax, ay, bx, by, cx, cy float64) int {
 	var ab, bc, ca [4]float64
 	var abc [8]float64
-	var det [12]float64
 	crossProduct(&ab, ax, ay, bx, by)
 	crossProduct(&bc, bx, by, cx, cy)
 	crossProduct(&ca, cx, cy, ax, ay)
 	n := addExpansions(abc[:], ab[:], bc[:])
-	n = addExpansions(det[:], abc[:n], ca[:])
-	return signOf(det[n-1])
+	return addExpansions(det[:], abc[:n], ca[:])
 }
 
 // CompareXY orders points by x, then y: -1 if a comes before b, +1 if after, 0 if

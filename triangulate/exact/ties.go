@@ -22,10 +22,16 @@ package exact
 // Source: Edelsbrunner and Mücke 1990 for the idea, Devillers and Teillaud 2011
 // for perturbing the lift only.
 func InCircleTied(a, b, c, d [2]float64) int {
-	if s := InCircleXY(a[0], a[1], b[0], b[1], c[0], c[1], d[0], d[1]); s != 0 {
+	return InCircleTiedXY(a[0], a[1], b[0], b[1], c[0], c[1], d[0], d[1])
+}
+
+// InCircleTiedXY is InCircleTied on loose coordinates, which travel in registers:
+// arrays go through memory, which costs more than the filter.
+func InCircleTiedXY(ax, ay, bx, by, cx, cy, dx, dy float64) int {
+	if s := InCircleXY(ax, ay, bx, by, cx, cy, dx, dy); s != 0 {
 		return s
 	}
-	return tie(a, b, c, d)
+	return tie([2]float64{ax, ay}, [2]float64{bx, by}, [2]float64{cx, cy}, [2]float64{dx, dy})
 }
 
 //go:noinline
