@@ -1,0 +1,141 @@
+package grid
+
+import (
+	"context"
+	"fmt"
+	"math"
+	"runtime"
+	"sync/atomic"
+
+	"golang.org/x/sync/errgroup"
+
+	"isofacet/interp"
+	"isofacet/triangulate"
+)
+
+// Show says what of a surface a raster shows.
+type Show uint8
+
+// What can be shown.
+const (
+	Value           Show = iota // the interpolated value
+	Slope                       // rise over run of the triangle that owns the node
+	DownhillAzimuth             // where water would run, degrees clockwise from north; no-data on a flat
+)
+
+// Options says what to show and how to work.
+type Options struct {
+	Show Show
+	// Workers is the largest number of goroutines; 0 means one per CPU. It
+	// never changes a bit of the result.
+	Workers int
+	// Progress, when not nil, is told from several goroutines how many of the
+	// triangles are done.
+	Progress func(done, total int)
+}
+
+// Fill returns s, or its slope or azimuth, at every node of spec. Nodes outside
+// the surface are NaN; a node on the outline is inside.
+//
+// Every node is written once, by the triangle that owns it (see
+// triangulate.Location), with exactly the bits that s.Value returns there, for
+// any number of workers.
+//
+// It returns the error of spec.Validate, or ctx.Err() with a nil grid if ctx
+// ends first. Call spec.Check first where the size comes from outside: the
+// values take 8 bytes a node.
+//
+// Time O(nodes + triangles x rows that each spans).
+func Fill(ctx context.Context, spec Spec, s *interp.Surface, opt Options) (*Grid, error) {
+	g, err := newUnset(spec)
+	if err != nil {
+		return nil, err
+	}
+	workers := opt.Workers
+	if workers <= 0 {
+		workers = runtime.GOMAXPROCS(0)
+	}
+	if err := g.setNoData(ctx, workers); err != nil {
+		return nil, err
+	}
+	f := newScan(g, s, opt.Show)
+	total := s.Mesh().NumTriangles()
+	var next, done atomic.Int64
+	group, ctx := errgroup.WithContext(ctx)
+	for range workers {
+		group.Go(func() error {
+			for {
+				lo := int(next.Add(trianglesAtOnce)) - trianglesAtOnce
+				if lo >= total {
+					return nil
+				}
+				hi := min(lo+trianglesAtOnce, total)
+				for t := lo; t < hi; t++ {
+					f.triangle(triangulate.Triangle(t))
+				}
+				if err := ctx.Err(); err != nil {
+					return err
+				}
+				if opt.Progress != nil {
+					opt.Progress(int(done.Add(int64(hi-lo))), total)
+				}
+			}
+		})
+	}
+	if err := group.Wait(); err != nil {
+		return nil, err
+	}
+	return g, nil
+}
+
+// trianglesAtOnce is how many neighbouring triangles a worker takes at a time:
+// enough to make taking them cheap, few enough to share out a small mesh.
+const trianglesAtOnce = 4096
+
+// newUnset is New without the no-data.
+func newUnset(spec Spec) (*Grid, error) {
+	if err := spec.Validate(); err != nil {
+		return nil, err
+	}
+	if spec.NumNodes() > math.MaxInt/8 {
+		return nil, spec.Check(math.MaxInt64 / 8)
+	}
+	return &Grid{Spec: spec, Values: make([]float64, spec.NumNodes())}, nil
+}
+
+// setNoData makes every value NaN, in parallel: touching fresh memory costs
+// more than writing it.
+func (g *Grid) setNoData(ctx context.Context, workers int) error {
+	n := len(g.Values)
+	var group errgroup.Group
+	for w := range workers {
+		group.Go(func() error {
+			part := g.Values[w*n/workers : (w+1)*n/workers]
+			for len(part) > 0 {
+				if err := ctx.Err(); err != nil {
+					return err
+				}
+				k := min(len(part), 1<<20)
+				for i := range part[:k] {
+					part[i] = math.NaN()
+				}
+				part = part[k:]
+			}
+			return nil
+		})
+	}
+	return group.Wait()
+}
+
+// String returns the word that options use.
+func (s Show) String() string {
+	switch s {
+	case Value:
+		return "value"
+	case Slope:
+		return "slope"
+	case DownhillAzimuth:
+		return "downhill-azimuth"
+	}
+	return fmt.Sprintf("Show(%d)", uint8(s))
+}
