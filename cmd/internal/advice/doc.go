@@ -1,0 +1,32 @@
+// Package advice looks at a triangulated set of readings and suggests settings: a
+// cell for rasters, an interval for isolines, a limit for the length of edges.
+//
+//	spacing := advice.Spacing(mesh)                  // 4.31
+//	cell := advice.Cell(spacing)                     // 2, "..."
+//	interval := advice.Interval(surface.Z())         // 0.5, "..."
+//	edge := advice.MaxEdge(spacing)                  // 10, "..."
+//	share := advice.LongOutline(mesh, edge.Value.Float64()) // 0.07
+//
+// # Conventions
+//
+// The spacing is the median length of the edges of the triangulation: on a square
+// lattice its step, elsewhere the distance to a usual neighbour. Long edges round
+// a concave outline, or between two dense parts, do not move it.
+//
+// Suggestions are 1, 2 or 5 times a power of ten. They are suggestions: nothing
+// uses one unless the user asks for it.
+//
+// # Guarantees
+//
+// Every number is a function of the set of positions and values: neither the order
+// of the readings nor the number of threads changes a bit of it.
+//
+// # Cost
+//
+// A pass over the edges and a selection, some 50 ns a vertex; 24 bytes a vertex
+// while it lasts.
+//
+// The rules of thumb (a cell of a half to a third of the spacing, five to ten
+// isolines across a site, edges of at most two to five times the spacing) are
+// common practice.
+package advice
