@@ -1,17 +1,13 @@
 package samples
 
-import (
-	"embed"
-	"io/fs"
-)
+import "embed"
 
 //go:generate go run ./internal/write
 
-//go:embed gravel-pit landfill
-var embedded embed.FS
-
 // FS holds every file listed in Files, read-only.
-var FS fs.FS = embedded
+//
+//go:embed gravel-pit landfill
+var FS embed.FS
 
 // Names of the files in FS.
 const (
