@@ -11,9 +11,9 @@ require (
 	github.com/mattn/go-runewidth v0.0.30
 	github.com/paulmach/orb v0.14.0
 	github.com/rogpeppe/go-internal v1.16.0
+	github.com/santhosh-tekuri/jsonschema/v6 v6.0.3
 	github.com/spf13/cobra v1.10.2
 	github.com/spf13/pflag v1.1.0
-	github.com/santhosh-tekuri/jsonschema/v6 v6.0.3
 	github.com/vbauerster/cupwriter v0.0.5
 	github.com/vbauerster/mpb/v8 v8.16.2
 	golang.org/x/image v0.48.0
