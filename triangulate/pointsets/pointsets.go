@@ -96,7 +96,7 @@ func Kuzmin(n int, seed uint64) []orb.Point {
 		// A direction without sine and cosine: a place in the unit disc,
 		// taken by rejection, pushed out to the circle.
 		for {
-			x, y := 2*r.unit()-1, 2*r.unit()-1
+			x, y := float64(2*r.unit())-1, float64(2*r.unit())-1
 			if q := float64(x*x) + float64(y*y); q > 0 && q <= 1 {
 				d /= math.Sqrt(q)
 				pts[i] = orb.Point{d * x, d * y}
@@ -197,10 +197,10 @@ func Heights(pts []orb.Point) []float64 {
 	for i, p := range pts {
 		u, v := 0.0, 0.0 // -1 to 1 over the box
 		if w > 0 {
-			u = 2*((p[0]-b.Min[0])/w) - 1
+			u = float64(2*((p[0]-b.Min[0])/w)) - 1
 		}
 		if h > 0 {
-			v = 2*((p[1]-b.Min[1])/h) - 1
+			v = float64(2*((p[1]-b.Min[1])/h)) - 1
 		}
 		uu, vv := float64(u*u), float64(v*v)
 		mm := 100_000 + float64(4000*(float64(uu*u)-float64(u*vv))) + 6000/(1+float64(8*(uu+vv)))

@@ -15,7 +15,11 @@ func (r *random) next() uint64 {
 }
 
 // unit returns a multiple of 2^-53 in [0, 1).
-func (r *random) unit() float64 { return float64(r.next()>>11) / (1 << 53) }
+//
+// The division by a power of two is exact; the conversion around it keeps the
+// compiler from fusing it with a sum all the same, so that the check for fused
+// products has nothing to excuse.
+func (r *random) unit() float64 { return float64(float64(r.next()>>11) / (1 << 53)) }
 
 // below returns an integer in [0, n), n > 0. Multiplying instead of dividing
 // (Lemire 2019, without the rejection step) leaves a bias below n/2^64.

@@ -43,7 +43,7 @@ func meeting(s surface, pieces []piece, one, other string) []line {
 func beyond(s surface, a, b place) string {
 	du, dv := b.u-a.u, b.v-a.v
 	f := 0.001 / math.Sqrt(float64(du*du)+float64(dv*dv))
-	return s.top((a.u+b.u)/2+float64(f*dv), (a.v+b.v)/2-float64(f*du)).name
+	return s.top(float64((a.u+b.u)/2)+float64(f*dv), float64((a.v+b.v)/2)-float64(f*du)).name
 }
 
 // divide cuts a→b at every corner that lies on it to a micrometre. Parts

@@ -84,7 +84,7 @@ func (r polygon) area() float64 {
 	for i := 1; i+1 < len(r); i++ {
 		sum += corner(r[0], r[i], r[i+1])
 	}
-	return sum / 2
+	return float64(sum / 2)
 }
 
 // volume returns the integral of the plane over the ring: of a linear
@@ -95,7 +95,7 @@ func (r polygon) volume(p plane) float64 {
 		z := p.z(r[0].u, r[0].v) + p.z(r[i].u, r[i].v) + p.z(r[i+1].u, r[i+1].v)
 		sum += float64(corner(r[0], r[i], r[i+1]) * z)
 	}
-	return sum / 6
+	return float64(sum / 6)
 }
 
 // corner is twice the area of the triangle a b c.
