@@ -45,11 +45,73 @@ func TestSpacing(t *testing.T) {
 		{"two readings", []orb.Point{{0, 0}, {3, 0}}, math.NaN()},
 		{"in line", []orb.Point{{0, 0}, {1, 1}, {2, 2}}, math.NaN()},
 	} {
-		got := Spacing(mesh(t, row.pts))
+		got := Spacing(mesh(t, row.pts), 3)
 		if got != row.want && !(math.IsNaN(got) && math.IsNaN(row.want)) {
 			t.Errorf("%s: %v, want %v", row.name, got, row.want)
 		}
 	}
+}
+
+// The slow way: all lengths, sorted.
+func TestSpacingIsTheMedian(t *testing.T) {
+	r := rand.New(rand.NewPCG(3, 4))
+	for range 20 {
+		pts := make([]orb.Point, 3+r.IntN(200))
+		for i := range pts {
+			pts[i] = orb.Point{r.ExpFloat64() * 100, r.NormFloat64()}
+		}
+		m := mesh(t, pts)
+		var lengths []float64
+		for h := range triangulate.HalfEdge(m.NumHalfEdges()) {
+			if m.Twin(h) < h {
+				lengths = append(lengths, math.Sqrt(squaredDistance(m.Position(m.Origin(h)), m.Position(m.Dest(h)))))
+			}
+		}
+		slices.Sort(lengths)
+		want := lengths[(len(lengths)-1)/2]
+		for _, workers := range []int{1, 2, 8} {
+			if got := Spacing(m, workers); got != want {
+				t.Errorf("%d readings, %d workers: %v, want %v", len(pts), workers, got, want)
+			}
+		}
+	}
+}
+
+func BenchmarkSpacing(b *testing.B) {
+	r := rand.New(rand.NewPCG(5, 6))
+	pts := make([]orb.Point, 1e5)
+	for i := range pts {
+		pts[i] = orb.Point{r.Float64(), r.Float64()}
+	}
+	m, err := triangulate.Delaunay(context.Background(), pts, triangulate.Options{})
+	if err != nil {
+		b.Fatal(err)
+	}
+	rate := func(b *testing.B) {
+		b.ReportMetric(float64(len(pts))*float64(b.N)/b.Elapsed().Seconds()/1e6, "Mvertices/s")
+	}
+	b.Run("spacing/uniform/n=1e5", func(b *testing.B) {
+		for b.Loop() {
+			Spacing(m, 1)
+		}
+		rate(b)
+	})
+	b.Run("outline/uniform/n=1e5", func(b *testing.B) {
+		limit := 3 * Spacing(m, 1)
+		for b.Loop() {
+			LongOutline(m, limit)
+		}
+		rate(b)
+	})
+	b.Run("floor=read every twin", func(b *testing.B) {
+		n := 0
+		for b.Loop() {
+			for h := range triangulate.HalfEdge(m.NumHalfEdges()) {
+				n += int(m.Twin(h))
+			}
+		}
+		rate(b)
+	})
 }
 
 func TestLongOutline(t *testing.T) {
@@ -162,12 +224,12 @@ func TestOrderDoesNotMatter(t *testing.T) {
 	for i := range pts {
 		pts[i] = orb.Point{430000 + math.Round(r.Float64()*1e5)/1e3, 5600000 + math.Round(r.Float64()*1e5)/1e3}
 	}
-	spacing := Spacing(mesh(t, pts))
+	spacing := Spacing(mesh(t, pts), 1)
 	share := LongOutline(mesh(t, pts), 2*spacing)
 	for range 5 {
 		r.Shuffle(len(pts), func(i, j int) { pts[i], pts[j] = pts[j], pts[i] })
 		m := mesh(t, pts)
-		if s := Spacing(m); s != spacing {
+		if s := Spacing(m, 2); s != spacing {
 			t.Errorf("spacing is %v after a shuffle, was %v", s, spacing)
 		}
 		if s := LongOutline(m, 2*spacing); s != share {
