@@ -17,12 +17,12 @@ import (
 // the rounding can amount to is certain, and the few others, with every node in
 // the row of the lowest or highest corner, are located by exact signs:
 //
-//	        C ............ exact
-//	       /  \
-//	    ../....\........   L and R cross the row; nodes from L+tol to R-tol are
-//	     L xxxxx R         inside, those within tol of L or R are exact
-//	    /    ___B
-//	   A----- ............ exact
+//	     C ............ exact
+//	    /  \
+//	 ../....\........   L and R cross the row; nodes from L+tol to R-tol are
+//	  L xxxxx R         inside, those within tol of L or R are exact
+//	 /    ___B
+//	A----- ............ exact
 type scan struct {
 	g    *Grid
 	s    *interp.Surface
@@ -217,7 +217,7 @@ func (w *writer) row(row int) []float64 { return w.g.Row(len(w.ys) - 1 - row) }
 func (w *writer) inside(row, from, to int) {
 	values := w.row(row)[from:to]
 	if w.show == Value {
-		w.plane.Row(values, w.xs[from:to], w.ys[row])
+		w.plane.Span(values, w.xs[from:to], w.ys[row])
 		return
 	}
 	for i := range values {
