@@ -123,3 +123,42 @@ func checkCells(cellX, cellY decimal.Number) error {
 	}
 	return nil
 }
+
+// SpecFromNodes returns the lattice whose south-western node is at (x, y): how a file that lists places of nodes becomes a lattice. It
+// need not lie on whole multiples of the cell. Errors are *SpecError.
+func SpecFromNodes(x, y, cellX, cellY decimal.Number, cols, rows int, at NodePlace) (Spec, error) {
+	s := Spec{West: x.Normal(), South: y.Normal(), CellX: cellX.Normal(), CellY: cellY.Normal(), Cols: cols, Rows: rows, ValuesAt: at}
+	if at == Centres {
+		var errX, errY error
+		if s.West, errX = halfACellBefore(x, cellX); errX != nil {
+			return Spec{}, &SpecError{What: "first x", Seen: x.String() + " with the cell " + cellX.String(), Expected: "places that 17 digits can write"}
+		}
+		if s.South, errY = halfACellBefore(y, cellY); errY != nil {
+			return Spec{}, &SpecError{What: "first y", Seen: y.String() + " with the cell " + cellY.String(), Expected: "places that 17 digits can write"}
+		}
+	}
+	if err := s.Validate(); err != nil {
+		return Spec{}, err
+	}
+	return s, nil
+}
+
+func halfACellBefore(node, cell decimal.Number) (decimal.Number, error) {
+	half, err := cell.Times(5)
+	if err != nil {
+		return decimal.Number{}, err
+	}
+	if half, err = decimal.New(half.Unscaled, int(half.Scale)+1); err != nil {
+		return decimal.Number{}, err
+	}
+	return node.Sub(half)
+}
+
+// PlaceOf tells from a node's place where values stand on a lattice that lies on whole multiples of its cell: Corners if the node lies on
+// one along both axes, else Centres.
+func PlaceOf(x, y, cellX, cellY decimal.Number) NodePlace {
+	if x.IsMultipleOf(cellX) && y.IsMultipleOf(cellY) {
+		return Corners
+	}
+	return Centres
+}

@@ -141,6 +141,15 @@ func (s Spec) NodeExtent() Extent {
 	return Extent{XMin: s.XDecimal(0), YMin: s.YDecimal(s.Rows - 1), XMax: s.XDecimal(s.Cols - 1), YMax: s.YDecimal(0)}
 }
 
+// Decimals returns how many digits after the point the places of all nodes need.
+func (s Spec) Decimals() int {
+	n := 0
+	for _, d := range []decimal.Number{s.XDecimal(0), s.YDecimal(0), s.CellX, s.CellY} {
+		n = max(n, d.Decimals())
+	}
+	return n
+}
+
 // Equal reports whether s and t have the same nodes in the same places, however their decimals are written.
 func (s Spec) Equal(t Spec) bool {
 	return s.Cols == t.Cols && s.Rows == t.Rows && s.ValuesAt == t.ValuesAt &&

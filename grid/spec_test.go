@@ -226,6 +226,11 @@ func TestSpecForIsTheSmallestThatCovers(t *testing.T) {
 		if again, err := SpecFromExtent(e, s.CellX, s.CellY, s.ValuesAt); err != nil || !again.Equal(s) {
 			t.Fatalf("from its own extent: %+v, %v; want %+v", again, err, s)
 		}
+		first := s.NodeExtent()
+		at := PlaceOf(first.XMin, first.YMin, s.CellX, s.CellY)
+		if again, err := SpecFromNodes(first.XMin, first.YMin, s.CellX, s.CellY, s.Cols, s.Rows, at); err != nil || again != s {
+			t.Fatalf("from its nodes: %+v, %v; want %+v", again, err, s)
+		}
 		if again, err := SpecOutward(e, s.CellX, s.CellY, s.ValuesAt); err != nil || again != s {
 			t.Fatalf("outward from its own extent: %+v, %v; want %+v", again, err, s)
 		}
