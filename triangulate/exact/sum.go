@@ -138,6 +138,24 @@ func (s *Sum) Merge(o *Sum) {
 	s.special |= o.special
 }
 
+// Subtract takes the value of o from s. o keeps its value; s and o must be
+// different.
+func (s *Sum) Subtract(o *Sum) {
+	s.carry()
+	o.carry()
+	for i, c := range o.chunk {
+		s.chunk[i] -= c
+	}
+	s.pending = 1
+	s.special |= o.special & hasNaN
+	if o.special&hasPosInf != 0 {
+		s.special |= hasNegInf
+	}
+	if o.special&hasNegInf != 0 {
+		s.special |= hasPosInf
+	}
+}
+
 // carry moves what exceeds 32 bits to the next chunk: all chunks but the last are
 // from 0 to 2^32-1 after it, and the last has the sign of the sum.
 func (s *Sum) carry() {

@@ -52,6 +52,12 @@ func TestSumIsCorrectlyRounded(t *testing.T) {
 			s.Add(x)
 			want.Add(want, rat(x))
 		}
+		if rapid.Bool().Draw(t, "subtracted") {
+			var less Sum
+			less.Subtract(&parts[2])
+			parts[2] = Sum{}
+			parts[2].Subtract(&less)
+		}
 		if rapid.Bool().Draw(t, "backwards") {
 			parts[2].Merge(&parts[0])
 			parts[2].Merge(&parts[1])
@@ -147,6 +153,20 @@ func TestSumSpecialValues(t *testing.T) {
 	s.AddProduct(0, inf)
 	if !math.IsNaN(s.Value()) {
 		t.Errorf("0 times infinity: %v, want NaN", s.Value())
+	}
+	var finite, infinite Sum
+	infinite.Add(inf)
+	finite.Subtract(&infinite)
+	if got := finite.Value(); got != -inf {
+		t.Errorf("0 less infinity: %v, want -Inf", got)
+	}
+	infinite.Merge(&finite)
+	if got := infinite.Value(); !math.IsNaN(got) {
+		t.Errorf("infinity and minus infinity: %v, want NaN", got)
+	}
+	finite.Subtract(&infinite)
+	if got := finite.Value(); !math.IsNaN(got) {
+		t.Errorf("minus infinity less both: %v, want NaN", got)
 	}
 	defer func() {
 		if recover() == nil {

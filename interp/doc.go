@@ -1,0 +1,62 @@
+// Package interp reads values off a surface of planes over a triangulation.
+//
+// In go a mesh (package triangulate) and one value per vertex, or per input
+// point; out come values at places, weights, gradients, areas and volumes. One
+// mesh can carry many sets of values: a Surface only refers to it.
+//
+//	m, err := triangulate.Delaunay(ctx, points, triangulate.Options{})
+//	s, err := interp.FromInputs(m, heights)
+//	sample := s.Sampler().At(orb.Point{430010, 5600020})
+//	sample.Z                         // NaN outside
+//	sample.Location.Place            // Inside, OnEdge, OnVertex or Outside
+//	samples, err := s.Query(ctx, places, 0)
+//	gx, gy := s.Gradient(sample.Location.Triangle)
+//	interp.Slope(gx, gy)             // rise over run
+//	interp.DownhillAzimuth(gx, gy)   // degrees clockwise from north
+//	s.VolumeAbove(105)
+//
+// Conventions: x east, y north, z up; heights in their own unit, areas in that of
+// x times y, volumes in that of x times y times z. Outside the outline there is no
+// value: NaN. A corner whose value equals a level counts as above it.
+//
+// # Which method when
+//
+//	method   continuity                 at the readings  outside     cost of a value
+//	planar   continuous, bends at edges exact, bit for   no value    one location and
+//	                                    bit                          some ten operations
+//
+// The planar method never leaves the range of the three readings around a place,
+// needs no choice of parameters, and its volumes are exact integrals.
+//
+// # What is guaranteed
+//
+// At a vertex the value is the vertex's own, bit for bit. On an edge only its two
+// ends matter. Inside a triangle the value lies in the range of its corners. Which
+// case holds is decided by exact signs. All depend on positions and values alone:
+// not on the order of input, nor on the number of goroutines.
+//
+// With Z the largest |z| of the corners concerned, R their range and e = 2^-53,
+// a value is off by at most
+//
+//	on an edge   0.51 ulp of Z
+//	inside       2e Z + 4e R: 2.4 ulp of Z where R is at most a tenth of Z, 10 ulp in
+//	             the worst case (heights of opposite sign)
+//
+// (derivations in value.go and plane.go). Measured over a million cases each, with
+// slivers and millimetres at 5e6 among the triangles (TestErrorOnEdge,
+// TestErrorInside with -long): 0.5 ulp on edges; inside 1.0 ulp for heights of
+// ground, 6.5 ulp for the worst kind of heights, some 2 and some -2.
+//
+// Each component of a gradient has a relative error
+// below 2^-49. Areas and volumes are sums of terms of a triangle each, accumulated
+// exactly and rounded once; the plan area is the exact one, rounded.
+//
+// Accepted are values of 0 or from 1e-60 to 1e60 in size, as for coordinates.
+//
+// # Cost
+//
+// A Surface takes 8 bytes a vertex (the values, not copied). A Sampler finds a
+// place in a microsecond or so. Query sorts places along a curve first and walks
+// from each to the next, several times faster for many places. Areas and volumes
+// take some ten nanoseconds a triangle on one core and use all cores.
+package interp
