@@ -1,0 +1,81 @@
+package readings
+
+import "strings"
+
+// A plan is how the lines of one file are read: what sniff made of what was
+// declared and what the first lines show. It does not change afterwards and
+// serves every worker.
+type plan struct {
+	format
+	layout  Layout
+	decimal byte
+	// acts say what to do with each field of a line; a line has as many fields.
+	acts []act
+	// source says where the number of fields comes from, for messages.
+	source string
+	// need are the roles that a line must hold as numbers.
+	need need
+
+	fieldOf [roleCount]int // number of the field of a role from 0, -1 without one
+
+	missingText map[string]string // by markKey: what to call it
+	missingZ    []float64         // marks that are numbers
+	// raw keeps every record as it is written (positions).
+	raw bool
+}
+
+// act is what becomes of a field.
+type act struct {
+	kind actKind
+	slot int8 // of a text, or 0, 1, 2 for x, y, z
+}
+
+type actKind uint8
+
+const (
+	pass actKind = iota
+	number
+	text
+)
+
+// need is what makes a line whole.
+type need uint8
+
+const (
+	needPlace need = 2 // x and y
+	needValue need = 3 // x, y and z
+)
+
+// newPlan turns a layout into a plan.
+func newPlan(l Layout, d *Declared, f format, n need) *plan {
+	p := &plan{format: f, layout: l, decimal: byte(l.Decimal), need: n, raw: n == needPlace}
+	for r := range p.fieldOf {
+		p.fieldOf[r] = -1
+	}
+	p.acts = make([]act, len(l.Columns))
+	for i, c := range l.Columns {
+		switch {
+		case c.Role == NoRole:
+			continue
+		case c.Role == X, c.Role == Y, c.Role == Z && n == needValue:
+			p.acts[i] = act{number, int8(c.Role - X)}
+		case c.Role.Kept() && n == needValue:
+			p.acts[i] = act{text, textSlot[c.Role]}
+		}
+		p.fieldOf[c.Role] = i
+	}
+	p.missingText = make(map[string]string)
+	for _, m := range d.Missing {
+		if v, ok := markNumber(m); ok {
+			p.missingZ = append(p.missingZ, v)
+		} else if strings.EqualFold(m, blankMark) {
+			p.missingText[""] = "blank"
+		} else {
+			p.missingText[markKey(m)] = m
+		}
+	}
+	return p
+}
+
+// blankMark stands for the empty field among missing marks.
+const blankMark = "blank"
