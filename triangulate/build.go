@@ -44,14 +44,16 @@ type builder struct {
 // empty shells that nobody merges.
 func (b *builder) stopped() bool { return b.ctx.Err() != nil }
 
-// report adds n records to those whose triangles are made.
+// report adds n records to those whose triangles are made. Where places repeat,
+// some ranges are built again and count twice and others do not count, so the
+// sum is kept below the total, which Delaunay reports when all is done.
 func (b *builder) report(n int) {
 	if b.progress == nil {
 		return
 	}
 	b.mu.Lock()
 	defer b.mu.Unlock()
-	b.done += n
+	b.done = min(b.done+n, len(b.rec)-1)
 	b.progress(b.done, len(b.rec))
 }
 

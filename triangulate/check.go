@@ -48,17 +48,20 @@ func (m *Mesh) checkInputs() error {
 	return nil
 }
 
+// checkLinks looks at ranges before it follows any number.
 func (m *Mesh) checkLinks() error {
-	for h := range HalfEdge(len(m.half)) {
-		if v := m.Origin(h); v < 0 || int(v) >= len(m.pos) {
-			return fmt.Errorf("half-edge %d: origin %d of %d vertices", h, v, len(m.pos))
+	for h, e := range m.half {
+		if e.origin < 0 || int(e.origin) >= len(m.pos) {
+			return fmt.Errorf("half-edge %d: origin %d of %d vertices", h, e.origin, len(m.pos))
 		}
+		if e.twin != NoHalfEdge && (e.twin < 0 || int(e.twin) >= len(m.half)) {
+			return fmt.Errorf("half-edge %d: twin %d of %d half-edges", h, e.twin, len(m.half))
+		}
+	}
+	for h := range HalfEdge(len(m.half)) {
 		t := m.Twin(h)
 		if t == NoHalfEdge {
 			continue
-		}
-		if t < 0 || int(t) >= len(m.half) {
-			return fmt.Errorf("half-edge %d: twin %d of %d half-edges", h, t, len(m.half))
 		}
 		if m.Twin(t) != h {
 			return fmt.Errorf("half-edge %d: its twin %d has twin %d", h, t, m.Twin(t))

@@ -42,7 +42,8 @@ type Options struct {
 	// Workers is the largest number of goroutines; 0 means one per CPU.
 	Workers int
 	// Progress, when not nil, is told now and then, from one goroutine at a
-	// time, how many of the points are done.
+	// time, about how many of the points are done. done never falls; it is total
+	// once, in the last call, when the mesh is finished. No point, no call.
 	Progress func(done, total int)
 }
 
@@ -86,7 +87,11 @@ func Delaunay(ctx context.Context, pts []orb.Point, opt Options) (*Mesh, error) 
 	if err := ctx.Err(); err != nil {
 		return nil, err
 	}
-	return b.finish(whole, workers), nil
+	m := b.finish(whole, workers)
+	if opt.Progress != nil {
+		opt.Progress(len(pts), len(pts))
+	}
+	return m, nil
 }
 
 // load makes the records, and refuses coordinates out of range.
