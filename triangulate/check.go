@@ -129,7 +129,13 @@ func (m *Mesh) checkHull() error {
 func (m *Mesh) checkEdges() error {
 	for h := range HalfEdge(len(m.half)) {
 		t := m.Twin(h)
-		if t < h { // outline, or seen from the other side
+		if t == NoHalfEdge {
+			continue
+		}
+		if m.IsConstrained(h) != m.IsConstrained(t) {
+			return fmt.Errorf("edge %v–%v: constrained on one side only", m.pos[m.Origin(h)], m.pos[m.Dest(h)])
+		}
+		if t < h || m.IsConstrained(h) { // seen from the other side
 			continue
 		}
 		a, b, c, d := m.Origin(h), m.Dest(h), m.Apex(h), m.Apex(t)

@@ -173,3 +173,45 @@ func (m *Mesh) firstClockwise(h HalfEdge) HalfEdge {
 		}
 	}
 }
+
+// LocateIn returns the location of p if triangle t owns it, else one that is
+// Outside: every position of the surface has one owner. Time O(1), except at a
+// vertex of the outline.
+func (m *Mesh) LocateIn(t Triangle, p orb.Point) Location {
+	onEdge, zeros := NoHalfEdge, 0
+	for i := range 3 {
+		e := t.HalfEdge(i)
+		o, d := m.pos[m.half[e].origin], m.pos[m.Dest(e)]
+		switch exact.OrientXY(o[0], o[1], d[0], d[1], p[0], p[1]) {
+		case -1:
+			return nowhere
+		case 0:
+			zeros++
+			if i < 2 || zeros == 1 || onEdge != t.HalfEdge(0) {
+				onEdge = e // of two, the one that starts at the vertex they share
+			}
+		}
+	}
+	switch zeros {
+	case 0:
+		return Location{Inside, t, NoHalfEdge, NoVertex}
+	case 1:
+		if loc := m.onEdge(onEdge); loc.Triangle == t {
+			return loc
+		}
+		return nowhere
+	}
+	v := m.half[onEdge].origin
+	a, b := m.pos[m.Dest(onEdge)], m.pos[m.Apex(onEdge)]
+	if ahead(a[0]-p[0], a[1]-p[1]) && ahead(p[0]-b[0], p[1]-b[1]) {
+		return Location{OnVertex, t, onEdge, v}
+	}
+	if m.half[onEdge].twin != NoHalfEdge {
+		return nowhere
+	}
+	// The first triangle of a vertex of the outline owns it if no other does.
+	if loc := m.onVertex(onEdge); loc.Triangle == t {
+		return loc
+	}
+	return nowhere
+}

@@ -76,6 +76,9 @@ type Mesh struct {
 	half     []half      // three a triangle
 	vertexOf []Vertex    // of every input point
 
+	kept   bits        // of every half-edge, whether it is constrained; nil for none
+	chains []chainEdge // what the segments are made of, sorted
+
 	startsOnce sync.Once
 	starts     starts // where walks begin, made when first asked for
 
