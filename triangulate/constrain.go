@@ -24,9 +24,7 @@ type Crossed struct {
 
 // CrossingError is returned for segments that cross where neither has a vertex.
 type CrossingError struct {
-	// Pairs holds crossings found, sorted; those of a segment that was found to
-	// cross another were not looked for any further.
-	Pairs []Crossed
+	Pairs []Crossed // all of them, sorted
 }
 
 func (e *CrossingError) Error() string {
@@ -69,15 +67,11 @@ func Constrained(ctx context.Context, pts []orb.Point, segs []Segment, opt Optio
 			a, b = b, a
 		}
 		if !n.insert(a, b, i) {
-			break
+			return nil, &CrossingError{Pairs: FindCrossings(pts, segs)}
 		}
 		if ctx.Err() != nil {
 			return nil, ctx.Err()
 		}
-	}
-	if len(n.crossed) > 0 {
-		slices.SortFunc(n.crossed, func(p, q Crossed) int { return slices.Compare([]int32{p.A, p.B}, []int32{q.A, q.B}) })
-		return nil, &CrossingError{Pairs: slices.Compact(n.crossed)}
 	}
 	m.kept = n.kept
 	m.chains = n.chains
@@ -123,17 +117,6 @@ func (m *Mesh) outgoing() []HalfEdge {
 		at[e.origin] = HalfEdge(h)
 	}
 	return at
-}
-
-// noteCrossing notes that segment crosses those that the kept edge of h is a part of.
-func (n *inserter) noteCrossing(h HalfEdge, segment int32) {
-	u, v := n.half[h].origin, n.dest(h)
-	u, v = min(u, v), max(u, v)
-	for _, c := range n.chains {
-		if c.u == u && c.v == v {
-			n.crossed = append(n.crossed, Crossed{min(c.segment, segment), max(c.segment, segment)})
-		}
-	}
 }
 
 // lineChains is what the segments are made of when all vertices lie on one line.

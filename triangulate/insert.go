@@ -24,8 +24,7 @@ type inserter struct {
 	kept bits       // constrained half-edges
 	at   []HalfEdge // of every vertex, some outgoing half-edge
 
-	chains  []chainEdge
-	crossed []Crossed
+	chains []chainEdge
 
 	// Scratch of one hole, reused.
 	rimLeft, rimRight, made, suspects []HalfEdge
@@ -52,8 +51,7 @@ type rimLink struct {
 func (n *inserter) orient(u, v, w Vertex) int { return exact.Orient(n.pos[u], n.pos[v], n.pos[w]) }
 
 // insert makes the segment from a to b, a != b, a chain of edges, and notes it.
-// Where a kept edge is in the way it notes the crossing and returns false; the
-// parts before and after stay as they were.
+// Where a kept edge is in the way it returns false.
 func (n *inserter) insert(a, b Vertex, segment int32) bool {
 	for a != b {
 		along, into := n.toward(a, b)
@@ -141,7 +139,6 @@ func (n *inserter) cross(a, b Vertex, into HalfEdge, segment int32) (w Vertex, o
 	n.free = append(n.free[:0], into.Triangle())
 	for h := into.next(); ; {
 		if n.kept.get(int(h)) {
-			n.noteCrossing(h, segment)
 			return NoVertex, false
 		}
 		t := T[h].twin
