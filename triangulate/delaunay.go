@@ -100,7 +100,7 @@ func (b *builder) load(pts []orb.Point, workers int) error {
 	inRanges(len(pts), workers, func(w, lo, hi int) {
 		bad[w] = -1
 		for i, p := range pts[lo:hi] {
-			if !coordinateOK(p[0]) || !coordinateOK(p[1]) {
+			if !positionOK(p) {
 				bad[w] = lo + i
 				return
 			}
@@ -113,6 +113,9 @@ func (b *builder) load(pts []orb.Point, workers int) error {
 	}
 	return nil
 }
+
+// positionOK tells whether exact signs can be promised for p.
+func positionOK(p orb.Point) bool { return coordinateOK(p[0]) && coordinateOK(p[1]) }
 
 func coordinateOK(c float64) bool {
 	a := math.Abs(c)

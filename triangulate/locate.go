@@ -53,12 +53,12 @@ func (m *Mesh) Locator() *Locator {
 	return &Locator{m: m}
 }
 
-// Locate returns the place of p, which must be finite; every decision is exact,
-// so it does not depend on what was asked before.
+// Locate returns the place of p; every decision is exact, so it does not depend
+// on what was asked before. A place that Delaunay would refuse is Outside.
 //
 // Expected time O(1) for evenly spread vertices; O(sqrt n) where they crowd.
 func (l *Locator) Locate(p orb.Point) Location {
-	if len(l.m.half) == 0 {
+	if len(l.m.half) == 0 || !positionOK(p) {
 		return nowhere
 	}
 	return l.walk(l.m.starts.near(p), p)
@@ -67,7 +67,7 @@ func (l *Locator) Locate(p orb.Point) Location {
 // LocateNext is Locate for a position that is likely near the one before: it
 // walks from there.
 func (l *Locator) LocateNext(p orb.Point) Location {
-	if len(l.m.half) == 0 {
+	if len(l.m.half) == 0 || !positionOK(p) {
 		return nowhere
 	}
 	return l.walk(l.last, p)

@@ -98,7 +98,7 @@ func (m *Mesh) NumHalfEdges() int { return len(m.half) }
 // NumInputs returns the number of points that the mesh was made from.
 func (m *Mesh) NumInputs() int { return len(m.vertexOf) }
 
-// Position returns the place of v, the very numbers of the input.
+// Position returns the place of v, the very numbers of the input, but 0 for -0.
 func (m *Mesh) Position(v Vertex) orb.Point { return m.pos[v] }
 
 // Positions returns the places of all vertices. The slice is the mesh's own:

@@ -15,7 +15,8 @@ type Crossing struct {
 	Place  Place
 	Vertex Vertex
 	// Edge is the half-edge crossed, of the triangle that the line enters, or
-	// of the one it leaves where nothing lies beyond; NoHalfEdge at a vertex.
+	// of the one it leaves where it ends or nothing lies beyond; NoHalfEdge at a
+	// vertex.
 	Edge HalfEdge
 	// Into is the triangle that the line goes on through, NoTriangle where it
 	// goes on along an edge, leaves the mesh, or ends.
@@ -27,21 +28,25 @@ type Crossing struct {
 }
 
 // Cross ranges over the vertices and edges that the straight line from a to b
-// meets, in order from a to b; those at a and b themselves are included. The
-// line need not begin or end inside. Every decision is exact.
+// meets, in order from a to b; those at a and b themselves are included. An edge
+// that the line runs along is told once, by Along where the line joins it. The
+// line need not begin or end inside, and may have no length. A line from or to a
+// place that Delaunay would refuse meets nothing. Every decision is exact.
 //
 // Time O(1) for each crossing beside locating a; O(edges of the outline) when a
 // lies outside.
 func (l *Locator) Cross(a, b orb.Point) iter.Seq[Crossing] {
 	return func(yield func(Crossing) bool) {
-		if len(l.m.half) == 0 {
+		if len(l.m.half) == 0 || !positionOK(a) || !positionOK(b) {
 			return
 		}
 		w := walker{m: l.m, a: a, b: b, yield: yield}
 		at := l.Locate(a)
 		switch at.Place {
 		case Outside:
-			w.fromOutside()
+			if a != b {
+				w.fromOutside()
+			}
 		case Inside:
 			if a != b {
 				w.fromInside(at.Triangle)
