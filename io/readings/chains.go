@@ -19,9 +19,9 @@ import (
 // chains in the time of a triangulation, whatever the readings look like. A grid of cells
 // of size D is faster on ordinary data and quadratic where many readings share a cell.
 
-// chains groups the readings by chains of steps of at most o.Spots.Within.
-func (s *Set) chains(ctx context.Context, o *Options) (groups, error) {
-	m, err := triangulate.Delaunay(ctx, s.Points, triangulate.Options{Workers: o.Workers})
+// chains groups the readings by chains of steps of at most s.o.Spots.Within.
+func (s *collected) chains(ctx context.Context) (groups, error) {
+	m, err := triangulate.Delaunay(ctx, s.Points, triangulate.Options{Workers: s.o.Workers})
 	if err != nil {
 		return groups{}, err
 	}
@@ -30,7 +30,7 @@ func (s *Set) chains(ctx context.Context, o *Options) (groups, error) {
 		join[v] = int32(v)
 	}
 	near := func(a, b triangulate.Vertex) bool {
-		return s.near(m.Position(a), m.Position(b), o.Spots.Within)
+		return s.near(m.Position(a), m.Position(b), s.o.Spots.Within)
 	}
 	if m.NumTriangles() == 0 {
 		// All on a line: a place is next to its neighbours in (x, y).
@@ -62,7 +62,7 @@ func (s *Set) chains(ctx context.Context, o *Options) (groups, error) {
 
 // near reports whether two places are at most d apart. The differences are those
 // of the decimals as written, so that 0.01 apart is within 0.01.
-func (s *Set) near(p, q orb.Point, d float64) bool {
+func (s *collected) near(p, q orb.Point, d float64) bool {
 	dx, dy := asWritten(p[0]-q[0], s.DecimalsXY), asWritten(p[1]-q[1], s.DecimalsXY)
 	return float64(dx*dx)+float64(dy*dy) <= float64(d*d)
 }

@@ -243,7 +243,7 @@ func (e *Exclusions) warnings(hit []atomic.Bool) []Warning {
 		r := &e.rows[k]
 		what := fmt.Sprintf("id %q", r.id)
 		if !r.hasID {
-			what = fmt.Sprintf("place %v,%v", r.place[0], r.place[1])
+			what = fmt.Sprintf("place %s,%s", plain(r.place[0]), plain(r.place[1]))
 		}
 		all = append(all, Warning{e.Name, r.line, "no reading matches " + what})
 	}

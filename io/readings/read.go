@@ -3,8 +3,6 @@ package readings
 import (
 	"context"
 	"math"
-
-	"github.com/paulmach/orb"
 )
 
 // Read reads all sources into memory: the readings to use, and where every
@@ -46,87 +44,11 @@ func Read(ctx context.Context, sources []Source, o Options) (*Set, error) {
 		return nil, err
 	}
 	set := &Set{Counts: summary.Counts, Layouts: summary.Layouts, Warnings: summary.Warnings, Refused: refused}
-	set.join(blocks, len(sources))
-	if err := set.mergeSpots(ctx, &o, sources); err != nil {
+	c := collected{Set: set, blocks: blocks, o: &o, sources: sources}
+	c.joinNumbers()
+	if err := c.mergeSpots(ctx); err != nil {
 		return nil, err
 	}
+	c.joinTexts()
 	return set, nil
-}
-
-// join puts the columns of the blocks together, and lets go of each block.
-func (s *Set) join(blocks []*Block, sources int) {
-	n, left := 0, 0
-	var bytes, count [textSlots]int
-	for _, b := range blocks {
-		n += b.Len()
-		left += len(b.LeftOut)
-		for i := range b.texts {
-			bytes[i] += len(b.texts[i].data)
-			count[i] += b.texts[i].len()
-		}
-	}
-	s.Points = make([]orb.Point, 0, n)
-	s.Z = make([]float64, 0, n)
-	s.Lines = make([]uint32, 0, n)
-	s.LeftOut = make([]LeftOut, 0, left)
-	for i := range s.texts {
-		if count[i] > 0 {
-			s.texts[i].grow(n, bytes[i])
-		}
-	}
-	s.fileStart = make([]int, sources)
-	file := 0
-	for k, b := range blocks {
-		for ; file <= b.File; file++ {
-			s.fileStart[file] = len(s.Points)
-		}
-		s.Points = append(s.Points, b.Points...)
-		s.Z = append(s.Z, b.Z...)
-		s.Lines = append(s.Lines, b.Lines...)
-		s.LeftOut = append(s.LeftOut, b.LeftOut...)
-		s.DecimalsXY = max(s.DecimalsXY, b.DecimalsXY)
-		s.DecimalsZ = max(s.DecimalsZ, b.DecimalsZ)
-		for i := range s.texts {
-			if count[i] > 0 {
-				s.texts[i].pushBlock(&b.texts[i], b.Len())
-			}
-		}
-		blocks[k] = nil
-	}
-	for ; file < sources; file++ {
-		s.fileStart[file] = len(s.Points)
-	}
-}
-
-// keep compacts the columns to the readings for which kept is true.
-func (s *Set) keep(kept []bool, left int) {
-	start := s.fileStart
-	s.fileStart = make([]int, len(start))
-	var texts [textSlots]texts
-	for i := range texts {
-		if s.texts[i].len() > 0 {
-			texts[i].grow(left, len(s.texts[i].data))
-		}
-	}
-	n, file := 0, 0
-	for i, k := range kept {
-		for file < len(start) && start[file] == i {
-			s.fileStart[file] = n
-			file++
-		}
-		if !k {
-			continue
-		}
-		s.Points[n], s.Z[n], s.Lines[n] = s.Points[i], s.Z[i], s.Lines[i]
-		for t := range texts {
-			if s.texts[t].len() > 0 {
-				texts[t].push(s.texts[t].at(i))
-			}
-		}
-		n++
-	}
-	for ; file < len(start); file++ {
-		s.fileStart[file] = n
-	}
-	s.Points, s.Z, s.Lines, s.texts = s.Points[:n], s.Z[:n], s.Lines[:n], texts
 }

@@ -138,6 +138,10 @@ func (w *worker) record(b []byte, p, next int) {
 			return
 		}
 	}
+	if w.raw && next-p > maxRow {
+		w.refuse(b, p, p, &PositionError{Kind: LongText, What: "row", Expected: "at most 65,535 bytes"})
+		return
+	}
 	var trouble *PositionError
 	troubleAt := 0
 	complain := func(i int, e *PositionError) {
@@ -217,16 +221,13 @@ func (w *worker) accept(v [3]float64, decimals [3]int, record []byte) {
 		for len(record) > 0 && isLineEnd(record[len(record)-1]) {
 			record = record[:len(record)-1]
 		}
-		blk.raw.data = append(blk.raw.data, record...)
-		blk.raw.ends = append(blk.raw.ends, uint32(len(blk.raw.data)))
+		blk.raw.add(record)
 		return
 	}
 	blk.Z = append(blk.Z, v[2])
 	blk.DecimalsZ = max(blk.DecimalsZ, decimals[2])
 	for _, slot := range w.slots {
-		t := &blk.texts[slot]
-		t.data = append(t.data, w.current[slot]...)
-		t.ends = append(t.ends, uint32(len(t.data)))
+		blk.texts[slot].add(w.current[slot])
 	}
 }
 
@@ -254,6 +255,10 @@ func (w *worker) refuse(b []byte, p, at int, e *PositionError) {
 	}
 	w.blk.Refused = append(w.blk.Refused, e)
 }
+
+// maxRow is the longest row that is carried along: 2^16 of them fill a page of
+// texts.
+const maxRow = 1<<16 - 1
 
 // checkText reports a text that is not fit to be kept.
 func checkText(f field) *PositionError {

@@ -2,6 +2,8 @@ package readings
 
 import (
 	"fmt"
+	"math"
+	"strconv"
 
 	"github.com/paulmach/orb"
 )
@@ -51,9 +53,9 @@ func (e *SpotError) Error() string {
 	for _, s := range e.First {
 		m := s.Members[0]
 		b = fmt.Appendf(b, "%s:%d: ", m.File, m.Line)
-		b = fmt.Appendf(b, "%d readings at %v,%v", s.Count, s.Place[0], s.Place[1])
+		b = fmt.Appendf(b, "%d readings at %s,%s", s.Count, plain(s.Place[0]), plain(s.Place[1]))
 		if e.Within > 0 {
-			b = fmt.Appendf(b, " (within %v)", e.Within)
+			b = fmt.Appendf(b, " (within %s)", plain(e.Within))
 		}
 		switch s.Why {
 		case UnlikeIDs:
@@ -61,7 +63,7 @@ func (e *SpotError) Error() string {
 		case UnlikeZones:
 			b = append(b, " of several zones"...)
 		default:
-			b = fmt.Appendf(b, " with z %v apart", s.Spread)
+			b = fmt.Appendf(b, " with z %s apart", plain(s.Spread))
 		}
 		b = append(b, ":"...)
 		for i, m := range s.Members {
@@ -75,7 +77,7 @@ func (e *SpotError) Error() string {
 			if s.Why == UnlikeZones {
 				b = fmt.Appendf(b, "zone %q ", m.Zone)
 			}
-			b = fmt.Appendf(b, "z %v in line %d", m.Z, m.Line)
+			b = fmt.Appendf(b, "z %s in line %d", plain(m.Z), m.Line)
 			if m.File != s.Members[0].File {
 				b = fmt.Appendf(b, " of %s", m.File)
 			}
@@ -93,4 +95,12 @@ func (e *SpotError) Error() string {
 		places = fmt.Sprintf("%d places", e.Total)
 	}
 	return string(fmt.Appendf(b, "%s with %d readings: expected one reading at a place, or a rule for several", places, e.Readings))
+}
+
+// plain writes a number the way a file would.
+func plain(v float64) string {
+	if a := math.Abs(v); a != 0 && (a < 1e-6 || a >= 1e15) {
+		return strconv.FormatFloat(v, 'g', -1, 64)
+	}
+	return strconv.FormatFloat(v, 'f', -1, 64)
 }

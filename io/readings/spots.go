@@ -5,6 +5,7 @@ import (
 	"context"
 	"math"
 	"slices"
+	"strings"
 
 	"github.com/paulmach/orb"
 
@@ -23,11 +24,12 @@ func (g *groups) count() int { return max(len(g.start)-1, 0) }
 func (g *groups) of(k int) []int32 { return g.members[g.start[k]:g.start[k+1]] }
 
 // mergeSpots makes one reading of those at one place.
-func (s *Set) mergeSpots(ctx context.Context, o *Options, sources []Source) error {
+func (s *collected) mergeSpots(ctx context.Context) error {
+	o := s.o
 	var g groups
 	var err error
 	if o.Spots.Within > 0 {
-		g, err = s.chains(ctx, o)
+		g, err = s.chains(ctx)
 	} else {
 		g = samePlaces(s.Points, o.Workers)
 	}
@@ -37,15 +39,12 @@ func (s *Set) mergeSpots(ctx context.Context, o *Options, sources []Source) erro
 	if err != nil || g.count() == 0 {
 		return err
 	}
-	if err := s.conflicts(&g, o, sources); err != nil {
+	if err := s.conflicts(&g); err != nil {
 		return err
 	}
-	kept := make([]bool, len(s.Points))
-	for i := range kept {
-		kept[i] = true
-	}
-	into := make([]int32, 0, len(g.members)) // who stands for each merged reading
 	merged := make([]Merged, 0, len(g.members)-g.count())
+	into := make([]int32, 0, cap(merged)) // who stands for each merged reading
+	gone := make([]int32, 0, cap(merged))
 	var sum exact.Sum
 	for k := range g.count() {
 		m := g.of(k)
@@ -53,30 +52,22 @@ func (s *Set) mergeSpots(ctx context.Context, o *Options, sources []Source) erro
 		s.SpotSpread = max(s.SpotSpread, s.spread(m))
 		stays := s.representative(m, o.Spots.Rule)
 		for _, i := range m {
-			if i == stays {
-				continue
+			if i != stays {
+				merged = append(merged, Merged{File: int32(s.Source(int(i))), Line: s.Lines[i], Point: s.Points[i], Z: s.Z[i],
+					ID: strings.Clone(s.text(idSlot, i))})
+				into = append(into, stays)
+				gone = append(gone, i)
 			}
-			kept[i] = false
-			merged = append(merged, Merged{File: int32(s.Source(int(i))), Line: s.Lines[i], Point: s.Points[i], Z: s.Z[i],
-				ID: s.ID(int(i))})
-			into = append(into, stays)
 		}
 		if o.Spots.Rule == SpotAgree || o.Spots.Rule == SpotMean {
 			s.Z[stays] = s.mean(&sum, m)
 		}
 		s.Points[stays] = s.place(m)
 	}
-	// The numbers of the used readings, once the others are gone.
-	rank := make([]int32, len(kept))
-	n := int32(0)
-	for i, k := range kept {
-		rank[i] = n
-		if k {
-			n++
-		}
-	}
+	slices.Sort(gone)
 	for i := range merged {
-		merged[i].Into = int(rank[into[i]])
+		before, _ := slices.BinarySearch(gone, into[i])
+		merged[i].Into = int(into[i]) - before
 	}
 	slices.SortFunc(merged, func(a, b Merged) int {
 		return cmp.Or(cmp.Compare(a.File, b.File), cmp.Compare(a.Line, b.Line))
@@ -84,12 +75,14 @@ func (s *Set) mergeSpots(ctx context.Context, o *Options, sources []Source) erro
 	s.Merged = merged
 	s.Counts.Merged = len(merged)
 	s.Counts.Used -= len(merged)
-	s.keep(kept, int(n))
+	s.remove(gone)
 	return nil
 }
 
+var idSlot, zoneSlot = int(textSlot[ID]), int(textSlot[Zone])
+
 // spread is the highest minus the lowest z.
-func (s *Set) spread(m []int32) float64 {
+func (s *collected) spread(m []int32) float64 {
 	lo, hi := s.Z[m[0]], s.Z[m[0]]
 	for _, i := range m[1:] {
 		lo, hi = min(lo, s.Z[i]), max(hi, s.Z[i])
@@ -112,7 +105,7 @@ func asWritten(d float64, decimals int) float64 {
 }
 
 // mean is the exact mean of the values, rounded once.
-func (s *Set) mean(sum *exact.Sum, m []int32) float64 {
+func (s *collected) mean(sum *exact.Sum, m []int32) float64 {
 	if z := s.Z[m[0]]; len(m) == 2 && s.Z[m[1]] == z {
 		return z
 	}
@@ -124,7 +117,7 @@ func (s *Set) mean(sum *exact.Sum, m []int32) float64 {
 }
 
 // place is the smallest (x, y) of a group.
-func (s *Set) place(m []int32) orb.Point {
+func (s *collected) place(m []int32) orb.Point {
 	p := s.Points[m[0]]
 	for _, i := range m[1:] {
 		if exact.CompareXY(s.Points[i], p) < 0 {
@@ -137,7 +130,7 @@ func (s *Set) place(m []int32) orb.Point {
 // representative is the reading of a group that stays, with its id, code and
 // line. It does not depend on the order of the input, but under SpotFirst and
 // SpotLast: equal readings are settled by everything that is kept of them.
-func (s *Set) representative(m []int32, rule SpotRule) int32 {
+func (s *collected) representative(m []int32, rule SpotRule) int32 {
 	switch rule {
 	case SpotFirst:
 		return m[0]
@@ -154,7 +147,7 @@ func (s *Set) representative(m []int32, rule SpotRule) int32 {
 }
 
 // before orders readings by z if the rule looks at it, then by (x, y), z, texts.
-func (s *Set) before(i, j int32, rule SpotRule) bool {
+func (s *collected) before(i, j int32, rule SpotRule) bool {
 	c := 0
 	switch rule {
 	case SpotLowest:
@@ -166,25 +159,23 @@ func (s *Set) before(i, j int32, rule SpotRule) bool {
 		c = cmp.Or(exact.CompareXY(s.Points[i], s.Points[j]), cmp.Compare(s.Z[i], s.Z[j]))
 	}
 	for t := 0; c == 0 && t < textSlots; t++ {
-		if s.texts[t].len() > 0 {
-			c = cmp.Compare(s.texts[t].at(int(i)), s.texts[t].at(int(j)))
-		}
+		c = cmp.Compare(s.text(t, i), s.text(t, j))
 	}
 	return c < 0
 }
 
 // conflicts returns a *SpotError if any group may not be merged.
-func (s *Set) conflicts(g *groups, o *Options, sources []Source) error {
+func (s *collected) conflicts(g *groups) error {
 	type conflict struct {
 		group  int
 		place  orb.Point
 		reason SpotReason
 	}
 	var all []conflict
-	e := &SpotError{Within: o.Spots.Within}
+	e := &SpotError{Within: s.o.Spots.Within}
 	for k := range g.count() {
 		m := g.of(k)
-		if why := s.objection(m, &o.Spots); why != 0 {
+		if why := s.objection(m, &s.o.Spots); why != 0 {
 			all = append(all, conflict{k, s.place(m), why})
 			e.Total++
 			e.Readings += len(m)
@@ -198,8 +189,8 @@ func (s *Set) conflicts(g *groups, o *Options, sources []Source) error {
 		m := g.of(c.group)
 		spot := Spot{Place: c.place, Spread: s.spread(m), Count: len(m), Why: c.reason}
 		for _, i := range m[:min(len(m), firstFew)] {
-			spot.Members = append(spot.Members, SpotMember{File: sources[s.Source(int(i))].Name, Line: int(s.Lines[i]),
-				ID: s.ID(int(i)), Zone: s.Text(Zone, int(i)), Z: s.Z[i]})
+			spot.Members = append(spot.Members, SpotMember{File: s.sources[s.Source(int(i))].Name, Line: int(s.Lines[i]),
+				ID: strings.Clone(s.text(idSlot, i)), Zone: strings.Clone(s.text(zoneSlot, i)), Z: s.Z[i]})
 		}
 		e.First = append(e.First, spot)
 	}
@@ -207,15 +198,15 @@ func (s *Set) conflicts(g *groups, o *Options, sources []Source) error {
 }
 
 // objection says why a group may not be merged, 0 if it may.
-func (s *Set) objection(m []int32, rule *Spots) SpotReason {
-	if s.differ(Zone, m) {
+func (s *collected) objection(m []int32, rule *Spots) SpotReason {
+	if s.differ(zoneSlot, m) {
 		return UnlikeZones
 	}
 	heads := false
 	for _, i := range m {
 		heads = heads || s.Layouts[s.Source(int(i))].Heads
 	}
-	if heads && s.differ(ID, m) {
+	if heads && s.differ(idSlot, m) {
 		return UnlikeIDs
 	}
 	switch {
@@ -229,12 +220,10 @@ func (s *Set) objection(m []int32, rule *Spots) SpotReason {
 	return 0
 }
 
-func (s *Set) differ(r Role, m []int32) bool {
-	if !s.Has(r) {
-		return false
-	}
+// differ reports whether the readings have unlike texts in a slot.
+func (s *collected) differ(slot int, m []int32) bool {
 	for _, i := range m[1:] {
-		if s.Text(r, int(i)) != s.Text(r, int(m[0])) {
+		if s.text(slot, i) != s.text(slot, m[0]) {
 			return true
 		}
 	}

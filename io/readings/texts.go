@@ -46,42 +46,62 @@ func (t *texts) bounds(i int) (from, to int) {
 	return from, page + int(t.ends[i])
 }
 
-// grow makes room for n texts of size bytes together.
-func (t *texts) grow(n, size int) {
-	t.data = make([]byte, 0, size)
-	t.ends = make([]uint32, 0, n)
-	t.pages = make([]int, 0, n>>pageBits+1)
-}
-
-// push appends a text to texts that grow made room for.
-func (t *texts) push(text string) {
-	if len(t.ends)&pageMask == 0 {
-		t.pages = append(t.pages, len(t.data))
-	}
+// add appends a text to the texts of a block.
+func (t *texts) add(text []byte) {
 	t.data = append(t.data, text...)
-	t.ends = append(t.ends, uint32(len(t.data)-t.pages[len(t.pages)-1]))
+	t.ends = append(t.ends, uint32(len(t.data)))
 }
 
-// pushBlock appends the texts of a block, or n empty ones if it has none.
-func (t *texts) pushBlock(o *texts, n int) {
-	if o.len() == 0 {
-		for range n {
-			t.push("")
-		}
+// remove takes texts out of the texts of a block: those with the numbers gone,
+// which rise and count from base.
+func (t *texts) remove(gone []int32, base int) {
+	if t.len() == 0 {
 		return
 	}
-	from := 0
-	for ends := o.ends; len(ends) > 0; {
-		if len(t.ends)&pageMask == 0 {
-			t.pages = append(t.pages, len(t.data))
+	n, size, from := 0, 0, 0
+	for i, end := range t.ends {
+		to := int(end)
+		if len(gone) > 0 && int(gone[0]) == base+i {
+			gone = gone[1:]
+		} else {
+			size += copy(t.data[size:], t.data[from:to])
+			t.ends[n] = uint32(size)
+			n++
 		}
-		k := min(len(ends), 1<<pageBits-len(t.ends)&pageMask)
-		shift := len(t.data) - t.pages[len(t.pages)-1] - from
-		for _, end := range ends[:k] {
-			t.ends = append(t.ends, uint32(int(end)+shift))
-		}
-		to := int(ends[k-1])
-		t.data = append(t.data, o.data[from:to]...)
-		from, ends = to, ends[k:]
+		from = to
 	}
+	t.data, t.ends = t.data[:size], t.ends[:n]
+}
+
+// join puts the texts of blocks together: those of blocks[k] become the texts
+// from start[k] to start[k+1], empty ones if it has none. each runs a function for
+// every k, in any order. The blocks lose theirs.
+func (t *texts) join(blocks []*texts, start []int, each func(f func(k int))) {
+	data := make([]int, len(blocks)) // where the bytes of each block begin
+	n, size := start[len(blocks)], 0
+	t.pages = make([]int, (n+pageMask)>>pageBits)
+	for k, b := range blocks {
+		data[k] = size
+		for page := (start[k] + pageMask) >> pageBits; page<<pageBits < start[k+1]; page++ {
+			t.pages[page] = size
+			if first := page<<pageBits - start[k]; first > 0 && b.len() > 0 {
+				t.pages[page] += int(b.ends[first-1])
+			}
+		}
+		size += len(b.data)
+	}
+	t.data = make([]byte, size)
+	t.ends = make([]uint32, n)
+	each(func(k int) {
+		b := blocks[k]
+		copy(t.data[data[k]:], b.data)
+		for i := start[k]; i < start[k+1]; i++ {
+			end := data[k]
+			if b.len() > 0 {
+				end += int(b.ends[i-start[k]])
+			}
+			t.ends[i] = uint32(end - t.pages[i>>pageBits])
+		}
+		*b = texts{}
+	})
 }
