@@ -3,6 +3,8 @@ package triangulate_test
 import (
 	"context"
 	"errors"
+	"fmt"
+	"math"
 	"runtime"
 	"runtime/debug"
 	"slices"
@@ -71,7 +73,7 @@ func TestProgress(t *testing.T) {
 		for _, workers := range []int{1, 2, 8} {
 			var inside atomic.Int32
 			var reports []int
-			checked(t, pts, triangulate.Options{Workers: workers, Progress: func(done, total int) {
+			_, err := triangulate.Delaunay(context.Background(), pts, triangulate.Options{Workers: workers, Progress: func(done, total int) {
 				if inside.Add(1) > 1 {
 					t.Errorf("%s: called while it was being called", name)
 				}
@@ -81,6 +83,9 @@ func TestProgress(t *testing.T) {
 				}
 				reports = append(reports, done)
 			}})
+			if err != nil {
+				t.Fatal(err)
+			}
 			if len(reports) == 0 || reports[len(reports)-1] != len(pts) || !slices.IsSorted(reports) {
 				t.Errorf("%s, %d workers: reports %v", name, workers, reports)
 				continue
@@ -141,7 +146,17 @@ func TestMemory(t *testing.T) {
 	}
 }
 
-// TestTooMany is about the message; making the points would take 5.6 GB.
+// TestManyWorkers: more goroutines than there is work for are not started.
+func TestManyWorkers(t *testing.T) {
+	pts := pointsets.Uniform(50_000, 1)
+	want := corners(checked(t, pts, triangulate.Options{Workers: 1}))
+	for _, workers := range []int{-1, 0, 1000, math.MaxInt} {
+		sameTriangles(t, fmt.Sprint(workers, " workers"), corners(checked(t, pts, triangulate.Options{Workers: workers})), want)
+	}
+}
+
+// TestNoShapeIsSlow: inputs that make halves, hulls or fans as long as can be take
+// a small multiple of the time of uniform points, not a power of it.
 func TestNoShapeIsSlow(t *testing.T) {
 	const n = 40_000
 	took := func(pts []orb.Point) time.Duration {

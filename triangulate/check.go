@@ -59,12 +59,12 @@ func (m *Mesh) checkLinks() error {
 		}
 	}
 	for h := range HalfEdge(len(m.half)) {
-		t := m.Twin(h)
+		t := m.half[h].twin
 		if t == NoHalfEdge {
 			continue
 		}
-		if m.Twin(t) != h {
-			return fmt.Errorf("half-edge %d: its twin %d has twin %d", h, t, m.Twin(t))
+		if m.half[t].twin != h {
+			return fmt.Errorf("half-edge %d: its twin %d has twin %d", h, t, m.half[t].twin)
 		}
 		if m.Origin(t) != m.Dest(h) || m.Dest(t) != m.Origin(h) {
 			return fmt.Errorf("half-edge %d runs %d→%d, its twin %d→%d", h, m.Origin(h), m.Dest(h), m.Origin(t), m.Dest(t))
@@ -74,7 +74,7 @@ func (m *Mesh) checkLinks() error {
 }
 
 func (m *Mesh) checkTriangles() error {
-	for t := range m.Triangles() {
+	for t := range Triangle(len(m.half) / 3) {
 		c := m.Corners(t)
 		if exact.Orient(m.pos[c[0]], m.pos[c[1]], m.pos[c[2]]) <= 0 {
 			return fmt.Errorf("triangle %d: corners %v %v %v are not counter-clockwise", t, m.pos[c[0]], m.pos[c[1]], m.pos[c[2]])
@@ -120,7 +120,7 @@ func (m *Mesh) checkHull() error {
 	if turned != 1 {
 		return fmt.Errorf("outline: goes round %d times", turned)
 	}
-	if got, want := m.NumTriangles(), 2*len(m.pos)-2-len(hull); got != want {
+	if got, want := len(m.half)/3, 2*len(m.pos)-2-len(hull); got != want {
 		return fmt.Errorf("%d triangles of %d vertices, %d on the outline: expected %d", got, len(m.pos), len(hull), want)
 	}
 	return nil
@@ -128,7 +128,7 @@ func (m *Mesh) checkHull() error {
 
 func (m *Mesh) checkEdges() error {
 	for h := range HalfEdge(len(m.half)) {
-		t := m.Twin(h)
+		t := m.half[h].twin
 		if t == NoHalfEdge {
 			continue
 		}

@@ -72,6 +72,7 @@ func removeLast(m *Mesh) {
 		}
 	}
 	m.half = m.half[:n]
+	m.shown = len(m.half)
 }
 
 func vertexAt(m *Mesh, p orb.Point) Vertex { return Vertex(slices.Index(m.pos, p)) }
@@ -246,6 +247,7 @@ func TestCheckSeesADoubleWinding(t *testing.T) {
 			half{1 + i, NoHalfEdge},
 			half{1 + (i+1)%5, (h + 3) % 15})
 	}
+	m.shown = len(m.half)
 	err := m.Check()
 	if err == nil || !strings.Contains(err.Error(), "goes round 2 times") {
 		t.Errorf("got %v", err)

@@ -74,7 +74,7 @@ func Delaunay(ctx context.Context, pts []orb.Point, opt Options) (*Mesh, error) 
 	if len(pts) > VerticesMost {
 		return nil, fmt.Errorf("%d points, expected at most %d: %w", len(pts), VerticesMost, ErrTooMany)
 	}
-	workers := opt.workers()
+	workers := min(opt.workers(), len(pts)/parallelLeast+1)
 	b := &builder{ctx: ctx, progress: opt.Progress, rec: make([]record, len(pts))}
 	if err := b.load(pts, workers); err != nil {
 		return nil, err

@@ -30,6 +30,7 @@ func (b *builder) finish(whole part, workers int) *Mesh {
 	if n >= 2 {
 		m.half = dropGhosts(m.half, b.ghosts(low))
 	}
+	m.shown = len(m.half)
 	return m
 }
 

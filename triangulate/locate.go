@@ -61,7 +61,7 @@ func (l *Locator) Locate(p orb.Point) Location {
 	if len(l.m.half) == 0 || !positionOK(p) {
 		return nowhere
 	}
-	return l.walk(l.m.starts.near(p), p)
+	return l.m.surface(l.walk(l.m.starts.near(p), p))
 }
 
 // LocateNext is Locate for a position that is likely near the one before: it
@@ -70,17 +70,34 @@ func (l *Locator) LocateNext(p orb.Point) Location {
 	if len(l.m.half) == 0 || !positionOK(p) {
 		return nowhere
 	}
-	return l.walk(l.last, p)
+	return l.m.surface(l.walk(l.last, p))
 }
 
-// walk goes from t towards p, each time across an edge that has p strictly on
+// surface is the location of a position that walk has found, hidden triangles
+// being no part of the surface.
+func (m *Mesh) surface(place Place, h HalfEdge) Location {
+	switch {
+	case place == OnVertex:
+		return m.onVertex(h)
+	case place == OnEdge:
+		return m.onEdge(h)
+	case place == Outside || int(h) >= m.shown:
+		return nowhere
+	}
+	return Location{Inside, h.Triangle(), NoHalfEdge, NoVertex}
+}
+
+// walk finds the place of p in the hull: a half-edge of the triangle it is in, or
+// the one it is on, or one that starts there; NoHalfEdge outside.
+//
+// It goes from t towards p, each time across an edge that has p strictly on
 // its other side.
 //
 // In a Delaunay mesh that ends whichever edge is tried first; with constrained
 // edges it could go round in circles for ever if the choice were fixed, so the
 // first edge to try changes from step to step (Devillers, Pion & Teillaud
 // 2002, the remembering stochastic walk).
-func (l *Locator) walk(t Triangle, p orb.Point) Location {
+func (l *Locator) walk(t Triangle, p orb.Point) (Place, HalfEdge) {
 	T, pos := l.m.half, l.m.pos
 	h := t.HalfEdge(0)
 	came := NoHalfEdge // the edge that we came over, p is left of it
@@ -100,7 +117,7 @@ step:
 					twin := T[e].twin
 					if twin == NoHalfEdge {
 						l.last = e.Triangle()
-						return nowhere
+						return Outside, NoHalfEdge
 					}
 					came = twin
 					l.turn = l.turn*1664525 + 1013904223
@@ -121,11 +138,11 @@ step:
 		l.last = h.Triangle()
 		switch zeros {
 		case 0:
-			return Location{Inside, h.Triangle(), NoHalfEdge, NoVertex}
+			return Inside, h
 		case 1:
-			return l.m.onEdge(onEdge)
+			return OnEdge, onEdge
 		}
-		return l.m.onVertex(onEdge)
+		return OnVertex, onEdge
 	}
 }
 
@@ -137,25 +154,43 @@ func ahead(dx, dy float64) bool { return dy < 0 || dy == 0 && dx > 0 }
 func (m *Mesh) onEdge(h HalfEdge) Location {
 	o, d := m.pos[m.Origin(h)], m.pos[m.Dest(h)]
 	// The signs of differences are exact in floating point.
-	if twin := m.half[h].twin; twin != NoHalfEdge && !ahead(d[0]-o[0], d[1]-o[1]) {
-		h = twin
+	first, second := h, m.half[h].twin
+	if second != NoHalfEdge && !ahead(d[0]-o[0], d[1]-o[1]) {
+		first, second = second, first
 	}
-	return Location{OnEdge, h.Triangle(), h, NoVertex}
+	if int(first) >= m.shown {
+		first = second
+	}
+	if first == NoHalfEdge || int(first) >= m.shown {
+		return nowhere
+	}
+	return Location{OnEdge, first.Triangle(), first, NoVertex}
 }
 
 // onVertex is the location at the origin of h.
 func (m *Mesh) onVertex(h HalfEdge) Location {
 	v := m.half[h].origin
 	p := m.pos[v]
+	// The triangle that holds p + (e, e²), or the one after the outside of the
+	// hull; from there on, the first that shows.
 	first := m.firstClockwise(h)
+	owner := first
 	for e := first; ; {
 		a, b := m.pos[m.Dest(e)], m.pos[m.Apex(e)]
 		if ahead(a[0]-p[0], a[1]-p[1]) && ahead(p[0]-b[0], p[1]-b[1]) {
+			owner = e
+			break
+		}
+		if e = m.turn(e); e == first {
+			break
+		}
+	}
+	for e := owner; ; {
+		if int(e) < m.shown {
 			return Location{OnVertex, e.Triangle(), e, v}
 		}
-		e = m.half[e.prev()].twin
-		if e == NoHalfEdge || e == first {
-			return Location{OnVertex, first.Triangle(), first, v}
+		if e = m.turn(e); e == owner {
+			return nowhere
 		}
 	}
 }
@@ -206,10 +241,10 @@ func (m *Mesh) LocateIn(t Triangle, p orb.Point) Location {
 	if ahead(a[0]-p[0], a[1]-p[1]) && ahead(p[0]-b[0], p[1]-b[1]) {
 		return Location{OnVertex, t, onEdge, v}
 	}
-	if m.half[onEdge].twin != NoHalfEdge {
+	if m.Twin(onEdge) != NoHalfEdge {
 		return nowhere
 	}
-	// The first triangle of a vertex of the outline owns it if no other does.
+	// The first triangle after the outside owns a vertex if no other does.
 	if loc := m.onVertex(onEdge); loc.Triangle == t {
 		return loc
 	}

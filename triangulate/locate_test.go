@@ -42,7 +42,7 @@ func locateSlowly(m *triangulate.Mesh, p orb.Point) triangulate.Location {
 		// clockwise about p is the one whose first edge has the least angle.
 		owner = touching[0]
 		for _, t := range touching[1:] {
-			if sooner(firstDirection(m, t, p), firstDirection(m, owner, p)) {
+			if sooner(p, firstMet(m, t, p), firstMet(m, owner, p)) {
 				owner = t
 			}
 		}
@@ -88,24 +88,22 @@ func holdsShifted(m *triangulate.Mesh, t triangulate.Triangle, p orb.Point) bool
 	return true
 }
 
-// firstDirection is the direction in which a turn about p, counter-clockwise,
-// enters t: along the half-edge that starts at p, or to the far end of the one
-// that p lies on.
-func firstDirection(m *triangulate.Mesh, t triangulate.Triangle, p orb.Point) orb.Point {
+// firstMet is where the edge ends over which a turn about p, counter-clockwise,
+// enters t: the half-edge that starts at p, or the one that p lies on.
+func firstMet(m *triangulate.Mesh, t triangulate.Triangle, p orb.Point) orb.Point {
 	for i := range 3 {
 		h := t.HalfEdge(i)
 		if m.Position(m.Dest(h)) != p && side(m, m.Origin(h), m.Dest(h), p) == 0 {
-			d := m.Position(m.Dest(h))
-			return orb.Point{d[0] - p[0], d[1] - p[1]}
+			return m.Position(m.Dest(h))
 		}
 	}
 	panic("p is inside")
 }
 
-// sooner orders directions by their angle in (0, 2π].
-func sooner(a, b orb.Point) bool {
+// sooner orders a and b by their direction from p, an angle in (0, 2π].
+func sooner(p, a, b orb.Point) bool {
 	half := func(d orb.Point) int {
-		if d[1] > 0 || d[1] == 0 && d[0] < 0 {
+		if d[1] > p[1] || d[1] == p[1] && d[0] < p[0] {
 			return 0 // (0, π]
 		}
 		return 1
@@ -113,7 +111,7 @@ func sooner(a, b orb.Point) bool {
 	if half(a) != half(b) {
 		return half(a) < half(b)
 	}
-	return exact.Orient(orb.Point{}, a, b) > 0
+	return exact.Orient(p, a, b) > 0
 }
 
 // places are positions of every kind about a mesh: at vertices, on edges, inside

@@ -71,10 +71,15 @@ type half struct {
 
 // Mesh is a finished triangulation. It is read-only and safe to share among
 // goroutines; what changes during a query lives in a Locator.
+//
+// Triangles may be hidden (see Hide): they are no part of the surface and no
+// method shows them, but walks still pass through them, so that finding a
+// position needs no more care than in a convex mesh.
 type Mesh struct {
 	pos      []orb.Point // of every vertex
 	half     []half      // three a triangle
 	vertexOf []Vertex    // of every input point
+	shown    int         // half-edges of the surface; hidden triangles follow them
 
 	kept   bits        // of every half-edge, whether it is constrained; nil for none
 	chains []chainEdge // what the segments are made of, sorted
@@ -90,10 +95,10 @@ type Mesh struct {
 func (m *Mesh) NumVertices() int { return len(m.pos) }
 
 // NumTriangles returns the number of triangles; 0 when all positions lie on one line.
-func (m *Mesh) NumTriangles() int { return len(m.half) / 3 }
+func (m *Mesh) NumTriangles() int { return m.shown / 3 }
 
 // NumHalfEdges returns three times the number of triangles.
-func (m *Mesh) NumHalfEdges() int { return len(m.half) }
+func (m *Mesh) NumHalfEdges() int { return m.shown }
 
 // NumInputs returns the number of points that the mesh was made from.
 func (m *Mesh) NumInputs() int { return len(m.vertexOf) }
@@ -116,7 +121,13 @@ func (m *Mesh) Apex(h HalfEdge) Vertex { return m.half[h.prev()].origin }
 
 // Twin returns the half-edge that runs the other way in the neighbouring
 // triangle, or NoHalfEdge where h lies on the outline.
-func (m *Mesh) Twin(h HalfEdge) HalfEdge { return m.half[h].twin }
+func (m *Mesh) Twin(h HalfEdge) HalfEdge {
+	t := m.half[h].twin
+	if int(t) >= m.shown {
+		return NoHalfEdge
+	}
+	return t
+}
 
 // Next returns the half-edge after h, counter-clockwise in its triangle.
 func (m *Mesh) Next(h HalfEdge) HalfEdge { return h.next() }
@@ -159,7 +170,7 @@ func (m *Mesh) Vertices() iter.Seq[Vertex] {
 // Triangles ranges over all triangles in the order of their numbers.
 func (m *Mesh) Triangles() iter.Seq[Triangle] {
 	return func(yield func(Triangle) bool) {
-		for t := range len(m.half) / 3 {
+		for t := range m.shown / 3 {
 			if !yield(Triangle(t)) {
 				return
 			}
@@ -168,9 +179,10 @@ func (m *Mesh) Triangles() iter.Seq[Triangle] {
 }
 
 // Around ranges over the half-edges that start at v, counter-clockwise. At a
-// vertex on the outline it begins with the half-edge that has the outside on
-// its right, so that the triangles come in one sweep; the last edge of that
-// sweep, which only enters v, is Prev of the last half-edge.
+// vertex on the outline it begins with one that has the outside on its right;
+// the edge that ends the sweep there only enters v, as Prev of the sweep's last
+// half-edge. (Where hidden triangles part the surface at v there are several
+// sweeps.)
 //
 // The first call on a mesh makes an index of 4 bytes a vertex.
 func (m *Mesh) Around(v Vertex) iter.Seq[HalfEdge] {
@@ -180,19 +192,27 @@ func (m *Mesh) Around(v Vertex) iter.Seq[HalfEdge] {
 			return
 		}
 		for h := first; ; {
-			if !yield(h) {
+			if int(h) < m.shown && !yield(h) {
 				return
 			}
-			h = m.half[h.prev()].twin
-			if h == NoHalfEdge || h == first {
+			if h = m.turn(h); h == first {
 				return
 			}
 		}
 	}
 }
 
+// turn returns the next half-edge counter-clockwise about the origin of h,
+// hidden ones included, over the outside of the hull if need be.
+func (m *Mesh) turn(h HalfEdge) HalfEdge {
+	if t := m.half[h.prev()].twin; t != NoHalfEdge {
+		return t
+	}
+	return m.firstClockwise(h)
+}
+
 // firstAround returns the half-edge at which a turn about v begins: on the
-// outline the one with no triangle on its right, elsewhere any fixed one;
+// outline one with no triangle on its right, elsewhere any fixed one;
 // NoHalfEdge when v has no triangle.
 func (m *Mesh) firstAround(v Vertex) HalfEdge {
 	m.aroundOnce.Do(func() {
@@ -200,9 +220,9 @@ func (m *Mesh) firstAround(v Vertex) HalfEdge {
 		for i := range a {
 			a[i] = NoHalfEdge
 		}
-		for h, e := range m.half {
-			if a[e.origin] == NoHalfEdge || e.twin == NoHalfEdge {
-				a[e.origin] = HalfEdge(h)
+		for h := range HalfEdge(m.shown) {
+			if o := m.half[h].origin; a[o] == NoHalfEdge || m.Twin(h) == NoHalfEdge {
+				a[o] = h
 			}
 		}
 		m.around = a

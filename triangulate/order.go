@@ -78,7 +78,7 @@ func (m *Mesh) Hull() []Vertex {
 	}
 	start := NoHalfEdge
 	for h := range HalfEdge(len(m.half)) {
-		if m.Twin(h) == NoHalfEdge &&
+		if m.half[h].twin == NoHalfEdge &&
 			(start == NoHalfEdge || exact.CompareXY(m.pos[m.Origin(h)], m.pos[m.Origin(start)]) < 0) {
 			start = h
 		}
@@ -86,19 +86,57 @@ func (m *Mesh) Hull() []Vertex {
 	var hull []Vertex
 	for h := start; ; {
 		hull = append(hull, m.Origin(h))
-		h = m.nextOutside(h)
+		h = h.next()
+		for m.half[h].twin != NoHalfEdge {
+			h = m.half[h].twin.next()
+		}
 		if h == start {
 			return hull
 		}
 	}
 }
 
+// Outline returns every rim of the surface as a ring of half-edges, the surface
+// on their left: outer rims run counter-clockwise, rims of voids clockwise. Where
+// the surface touches itself at a vertex a ring turns back rather than crossing.
+// Rings begin at their smallest vertex in (x, y) order and are sorted by it, and
+// by the next. Time O(half-edges).
+func (m *Mesh) Outline() [][]HalfEdge {
+	seen := map[HalfEdge]bool{}
+	var rings [][]HalfEdge
+	for start := range HalfEdge(m.shown) {
+		if m.Twin(start) != NoHalfEdge || seen[start] {
+			continue
+		}
+		var ring []HalfEdge
+		least := 0
+		for h := start; !seen[h]; h = m.nextOutside(h) {
+			seen[h] = true
+			ring = append(ring, h)
+			if m.compareRim(h, ring[least]) < 0 {
+				least = len(ring) - 1
+			}
+		}
+		rings = append(rings, slices.Concat(ring[least:], ring[:least]))
+	}
+	slices.SortFunc(rings, func(a, b []HalfEdge) int { return m.compareRim(a[0], b[0]) })
+	return rings
+}
+
+// compareRim orders half-edges by the places of origin and destination.
+func (m *Mesh) compareRim(g, h HalfEdge) int {
+	if c := exact.CompareXY(m.pos[m.Origin(g)], m.pos[m.Origin(h)]); c != 0 {
+		return c
+	}
+	return exact.CompareXY(m.pos[m.Dest(g)], m.pos[m.Dest(h)])
+}
+
 // nextOutside returns the half-edge after the outline's h, counter-clockwise
 // round the surface.
 func (m *Mesh) nextOutside(h HalfEdge) HalfEdge {
 	h = h.next()
-	for m.half[h].twin != NoHalfEdge {
-		h = m.half[h].twin.next()
+	for m.Twin(h) != NoHalfEdge {
+		h = m.Twin(h).next()
 	}
 	return h
 }

@@ -41,20 +41,17 @@ func (l *Locator) Cross(a, b orb.Point) iter.Seq[Crossing] {
 			return
 		}
 		w := walker{m: l.m, a: a, b: b, yield: yield}
-		at := l.Locate(a)
-		switch at.Place {
+		switch place, h := l.walk(l.m.starts.near(a), a); place {
 		case Outside:
-			if a != b {
-				w.fromOutside()
-			}
+			w.fromOutside()
 		case Inside:
 			if a != b {
-				w.fromInside(at.Triangle)
+				w.fromInside(h.Triangle())
 			}
 		case OnEdge:
-			w.fromEdge(at.Edge)
+			w.fromEdge(h)
 		case OnVertex:
-			w.fromVertex(at.Edge)
+			w.fromVertex(h)
 		}
 	}
 }
@@ -67,6 +64,35 @@ type walker struct {
 	m     *Mesh
 	a, b  orb.Point
 	yield func(Crossing) bool
+}
+
+// meet hands on a crossing as the surface has it: without triangles that are
+// hidden, and not at all where all about it are.
+func (w *walker) meet(c Crossing) bool {
+	m := w.m
+	if c.Into != NoTriangle && 3*int(c.Into) >= m.shown {
+		c.Into = NoTriangle
+	}
+	c.Along = m.showing(c.Along)
+	if c.Place == OnEdge {
+		if c.Edge = m.showing(c.Edge); c.Edge == NoHalfEdge {
+			return true
+		}
+	} else if m.firstAround(c.Vertex) == NoHalfEdge {
+		return true
+	}
+	return w.yield(c)
+}
+
+// showing returns h, or its twin if h is hidden, or NoHalfEdge if both are.
+func (m *Mesh) showing(h HalfEdge) HalfEdge {
+	if h != NoHalfEdge && int(h) >= m.shown {
+		h = m.half[h].twin
+	}
+	if int(h) >= m.shown {
+		return NoHalfEdge
+	}
+	return h
 }
 
 // side is the side of the line a→b on which v lies.
@@ -121,10 +147,10 @@ func (w *walker) over(h HalfEdge) {
 		}
 		twin := w.m.half[h].twin
 		if s == 0 || twin == NoHalfEdge {
-			w.yield(Crossing{OnEdge, NoVertex, h, NoTriangle, NoHalfEdge})
+			w.meet(Crossing{OnEdge, NoVertex, h, NoTriangle, NoHalfEdge})
 			return
 		}
-		if !w.yield(Crossing{OnEdge, NoVertex, twin, twin.Triangle(), NoHalfEdge}) {
+		if !w.meet(Crossing{OnEdge, NoVertex, twin, twin.Triangle(), NoHalfEdge}) {
 			return
 		}
 		if h = w.out(twin); h == NoHalfEdge {
@@ -149,7 +175,7 @@ func (w *walker) out(h HalfEdge) HalfEdge {
 
 // enter goes on from a place on half-edge h, between its ends, b not to its right.
 func (w *walker) enter(h HalfEdge) {
-	if w.yield(Crossing{OnEdge, NoVertex, h, h.Triangle(), NoHalfEdge}) {
+	if w.meet(Crossing{OnEdge, NoVertex, h, h.Triangle(), NoHalfEdge}) {
 		if next := w.out(h); next != NoHalfEdge {
 			w.over(next)
 		}
@@ -162,7 +188,7 @@ func (w *walker) fromEdge(h HalfEdge) {
 	s := w.sideOf(h, w.b)
 	switch {
 	case w.a == w.b || s < 0 && twin == NoHalfEdge:
-		w.yield(Crossing{OnEdge, NoVertex, h, NoTriangle, NoHalfEdge})
+		w.meet(Crossing{OnEdge, NoVertex, h, NoTriangle, NoHalfEdge})
 	case s > 0:
 		w.enter(h)
 	case s < 0:
@@ -175,7 +201,7 @@ func (w *walker) fromEdge(h HalfEdge) {
 				h = twin
 			}
 		}
-		if w.yield(Crossing{OnEdge, NoVertex, h, NoTriangle, h}) {
+		if w.meet(Crossing{OnEdge, NoVertex, h, NoTriangle, h}) {
 			w.reach(next)
 		}
 	}
@@ -193,7 +219,7 @@ func (w *walker) fromVertex(h HalfEdge) {
 		if into != NoHalfEdge {
 			c.Into = into.Triangle()
 		}
-		if !w.yield(c) {
+		if !w.meet(c) {
 			return
 		}
 		if into != NoHalfEdge {
@@ -272,7 +298,7 @@ func (w *walker) sooner(h, g HalfEdge) bool {
 // comeIn crosses the outline's half-edge h inwards, or ends on it.
 func (w *walker) comeIn(h HalfEdge) {
 	if w.sideOf(h, w.b) == 0 {
-		w.yield(Crossing{OnEdge, NoVertex, h, NoTriangle, NoHalfEdge})
+		w.meet(Crossing{OnEdge, NoVertex, h, NoTriangle, NoHalfEdge})
 		return
 	}
 	w.enter(h)
