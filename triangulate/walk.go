@@ -43,7 +43,9 @@ func (l *Locator) Cross(a, b orb.Point) iter.Seq[Crossing] {
 		w := walker{m: l.m, a: a, b: b, yield: yield}
 		switch place, h := l.walk(l.m.starts.near(a), a); place {
 		case Outside:
-			w.fromOutside()
+			if a != b {
+				w.fromOutside()
+			}
 		case Inside:
 			if a != b {
 				w.fromInside(h.Triangle())
