@@ -1,0 +1,225 @@
+package main
+
+import (
+	"bufio"
+	"fmt"
+	"io"
+	"math"
+	"strings"
+
+	"github.com/paulmach/orb"
+	"github.com/spf13/cobra"
+
+	"isofacet/cmd/internal/advice"
+	"isofacet/cmd/internal/option"
+	"isofacet/interp"
+	"isofacet/io/numtext"
+	"isofacet/io/readings"
+	"isofacet/triangulate"
+)
+
+// places are what is asked about: positions, each with a row of its own columns.
+type places struct {
+	points []orb.Point
+	names  []string
+	// row appends the fields of row i.
+	row func(dst []string, i int) []string
+}
+
+func typedPlaces(list []option.Place) *places {
+	p := &places{names: []string{"x", "y"}}
+	for _, t := range list {
+		p.points = append(p.points, orb.Point{t.X, t.Y})
+	}
+	p.row = func(dst []string, i int) []string { return append(dst, list[i].TextX, list[i].TextY) }
+	return p
+}
+
+func filePlaces(found *readings.Positions) *places {
+	return &places{found.Points, found.Names, found.Row}
+}
+
+// answerNames head the columns of the answers.
+var answerNames = []string{"surface_z", "slope", "downhill_azimuth", "place"}
+
+// explainNames head the columns of --explain.
+func explainNames() []string {
+	names := []string{"triangle"}
+	for i := 1; i <= 3; i++ {
+		for _, part := range []string{"id", "x", "y", "z", "weight"} {
+			names = append(names, fmt.Sprintf("%s_%d", part, i))
+		}
+	}
+	return names
+}
+
+// bytesPlace is what a place takes: position and answer (40), the order of the
+// visits (20), and its row as written.
+const bytesPlace = 120
+
+// queryResult is what the run record says of the answers.
+type queryResult struct {
+	Extent  extents       `json:"extent"`
+	Surface surfaceCounts `json:"surface"`
+	Asked   int           `json:"asked"`
+	Outside int           `json:"outside"`
+}
+
+// answer asks the surface and writes the table.
+func (q *queryCommand) answer(cmd *cobra.Command, list []*input, l *loaded, asked *places, out *outputs) error {
+	need := uint64(l.set.Len())*bytesVertex + uint64(len(asked.points))*bytesPlace
+	if err := q.announce("asking at "+counted(len(asked.points), "place"), need); err != nil {
+		return err
+	}
+	samples, err := l.surface.Query(cmd.Context(), asked.points, q.workers())
+	if err != nil {
+		return err
+	}
+	result := &queryResult{Extent: l.extents(q.decimals), Surface: l.surfaceCounts(q.decimals), Asked: len(samples)}
+	for i := range samples {
+		if samples[i].Location.Place == triangulate.Outside {
+			result.Outside++
+		}
+	}
+	q.report.Note(fmt.Sprintf("places: %d asked, %d outside the surface", result.Asked, result.Outside), "asked", result.Asked, "outside", result.Outside)
+	if result.Outside == result.Asked && result.Asked > 0 {
+		q.report.Warn("all-outside", "every place lies outside the surface: are x and y in the right order?")
+	}
+	q.warnOfLongOutline(l, advice.MaxEdge(advice.Spacing(l.surface.Mesh(), q.workers())))
+	if err := q.settleWarnings(); err != nil {
+		return err
+	}
+	if q.rec != nil {
+		q.recordReadings(list, l)
+		q.rec.Stable.Result = result
+	}
+	t := q.table(l, asked, samples)
+	for _, d := range out.list {
+		if err := out.write(d, func(d *destination) error { return t.write(d.w) }); err != nil {
+			return err
+		}
+	}
+	return out.commit()
+}
+
+// A table writes answers as CSV.
+type table struct {
+	l       *loaded
+	asked   *places
+	samples []interp.Sample
+
+	z, slope, azimuth, xy, weight int // digits after the point
+	numbers                       map[triangulate.Triangle]int
+	inputs                        []int32 // of every vertex the first reading; nil unless explained
+}
+
+func (q *queryCommand) table(l *loaded, asked *places, samples []interp.Sample) *table {
+	t := &table{l: l, asked: asked, samples: samples}
+	t.xy, t.z = l.digits(q.decimals)
+	t.slope, t.azimuth, t.weight = q.decimals.Resolve(slopeDigits), q.decimals.Resolve(azimuthDigits), q.decimals.Resolve(weightDigits)
+	if q.explain {
+		m := l.surface.Mesh()
+		t.inputs = m.Inputs()
+		t.numbers = map[triangulate.Triangle]int{}
+		for i := range samples {
+			t.numbers[samples[i].Location.Triangle] = 0
+		}
+		n := 0
+		for triangle := range m.CanonicalTriangles(m.Rank()) {
+			n++
+			if _, asked := t.numbers[triangle]; asked {
+				t.numbers[triangle] = n
+			}
+		}
+	}
+	return t
+}
+
+// write writes the header and a row a place.
+func (t *table) write(w io.Writer) error {
+	b := bufio.NewWriterSize(w, 1<<16)
+	names := append(append([]string{}, t.asked.names...), answerNames...)
+	if t.inputs != nil {
+		names = append(names, explainNames()...)
+	}
+	row := appendFields(nil, names)
+	var fields []string
+	for i := range t.samples {
+		row[len(row)-1] = '\n'
+		if _, err := b.Write(row); err != nil {
+			return err
+		}
+		fields = t.asked.row(fields[:0], i)
+		row = appendFields(row[:0], fields)
+		row = t.appendAnswer(row, i)
+	}
+	row[len(row)-1] = '\n'
+	if _, err := b.Write(row); err != nil {
+		return err
+	}
+	return b.Flush()
+}
+
+// appendAnswer appends the answer at place i, a comma behind every field.
+func (t *table) appendAnswer(row []byte, i int) []byte {
+	s := &t.samples[i]
+	loc := s.Location
+	if loc.Place == triangulate.Outside {
+		row = append(row, ",,,outside,"...)
+		if t.inputs != nil {
+			row = append(row, strings.Repeat(",", len(explainNames()))...)
+		}
+		return row
+	}
+	dzdx, dzdy := t.l.surface.Gradient(loc.Triangle)
+	row = append(numtext.Append(row, s.Z, t.z), ',')
+	row = append(numtext.Append(row, interp.Slope(dzdx, dzdy), t.slope), ',')
+	if azimuth := interp.DownhillAzimuth(dzdx, dzdy); !math.IsNaN(azimuth) {
+		row = numtext.Append(row, azimuth, t.azimuth)
+	}
+	row = append(row, ',')
+	row = append(append(row, loc.Place.String()...), ',')
+	if t.inputs != nil {
+		row = t.appendReasons(row, i)
+	}
+	return row
+}
+
+// appendReasons appends the triangle, its readings and their weights.
+func (t *table) appendReasons(row []byte, i int) []byte {
+	loc := t.samples[i].Location
+	row = append(numtext.Append(row, float64(t.numbers[loc.Triangle]), 0), ',')
+	corners, weights := t.l.surface.Weights(loc, t.asked.points[i])
+	for k, v := range corners {
+		at := t.l.surface.Mesh().Position(v)
+		row = append(appendField(row, t.l.set.ID(int(t.inputs[v]))), ',')
+		row = append(numtext.Append(row, at[0], t.xy), ',')
+		row = append(numtext.Append(row, at[1], t.xy), ',')
+		row = append(numtext.Append(row, t.l.surface.Z()[v], t.z), ',')
+		row = append(numtext.Append(row, weights[k], t.weight), ',')
+	}
+	return row
+}
+
+// appendFields appends fields with a comma behind each.
+func appendFields(row []byte, fields []string) []byte {
+	for _, f := range fields {
+		row = append(appendField(row, f), ',')
+	}
+	return row
+}
+
+// appendField appends a text, in quotes where RFC 4180 asks for them.
+func appendField(row []byte, text string) []byte {
+	if !strings.ContainsAny(text, ",\"\r\n") {
+		return append(row, text...)
+	}
+	row = append(row, '"')
+	for i := range len(text) {
+		if text[i] == '"' {
+			row = append(row, '"')
+		}
+		row = append(row, text[i])
+	}
+	return append(row, '"')
+}

@@ -1,0 +1,265 @@
+package main
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"math"
+
+	"github.com/paulmach/orb"
+
+	"isofacet/cmd/internal/option"
+	"isofacet/cmd/internal/record"
+	"isofacet/cmd/internal/status"
+	"isofacet/grid"
+	"isofacet/interp"
+	"isofacet/io/readings"
+	"isofacet/triangulate"
+)
+
+// loaded is what every command begins with: the readings and the surface through
+// them.
+type loaded struct {
+	set     *readings.Set
+	bound   orb.Bound
+	zRange  [2]float64
+	surface *interp.Surface
+}
+
+// bytesReading is what a reading takes in memory until the surface stands: its
+// columns (28 bytes and some text), the surface's own values (8), and what the
+// triangulation takes while it works (92).
+const bytesReading = 150
+
+// load reads the inputs, says what was found in them, and triangulates.
+func (p *program) load(ctx context.Context, r *reading, list []*input) (*loaded, error) {
+	set, err := p.read(ctx, r, list)
+	if err != nil {
+		return nil, err
+	}
+	l := &loaded{set: set}
+	l.measure()
+	p.tellReadings(list, set)
+	if set.Len() == 0 {
+		return nil, status.With(status.WrongData, fmt.Errorf("no reading is used of %d: expected at least three that are not in line", set.Counts.Read))
+	}
+	need := uint64(set.Len()) * bytesReading
+	if err := p.announce("a surface of "+counted(set.Len(), "reading"), need); err != nil {
+		return nil, err
+	}
+	report, finish := p.display.Stage("triangulating")
+	m, err := triangulate.Delaunay(ctx, set.Points, triangulate.Options{Workers: p.workers(), Progress: report})
+	finish()
+	if err != nil {
+		return nil, l.whichReading(list, err)
+	}
+	if l.surface, err = interp.FromInputs(m, set.Z); err != nil {
+		return nil, l.whichReading(list, err)
+	}
+	return l, nil
+}
+
+// read reads the readings.
+func (p *program) read(ctx context.Context, r *reading, list []*input) (*readings.Set, error) {
+	opt := readings.Options{
+		Declared: r.declared(),
+		Lenient:  bool(r.lenient),
+		Select:   readings.Selection{Only: r.only.values, Without: r.without.values},
+		Spots:    r.spots(),
+		Workers:  p.workers(),
+	}
+	if r.exclude.set {
+		x, err := p.readExclusions(r.exclude.text)
+		if err != nil {
+			return nil, err
+		}
+		opt.Select.Exclude = x
+	}
+	report, finish := p.display.Stage("reading")
+	defer finish()
+	if report != nil {
+		opt.Progress = func(done, total int64) { report(int(done), int(total)) }
+	}
+	var sources []readings.Source
+	for _, in := range list {
+		sources = append(sources, in.Source)
+	}
+	return readings.Read(ctx, sources, opt)
+}
+
+// readExclusions reads the file of readings to leave out, and says what in it does
+// not count.
+func (p *program) readExclusions(name string) (*readings.Exclusions, error) {
+	in, err := p.input(name)
+	if err != nil {
+		return nil, err
+	}
+	x, err := readings.ReadExclusions(in.Source, readings.Declared{})
+	if err != nil {
+		return nil, err
+	}
+	p.report.Note(fmt.Sprintf("exclude: %s: %s to leave out, %d with another decision", name, counted(x.Len(), "row"), x.Other))
+	if n := len(x.NoReason); n > 0 {
+		p.report.Warn("no-reason", fmt.Sprintf("%s: %s to leave out without a reason, the first in line %d: not followed", name, counted(n, "row"), x.NoReason[0]))
+	}
+	return x, nil
+}
+
+// measure finds the extents of the used readings.
+func (l *loaded) measure() {
+	inf := math.Inf(1)
+	l.bound = orb.Bound{Min: orb.Point{inf, inf}, Max: orb.Point{-inf, -inf}}
+	l.zRange = [2]float64{inf, -inf}
+	for i, pt := range l.set.Points {
+		for k := range 2 {
+			l.bound.Min[k] = min(l.bound.Min[k], pt[k])
+			l.bound.Max[k] = max(l.bound.Max[k], pt[k])
+		}
+		z := l.set.Z[i]
+		l.zRange[0], l.zRange[1] = min(l.zRange[0], z), max(l.zRange[1], z)
+	}
+}
+
+// whichReading turns an error about a numbered point into one about a line of a
+// file.
+func (l *loaded) whichReading(list []*input, err error) error {
+	index := -1
+	if e, ok := errors.AsType[*triangulate.PositionError](err); ok {
+		index = e.Index
+	}
+	if e, ok := errors.AsType[*interp.ValueError](err); ok {
+		index = e.Index
+	}
+	if index < 0 {
+		return err
+	}
+	return status.With(status.WrongData, fmt.Errorf("%s:%d: %w", list[l.set.Source(index)].Name, l.set.Lines[index], err))
+}
+
+// needsTriangles refuses to go on without a surface.
+func (l *loaded) needsTriangles() error {
+	m := l.surface.Mesh()
+	if m.NumTriangles() > 0 {
+		return nil
+	}
+	why := "all on one line"
+	if m.NumVertices() < 3 {
+		why = "fewer than three places"
+	}
+	return status.With(status.WrongData, fmt.Errorf("%s at %s, %s: no surface: expected at least three places that are not in line",
+		counted(l.set.Len(), "reading"), counted(m.NumVertices(), "place"), why),
+		"two readings give a slope along one line only; add readings to its side")
+}
+
+// labels returns what the numbers are, for every output.
+func (r *reading) labels(show string) grid.Labels {
+	return grid.Labels{
+		CRS:             r.crs.String(),
+		HorizontalDatum: r.horizontalDatum.String(),
+		VerticalDatum:   r.verticalDatum.String(),
+		Show:            show,
+	}
+}
+
+// fewLines is how many readings that are not used are named one by one; inspect
+// names all of them.
+const fewLines = 10
+
+// tellReadings says how each input was read and what became of its readings.
+func (p *program) tellReadings(list []*input, set *readings.Set) {
+	for i := range set.Layouts {
+		list[i].file.Layout = set.Layouts[i].String()
+		p.report.Note("text: "+set.Layouts[i].File+": "+set.Layouts[i].String(), "file", set.Layouts[i].File, "layout", set.Layouts[i].String())
+	}
+	for _, w := range set.Warnings {
+		p.report.Warn("reading", w.String(), "file", w.File, "line", w.Line)
+	}
+	for n, u := range p.notUsed(list, set) {
+		if n == p.listMost {
+			p.report.Note(fmt.Sprintf("and %d more; inspect lists all", set.Counts.Read-set.Counts.Used-n))
+			break
+		}
+		p.report.Note(fmt.Sprintf("%s: %s:%d: %s", u.What, u.File, u.Line, u.Reason), "file", u.File, "line", u.Line, "id", u.ID, "reason", u.Reason)
+	}
+	c := set.Counts
+	p.report.Note(fmt.Sprintf("readings: %d read, %d used, %d merged, %d left out, %d refused", c.Read, c.Used, c.Merged, c.LeftOut, c.Refused),
+		"read", c.Read, "used", c.Used, "merged", c.Merged, "left_out", c.LeftOut, "refused", c.Refused)
+	if set.SpotCount > 0 {
+		p.report.Note(fmt.Sprintf("same spot: %s with several readings, largest spread of z %v", counted(set.SpotCount, "place"), set.SpotSpread),
+			"places", set.SpotCount, "spread", set.SpotSpread)
+	}
+}
+
+// notUsed lists every reading that the surface does not have: merged, left out,
+// refused.
+func (p *program) notUsed(list []*input, set *readings.Set) []record.NotUsed {
+	all := make([]record.NotUsed, 0, set.Counts.Read-set.Counts.Used)
+	for _, m := range set.Merged {
+		into := list[set.Source(m.Into)].Name
+		reason := fmt.Sprintf("at the place of line %d", set.Lines[m.Into])
+		if int(m.File) != set.Source(m.Into) {
+			reason = fmt.Sprintf("at the place of %s:%d", into, set.Lines[m.Into])
+		}
+		all = append(all, record.NotUsed{File: list[m.File].Name, Line: int(m.Line), ID: m.ID, What: "merged", Reason: reason})
+	}
+	for _, o := range set.LeftOut {
+		all = append(all, record.NotUsed{File: list[o.File].Name, Line: int(o.Line), ID: o.ID, What: "left out", Reason: o.Reason})
+	}
+	for _, e := range set.Refused {
+		reason := e.What
+		if e.Seen != "" {
+			reason = fmt.Sprintf("%s %q", e.What, e.Seen)
+		}
+		all = append(all, record.NotUsed{File: e.File, Line: e.Line, What: "refused", Reason: reason + ": expected " + e.Expected})
+	}
+	return all
+}
+
+// digits returns the digits after the point for coordinates and for values.
+func (l *loaded) digits(d option.Decimals) (xy, z int) {
+	return d.Resolve(l.set.DecimalsXY + 2), d.Resolve(l.set.DecimalsZ + 2)
+}
+
+// extents returns the extents as they are written.
+func (l *loaded) extents(d option.Decimals) extents {
+	xy, z := l.digits(d)
+	return extents{
+		number{l.bound.Min[0], xy}, number{l.bound.Min[1], xy}, number{l.bound.Max[0], xy}, number{l.bound.Max[1], xy},
+		number{l.zRange[0], z}, number{l.zRange[1], z},
+	}
+}
+
+// surfaceCounts returns the surface's counts and sums as they are written.
+func (l *loaded) surfaceCounts(d option.Decimals) surfaceCounts {
+	xy, z := l.digits(d)
+	m := l.surface.Mesh()
+	c := surfaceCounts{
+		Vertices: m.NumVertices(), Triangles: m.NumTriangles(),
+		Area: number{l.surface.Area(), xy}, VolumeAboveZero: number{l.surface.VolumeAboveZero(), z},
+	}
+	if m.NumTriangles() > 0 {
+		c.OutlineVertices = len(m.Hull())
+	}
+	return c
+}
+
+// Digits of what has no decimals of its own to go by, under --decimals auto.
+const (
+	slopeDigits   = 6 // a rise of one millimetre over a kilometre
+	azimuthDigits = 3 // less than two centimetres to the side over a kilometre
+	weightDigits  = 6
+)
+
+// tellSurface says what the surface is.
+func (p *program) tellSurface(l *loaded) {
+	m := l.surface.Mesh()
+	p.report.Note(fmt.Sprintf("surface: %s, %s", countedVertices(m.NumVertices()), counted(m.NumTriangles(), "triangle")),
+		"vertices", m.NumVertices(), "triangles", m.NumTriangles())
+}
+
+func countedVertices(n int) string {
+	if n == 1 {
+		return "1 vertex"
+	}
+	return fmt.Sprintf("%d vertices", n)
+}

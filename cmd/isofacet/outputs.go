@@ -1,0 +1,305 @@
+package main
+
+import (
+	"errors"
+	"fmt"
+	"io"
+	"path/filepath"
+	"slices"
+	"strings"
+
+	"isofacet/cmd/internal/manual"
+	"isofacet/cmd/internal/option"
+	"isofacet/cmd/internal/record"
+	"isofacet/cmd/internal/status"
+	"isofacet/io/outfile"
+)
+
+// writing is where results go and how numbers are written.
+type writing struct {
+	outs     option.Outs
+	format   option.Choice
+	decimals option.Decimals
+	record   typed
+}
+
+// byExtension is the word for "no format was named".
+const byExtension = "by extension"
+
+// writingOptions returns the options of every command that writes. Parts are the
+// names that may stand before the equals sign of --out, formats those of --format.
+func (w *writing) writingOptions(parts, formats []string) []manual.Option {
+	w.outs = option.Outs{Parts: parts}
+	w.format = option.NewChoice(append([]string{byExtension}, formats...)...)
+	w.record = typed{form: "FILE"}
+	const group = "Output"
+	out := "file to write, - for standard output"
+	if len(parts) > 1 {
+		out += "; PART=FILE writes one of the parts " + strings.Join(parts, ", ")
+	}
+	return []manual.Option{
+		{Group: group, Name: "out", Value: &w.outs, Repeatable: true, Default: "-",
+			Text: out + "; {file} in a name stands for the input's name without folder and extension"},
+		{Group: group, Name: "format", Value: formatValue{&w.format}, Default: byExtension,
+			Text: "format of the output"},
+		{Group: group, Name: "decimals", Value: &w.decimals,
+			Text: "digits after the point; auto: two more than the readings have; full: the shortest text that reads back to the same number"},
+		{Group: group, Name: "record", Value: &w.record,
+			Text: "file for the run record: inputs with hashes, settings, what was not used and why, ranges, warnings, outputs with hashes"},
+	}
+}
+
+// formatValue is a choice that does not offer its word for "none named".
+type formatValue struct{ *option.Choice }
+
+func (f formatValue) Set(text string) error {
+	if text == byExtension {
+		return &option.BadValue{Seen: text, Expected: "one of " + strings.Join(f.Words()[1:], ", ")}
+	}
+	if err := f.Choice.Set(text); err != nil {
+		return &option.BadValue{Seen: text, Expected: "one of " + strings.Join(f.Words()[1:], ", ")}
+	}
+	return nil
+}
+
+func (f formatValue) Type() string { return strings.Join(f.Words()[1:], "|") }
+
+// A destination is one output to be made.
+type destination struct {
+	part   string
+	format string
+	path   string    // "-" is standard output
+	w      io.Writer // where its bytes go
+	beside io.Writer // where the description goes that belongs to a raw raster
+
+	file *outfile.File
+}
+
+// outputs are all files that a run makes. They are begun before the work, so that
+// a missing folder shows at once, and appear together at its end.
+type outputs struct {
+	p      *program
+	set    outfile.Set
+	list   []*destination
+	record *outfile.File
+	// hashed has an entry for every file that the run record names.
+	hashed []hashed
+}
+
+type hashed struct {
+	entry  *record.File
+	finish func()
+}
+
+// formatOf returns the format that a file name asks for.
+type formatOf func(path string) (format string, ok bool)
+
+// byExtensions goes by the extension, in small or capital letters.
+func byExtensions(formats map[string]string) formatOf {
+	return func(path string) (string, bool) {
+		f, ok := formats[strings.ToLower(filepath.Ext(path))]
+		return f, ok
+	}
+}
+
+// destinations works out where everything goes: which part in which format to
+// which file. It refuses two outputs of one name, a format that contradicts an
+// extension, and {names} that stand for nothing.
+func (w *writing) destinations(usual string, files []string, named formatOf, usualFormat string) ([]*destination, error) {
+	outs := w.outs.List
+	if len(outs) == 0 {
+		outs = []option.Out{{File: "-"}}
+	}
+	asked := w.format.Word()
+	taken := false
+	var list []*destination
+	for _, out := range outs {
+		path, err := expand(out.File, files)
+		if err != nil {
+			return nil, err
+		}
+		d := &destination{part: out.Part, path: path, format: usualFormat}
+		if d.part == "" {
+			d.part = usual
+		}
+		format, known := named(path)
+		switch {
+		case known && asked == byExtension:
+			d.format = format
+		case known && family(format) != family(asked) && len(outs) == 1:
+			return nil, status.Usage(fmt.Errorf("--out %q: its extension says %s and --format says %s: expected the two to agree", out.File, format, asked))
+		case known && family(format) != family(asked):
+			d.format = format // the format is for another of the outputs
+		case asked != byExtension:
+			d.format, taken = asked, true
+		case path != "-":
+			return nil, status.Usage(fmt.Errorf("--out %q: its extension names no format: expected one of %s", out.File, strings.Join(w.format.Words()[1:], ", ")),
+				"name the format with --format")
+		}
+		list = append(list, d)
+	}
+	if asked != byExtension && !taken {
+		return nil, status.Usage(fmt.Errorf("--format %s: no output takes it: every extension says otherwise", asked))
+	}
+	return list, w.distinct(list)
+}
+
+// distinct refuses two outputs of one name.
+func (w *writing) distinct(list []*destination) error {
+	var seen []string
+	for _, d := range list {
+		name := d.path
+		if name != "-" {
+			name = filepath.Clean(name)
+		}
+		if slices.Contains(seen, name) {
+			return status.Usage(fmt.Errorf("--out %q: named by two outputs: expected one output a file", d.path))
+		}
+		seen = append(seen, name)
+	}
+	return nil
+}
+
+// family is the format without its variant: raw for raw and raw-float32.
+func family(format string) string {
+	head, _, _ := strings.Cut(format, "-")
+	return head
+}
+
+// expand puts the input's name in place of {file}.
+func expand(path string, files []string) (string, error) {
+	for rest := path; ; {
+		_, after, ok := strings.Cut(rest, "{")
+		if !ok {
+			break
+		}
+		name, behind, ok := strings.Cut(after, "}")
+		if !ok || name != "file" {
+			return "", status.Usage(fmt.Errorf("--out %q: expected {file} between braces", path))
+		}
+		rest = behind
+	}
+	if !strings.Contains(path, "{file}") {
+		return path, nil
+	}
+	if len(files) != 1 || files[0] == "-" {
+		return "", status.Usage(fmt.Errorf("--out %q: {file} with %d named inputs: expected one", path, len(files)))
+	}
+	base := filepath.Base(filepath.FromSlash(strings.TrimPrefix(files[0], samplePrefix)))
+	base = strings.TrimSuffix(base, filepath.Ext(base))
+	return strings.ReplaceAll(path, "{file}", safeName(base)), nil
+}
+
+// safeName makes every character that some system does not take in a file name a
+// hyphen.
+func safeName(s string) string {
+	return strings.Map(func(r rune) rune {
+		if r < ' ' || strings.ContainsRune(`<>:"/\|?*{}`, r) {
+			return '-'
+		}
+		return r
+	}, s)
+}
+
+// open begins the outputs. An output that is also an input is refused.
+func (p *program) open(w *writing, list []*destination, inputs []string) (*outputs, error) {
+	o := &outputs{p: p, list: list}
+	if err := o.begin(w, inputs); err != nil {
+		o.abort()
+		return nil, err
+	}
+	return o, nil
+}
+
+func (o *outputs) begin(w *writing, inputs []string) error {
+	var err error
+	for _, d := range o.list {
+		raw := family(d.format) == formatRaw
+		if d.file, err = o.create("--out", d.path, outfile.Options{RenameLast: raw}, inputs); err != nil {
+			return err
+		}
+		d.w = o.hash(d.file, record.File{Name: d.path, Part: d.part, Format: d.format})
+		if raw && d.path != "-" {
+			path := besidePath(d.path)
+			f, err := o.create("--out", path, outfile.Options{}, inputs)
+			if err != nil {
+				return err
+			}
+			d.beside = o.hash(f, record.File{Name: path, Part: d.part, Format: "json"})
+		}
+	}
+	if w.record.set {
+		if w.record.text == "-" {
+			return status.Usage(errors.New(`--record "-": expected a file name: standard output is for results`))
+		}
+		o.record, err = o.create("--record", w.record.text, outfile.Options{}, inputs)
+	}
+	return err
+}
+
+// create begins one file.
+func (o *outputs) create(option, path string, opt outfile.Options, inputs []string) (*outfile.File, error) {
+	if in, same := outfile.SameFile(path, inputs...); same {
+		return nil, status.Usage(fmt.Errorf("%s %q: is the input %s as well: expected another file", option, path, in))
+	}
+	opt.Stdout = o.p.out
+	return o.set.Create(path, opt)
+}
+
+// hash returns f, hashed on the way if the run is recorded.
+func (o *outputs) hash(f *outfile.File, entry record.File) io.Writer {
+	if o.p.rec == nil {
+		return f
+	}
+	e := &entry
+	w, finish := e.Writer(f)
+	o.hashed = append(o.hashed, hashed{e, finish})
+	return w
+}
+
+// abort gives up everything that is not complete.
+func (o *outputs) abort() { o.set.Abort() }
+
+// write has one destination written. Standard output is passed on at once; its
+// reader leaving early ends that output and nothing else.
+func (o *outputs) write(d *destination, one func(*destination) error) error {
+	err := one(d)
+	if err == nil && d.file.IsStandardOutput() {
+		err = d.file.Commit()
+	}
+	if err != nil && d.file.IsStandardOutput() && outfile.IsClosedPipe(err) {
+		d.file.Abort()
+		return nil
+	}
+	return err
+}
+
+// commit writes the run record and makes all files appear.
+func (o *outputs) commit() error {
+	if rec := o.p.rec; rec != nil {
+		for _, h := range o.hashed {
+			h.finish()
+			rec.Stable.Outputs = append(rec.Stable.Outputs, h.entry)
+		}
+		rec.Stable.Warnings = o.p.report.Warnings()
+		if err := rec.Write(o.record); err != nil {
+			return err
+		}
+	}
+	if err := o.set.Commit(); err != nil {
+		return err
+	}
+	o.tell()
+	return nil
+}
+
+// tell says what was written, and how many warnings there were.
+func (o *outputs) tell() {
+	for _, r := range o.set.Results() {
+		if r.Path != "-" {
+			o.p.report.Note(fmt.Sprintf("written: %s, %d bytes", r.Path, r.Bytes), "path", r.Path, "bytes", r.Bytes)
+		}
+	}
+	n := len(o.p.report.Warnings())
+	o.p.report.Note("warnings: "+fmt.Sprint(n), "warnings", n)
+}

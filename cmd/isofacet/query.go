@@ -1,0 +1,166 @@
+package main
+
+import (
+	"errors"
+	"fmt"
+	"slices"
+	"strings"
+
+	"github.com/spf13/cobra"
+
+	"isofacet/cmd/internal/manual"
+	"isofacet/cmd/internal/option"
+	"isofacet/cmd/internal/status"
+	"isofacet/io/readings"
+)
+
+const queryLong = `Asks the surface at places: its value, slope and downhill azimuth, and whether
+the place lies at a vertex, on an edge, inside a triangle or outside the surface.
+Outside there is no value; the fields stay empty and such places are counted on
+standard error.
+
+Places are typed as --at X,Y, or read from one file, whose columns are found like
+those of readings and written in front of the answers as they are.
+
+Where triangles meet, slope and azimuth are those of the triangle that owns the
+place: the one just east of it, or north where an edge runs east.
+
+With --explain a row also holds the number of the triangle (in the order of its
+corners, from 1), its three readings, smallest x first, and the weight of each: the
+value is the sum of weight times reading.`
+
+const queryExample = `isofacet query sample:gravel-pit/shots.csv --at 431250,5621500 --at 431260,5621500
+isofacet query sample:gravel-pit/shots.csv --at sample:gravel-pit/checks.csv --out checked.csv
+echo 431250 5621500 | isofacet query sample:gravel-pit/shots.csv --at - --explain`
+
+// newQuery is "isofacet query".
+func newQuery(p *program) *cobra.Command {
+	q := &queryCommand{program: p}
+	cmd := &cobra.Command{
+		Use:     "query --at X,Y|FILE [options] [FILE...]",
+		Short:   "the surface at places",
+		Long:    queryLong,
+		Example: queryExample,
+		RunE:    q.run,
+	}
+	q.atColumns = parsed[readings.Columns]{form: "LIST", parse: readings.ParseColumns}
+	const group = "Places"
+	fs := cmd.Flags()
+	manual.Add(fs,
+		manual.Option{Group: group, Name: "at", Value: &q.at, Repeatable: true, Text: "a place, or a file of places, - for standard input"},
+		manual.Option{Group: group, Name: "at-columns", Value: &q.atColumns, Default: "the header's words",
+			Text: "what the columns of the file of places hold, like --columns"},
+		manual.Option{Group: group, Name: "explain", Value: &q.explain, Switch: true, Text: "add the triangle, its readings and their weights"})
+	manual.Add(fs, q.reading.readingOptions()...)
+	manual.Add(fs, q.writing.writingOptions([]string{"table"}, []string{formatCSV})...)
+	manual.Add(fs, p.runningOptions()...)
+	return cmd
+}
+
+type queryCommand struct {
+	*program
+	reading
+	writing
+	at        option.At
+	atColumns parsed[readings.Columns]
+	explain   manual.Switch
+}
+
+func (q *queryCommand) run(cmd *cobra.Command, files []string) error {
+	q.begin(cmd, &q.writing)
+	if err := q.check(files); err != nil {
+		return err
+	}
+	list, err := q.inputs(files)
+	if err != nil {
+		return err
+	}
+	dests, err := q.destinations("table", files, byExtensions(map[string]string{".csv": formatCSV}), formatCSV)
+	if err != nil {
+		return err
+	}
+	var asked *input
+	if len(q.at.Files) > 0 {
+		if asked, err = q.input(q.at.Files[0]); err != nil {
+			return err
+		}
+		if slices.ContainsFunc(list, func(in *input) bool { return sameInput(in, asked) }) {
+			return status.Usage(fmt.Errorf("--at %q: is also read for readings: expected a file of places", q.at.Files[0]))
+		}
+	}
+	out, err := q.open(&q.writing, dests, q.paths())
+	if err != nil {
+		return err
+	}
+	defer out.abort()
+
+	// The places are read first: they are few, and a fault in them should not
+	// show only after the readings have been worked on.
+	places, err := q.places(cmd, asked)
+	if err != nil {
+		return err
+	}
+	l, err := q.load(cmd.Context(), &q.reading, list)
+	if err != nil {
+		return err
+	}
+	if err := l.needsTriangles(); err != nil {
+		return err
+	}
+	q.tellSurface(l)
+	return q.answer(cmd, list, l, places, out)
+}
+
+// check refuses what can be refused before anything is read.
+func (q *queryCommand) check(files []string) error {
+	switch {
+	case len(q.at.Places)+len(q.at.Files) == 0:
+		return status.Usage(errors.New("--at is missing: expected a place X,Y or a file of places"), "as in --at 431250,5621500")
+	case len(q.at.Files) > 1, len(q.at.Files) == 1 && len(q.at.Places) > 0:
+		return status.Usage(fmt.Errorf("--at %s: expected places X,Y, or one file of places: one table has one set of columns", q.at.String()))
+	case len(q.at.Files) == 0 && q.atColumns.text != "":
+		return status.Usage(errors.New("--at-columns without a file of places: expected --at FILE"))
+	case len(q.at.Files) == 1 && q.at.Files[0] == "-" && (len(files) == 0 || slices.Contains(files, "-")):
+		return status.Usage(errors.New(`--at "-": standard input holds the readings: expected one of the two from a file`))
+	}
+	return nil
+}
+
+// places returns the places that are asked about.
+func (q *queryCommand) places(cmd *cobra.Command, asked *input) (*places, error) {
+	if asked == nil {
+		return typedPlaces(q.at.Places), nil
+	}
+	found, err := readings.ReadPositions(cmd.Context(), asked.Source, readings.Options{
+		Declared: readings.Declared{Columns: q.atColumns.value},
+		Lenient:  bool(q.lenient),
+		Workers:  q.workers(),
+	})
+	if err != nil {
+		return nil, &placesError{err}
+	}
+	asked.file.Layout = found.Layout.String()
+	q.report.Note("places: "+asked.Name+": "+found.Layout.String(), "file", asked.Name, "layout", found.Layout.String())
+	for _, w := range found.Warnings {
+		q.report.Warn("places", w.String(), "file", w.File, "line", w.Line)
+	}
+	for _, e := range found.Refused {
+		q.report.Note("refused: "+e.Error(), "file", e.File, "line", e.Line)
+	}
+	if found.Counts.LeftOut > 0 {
+		q.report.Warn("places-left-out", fmt.Sprintf("%s: %s without coordinates left out", asked.Name, counted(found.Counts.LeftOut, "row")))
+	}
+	for _, name := range found.Names {
+		if slices.Contains(answerNames, name) || slices.Contains(explainNames(), name) {
+			return nil, status.With(status.WrongData, fmt.Errorf("%s: column %q: expected names other than those of the answers", asked.Name, name),
+				"rename the column, or take it out: the answers are "+strings.Join(answerNames, ", "))
+		}
+	}
+	return filePlaces(found), nil
+}
+
+// placesError is a fault in the file of places: its columns are declared with
+// another option than those of the readings.
+type placesError struct{ error }
+
+func (e *placesError) Unwrap() error { return e.error }
