@@ -130,8 +130,8 @@ func FuzzLocate(f *testing.F) {
 	seeds(f)
 	f.Fuzz(func(t *testing.T, data []byte) {
 		pts := pointsFrom(data)
-		if len(pts) > 40 {
-			pts = pts[:40]
+		if len(pts) > 20 {
+			pts = pts[:20]
 		}
 		m, err := triangulate.Delaunay(context.Background(), pts, triangulate.Options{})
 		if err != nil {

@@ -65,6 +65,12 @@ func side(m *triangulate.Mesh, u, v triangulate.Vertex, p orb.Point) int {
 	return exact.Orient(m.Position(u), m.Position(v), p)
 }
 
+// shift is (e, e²).
+var shift = [2]*big.Rat{
+	new(big.Rat).SetFrac(big.NewInt(1), new(big.Int).Lsh(big.NewInt(1), 600)),
+	new(big.Rat).SetFrac(big.NewInt(1), new(big.Int).Lsh(big.NewInt(1), 1200)),
+}
+
 // holdsShifted tells whether t holds p + (e, e²). Where p is off the line of an
 // edge the shift changes nothing; on it, the sign is that of the cross product of
 // the edge and the shift.
@@ -74,12 +80,11 @@ func holdsShifted(m *triangulate.Mesh, t triangulate.Triangle, p orb.Point) bool
 		u, v := m.Position(c[i]), m.Position(c[(i+1)%3])
 		s := exact.Orient(u, v, p)
 		if s == 0 {
-			e := new(big.Rat).SetFrac(big.NewInt(1), new(big.Int).Lsh(big.NewInt(1), 600))
 			d := func(k int) *big.Rat {
 				return new(big.Rat).Sub(new(big.Rat).SetFloat64(v[k]), new(big.Rat).SetFloat64(u[k]))
 			}
-			cross := new(big.Rat).Mul(d(0), new(big.Rat).Mul(e, e))
-			s = cross.Sub(cross, new(big.Rat).Mul(d(1), e)).Sign()
+			cross := new(big.Rat).Mul(d(0), shift[1])
+			s = cross.Sub(cross, new(big.Rat).Mul(d(1), shift[0])).Sign()
 		}
 		if s <= 0 {
 			return false
