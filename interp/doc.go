@@ -47,16 +47,18 @@
 // TestErrorInside with -long): 0.5 ulp on edges; inside 1.0 ulp for heights of
 // ground, 6.5 ulp for the worst kind of heights, some 2 and some -2.
 //
-// Each component of a gradient has a relative error
-// below 2^-49. Areas and volumes are sums of terms of a triangle each, accumulated
-// exactly and rounded once; the plan area is the exact one, rounded.
+// Each component of a gradient has a relative error below 2^-49. Areas and volumes
+// are sums of terms of a triangle each, accumulated exactly and rounded once; the
+// plan area is the exact one, rounded.
 //
 // Accepted are values of 0 or from 1e-60 to 1e60 in size, as for coordinates.
 //
 // # Cost
 //
-// A Surface takes 8 bytes a vertex (the values, not copied). A Sampler finds a
-// place in a microsecond or so. Query sorts places along a curve first and walks
-// from each to the next, several times faster for many places. Areas and volumes
-// take some ten nanoseconds a triangle on one core and use all cores.
+// A Surface takes 8 bytes a vertex (the values, not copied). A Sampler finds a place
+// in constant time where vertices are evenly spread, but in random order each place
+// waits for memory. Query visits places along a curve instead, walking from each to
+// the next, which is several times faster. A Plane gives a value every few
+// nanoseconds. Areas and volumes take some fifty nanoseconds a triangle on one core
+// and use all cores.
 package interp

@@ -70,7 +70,7 @@ func DownhillAzimuth(dzdx, dzdy float64) float64 {
 // and the series r - r³/3 + r⁵/5 - ... is cut after r¹¹, below 1e-18 degrees.
 func arctanDegrees(q float64) float64 {
 	k := int(float64(q*16) + 0.5)
-	c := float64(k) / 16
+	c := float64(float64(k) / 16) // pinned: a division by a power of two is a product
 	r := (q - c) / (1 + float64(q*c))
 	s := float64(r * r)
 	p := -1.0 / 11

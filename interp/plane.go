@@ -45,21 +45,23 @@ type Plane struct {
 	near bool
 }
 
-// Plane prepares triangle t. About 20 ns.
+// Plane prepares triangle t, which takes as long as some ten values.
 func (s *Surface) Plane(t triangulate.Triangle) Plane {
 	i, j, k := s.canonical(t)
 	pi, pj, pk := &s.pos[i], &s.pos[j], &s.pos[k]
+	xi, yi, xj, yj, xk, yk := pi[0], pi[1], pj[0], pj[1], pk[0], pk[1]
 	zi, zj, zk := s.z[i], s.z[j], s.z[k]
-	p := Plane{
-		xi: pi[0], yi: pi[1], xj: pj[0], yj: pj[1], xk: pk[0], yk: pk[1],
-		zi: zi, zLow: min(zi, zj, zk), zHigh: max(zi, zj, zk),
-	}
-	p.near = withinTwo(p.xi, p.xj, p.xk) && withinTwo(p.yi, p.yj, p.yk)
-	d, rest := exact.Area2Parts(p.xi, p.yi, p.xj, p.yj, p.xk, p.yk)
+	d, rest := exact.Area2Parts(xi, yi, xj, yj, xk, yk)
 	inverse := 1 / d
-	p.gj = quotient(zj, zi, d, rest, inverse)
-	p.gk = quotient(zk, zi, d, rest, inverse)
-	return p
+	return Plane{
+		xi: xi, yi: yi, xj: xj, yj: yj, xk: xk, yk: yk,
+		zi:    zi,
+		gj:    quotient(zj, zi, d, rest, inverse),
+		gk:    quotient(zk, zi, d, rest, inverse),
+		zLow:  min(zi, zj, zk),
+		zHigh: max(zi, zj, zk),
+		near:  withinTwo(xi, xj, xk) && withinTwo(yi, yj, yk),
+	}
 }
 
 // quotient returns (a-b)/(d+rest), off by e of itself: a first quotient and its
@@ -71,11 +73,11 @@ func quotient(a, b, d, rest, inverse float64) float64 {
 	return math.FMA(r, inverse, q)
 }
 
-// withinTwo reports whether the numbers have one sign and lie within a factor of
-// two of each other.
+// withinTwo reports, on the safe side, whether the numbers have one sign and lie
+// within a factor of two: from 3/4 to 5/4 of the first.
 func withinTwo(a, b, c float64) bool {
-	low, high := min(a, b, c), max(a, b, c)
-	return low > 0 && high <= 2*low || high < 0 && low >= 2*high
+	q := math.Abs(a) / 4
+	return math.Abs(b-a) <= q && math.Abs(c-a) <= q
 }
 
 // At returns the value at (x, y), which must lie in the triangle.

@@ -11,9 +11,9 @@ import (
 )
 
 // queryChunk places are walked through in one go: long enough that the first
-// search does not count, short enough to share out among goroutines and to notice
-// that the context has ended.
-const queryChunk = 4096
+// search does not count, short enough to share out among goroutines, to notice that
+// the context has ended, and for the buffers to stay in the cache.
+const queryChunk = 1024
 
 // Query returns the heights and locations of many places, in the order asked. The
 // places are visited along a space-filling curve, so that each lies a step or two
@@ -33,7 +33,7 @@ func (s *Surface) Query(ctx context.Context, places []orb.Point, workers int) ([
 	g, ctx := errgroup.WithContext(ctx)
 	for range min(workers, len(places)/queryChunk+1) {
 		g.Go(func() error {
-			sp := s.Sampler()
+			w := walker{sp: s.Sampler()}
 			for {
 				first := int(next.Add(queryChunk)) - queryChunk
 				if first >= len(order) {
@@ -42,11 +42,7 @@ func (s *Surface) Query(ctx context.Context, places []orb.Point, workers int) ([
 				if err := ctx.Err(); err != nil {
 					return err
 				}
-				chunk := order[first:min(first+queryChunk, len(order))]
-				samples[chunk[0]] = sp.At(places[chunk[0]])
-				for _, n := range chunk[1:] {
-					samples[n] = sp.Next(places[n])
-				}
+				w.visit(places, order[first:min(first+queryChunk, len(order))], samples)
 			}
 		})
 	}
@@ -54,6 +50,30 @@ func (s *Surface) Query(ctx context.Context, places []orb.Point, workers int) ([
 		return nil, err
 	}
 	return samples, nil
+}
+
+// walker carries the buffers of one goroutine. Places and samples lie scattered in
+// memory in the order of the curve. Fetching a chunk of them in a loop of its own
+// lets the processor wait for many at a time; in the walk, where each step hangs on
+// the one before, it would wait for each.
+type walker struct {
+	sp      *Sampler
+	places  [queryChunk]orb.Point
+	samples [queryChunk]Sample
+}
+
+// visit stores the samples of places[n] for n in order.
+func (w *walker) visit(places []orb.Point, order []uint32, samples []Sample) {
+	for i, n := range order {
+		w.places[i] = places[n]
+	}
+	w.samples[0] = w.sp.At(w.places[0])
+	for i := 1; i < len(order); i++ {
+		w.samples[i] = w.sp.Next(w.places[i])
+	}
+	for i, n := range order {
+		samples[n] = w.samples[i]
+	}
 }
 
 // visitOrder returns the indices of places along a Hilbert curve over the mesh.
