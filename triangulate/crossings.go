@@ -181,6 +181,7 @@ type crossingFinder struct {
 	segs  []Segment
 	west  []int32 // the segments by their smallest x
 	place map[orb.Point]bool
+	byX   []int
 }
 
 func newCrossingFinder(pts []orb.Point, segs []Segment) *crossingFinder {
