@@ -257,17 +257,28 @@ func (f *crossingFinder) meetInPoint(i, j int32) bool {
 // intersection returns where two crossing segments cross, each coordinate rounded
 // once, and how far along each, as a part of it from its first end to its second.
 func (f *crossingFinder) intersection(i, j int32) (at orb.Point, onI, onJ *big.Rat) {
-	p, q := f.pts[f.segs[i].From], f.pts[f.segs[i].To]
-	r, s := f.pts[f.segs[j].From], f.pts[f.segs[j].To]
+	return intersect(f.pts[f.segs[i].From], f.pts[f.segs[i].To], f.pts[f.segs[j].From], f.pts[f.segs[j].To])
+}
+
+// Intersection returns where the lines through p and q and through r and s, which
+// are not parallel, cross: the exact place, each coordinate rounded once to the
+// nearest double. It is the same for every order of the lines and their points.
+// Some microseconds.
+func Intersection(p, q, r, s orb.Point) orb.Point {
+	at, _, _ := intersect(p, q, r, s)
+	return at
+}
+
+func intersect(p, q, r, s orb.Point) (at orb.Point, onPQ, onRS *big.Rat) {
 	dx, dy := ratSub(q[0], p[0]), ratSub(q[1], p[1])
 	ex, ey := ratSub(s[0], r[0]), ratSub(s[1], r[1])
 	wx, wy := ratSub(r[0], p[0]), ratSub(r[1], p[1])
 	det := ratCross(dx, dy, ex, ey)
-	onI = new(big.Rat).Quo(ratCross(wx, wy, ex, ey), det)
-	onJ = new(big.Rat).Quo(ratCross(wx, wy, dx, dy), det)
-	at[0] = ratAlong(p[0], onI, dx)
-	at[1] = ratAlong(p[1], onI, dy)
-	return at, onI, onJ
+	onPQ = new(big.Rat).Quo(ratCross(wx, wy, ex, ey), det)
+	onRS = new(big.Rat).Quo(ratCross(wx, wy, dx, dy), det)
+	at[0] = ratAlong(p[0], onPQ, dx)
+	at[1] = ratAlong(p[1], onPQ, dy)
+	return at, onPQ, onRS
 }
 
 func ratSub(a, b float64) *big.Rat {

@@ -45,6 +45,12 @@ func (m *Mesh) Hide(hidden func(t Triangle) bool) *Mesh {
 	return out
 }
 
+// Whole returns m with its hidden triangles shown again; their numbers follow
+// those of the others. It shares the memory of m.
+func (m *Mesh) Whole() *Mesh {
+	return &Mesh{pos: m.pos, half: m.half, vertexOf: m.vertexOf, kept: m.kept, chains: m.chains, shown: len(m.half)}
+}
+
 // Trim hides every triangle that has an edge longer than edgeLenMax and reaches
 // the outside through such triangles: long thin ones along a concave outline,
 // but not a wide one in the middle. The result depends on the mesh alone.
