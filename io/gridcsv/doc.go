@@ -49,5 +49,6 @@
 //
 // # Cost
 //
-// Writing with decimals takes some 20 ns a node on one core, in full 80; reading 20 to 80; both run on all cores.
+// Writing with decimals takes some 20 ns a node on one core, in full 80; reading a matrix 40 to 80, a list 80 to 130. Both run on all
+// cores. A reader holds the whole text.
 package gridcsv

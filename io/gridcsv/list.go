@@ -42,7 +42,7 @@ func (f *file) readList(body int) (*grid.Grid, error) {
 	if err != nil {
 		return nil, fmt.Errorf("%s%w", prefix(f.opt.Name), err)
 	}
-	if err := f.fill(g, parts, columns.index, lines.index); err != nil {
+	if err := f.fill(g, parts, nodeFinder{xs, ys, columns.index, lines.index}); err != nil {
 		return nil, err
 	}
 	return g, nil
@@ -62,59 +62,92 @@ func (f *file) fields(at int) (x, y, z []byte, next int, fault *ReadError) {
 	return line[:a], line[a+1 : a+1+b], line[a+b+2:], next, nil
 }
 
-// placeTexts returns every text of an x and of a y, with the offset where it is first met.
-func (f *file) placeTexts(parts [][2]int) (xs, ys map[string]int, err error) {
+// texts numbers the different texts of one column, in the order in which they are first met.
+type texts struct {
+	number map[string]int
+	text   []string
+	at     []int // offset where each is first met
+}
+
+func (t *texts) add(text string, at int) {
+	if t.number == nil {
+		t.number = map[string]int{}
+	}
+	t.number[text] = len(t.text)
+	t.text = append(t.text, text)
+	t.at = append(t.at, at)
+}
+
+// cursor finds texts in the order of a raster: the next is mostly the one behind the last, or the last again.
+type cursor struct {
+	*texts
+	last int
+}
+
+// find returns the number of a text, or false.
+func (c *cursor) find(text []byte) (int, bool) {
+	for k := c.last; k < min(c.last+2, len(c.text)); k++ {
+		if string(text) == c.text[k] {
+			c.last = k
+			return k, true
+		}
+	}
+	k, known := c.number[string(text)]
+	if known {
+		c.last = k
+	}
+	return k, known
+}
+
+// placeTexts returns every text of an x and of a y.
+func (f *file) placeTexts(parts [][2]int) (xs, ys *texts, err error) {
 	type found struct {
-		xs, ys map[string]int
+		xs, ys texts
 		fault  *ReadError
 	}
 	founds := make([]found, len(parts))
 	var wg sync.WaitGroup
 	for i, p := range parts {
 		wg.Go(func() {
-			fd := found{xs: map[string]int{}, ys: map[string]int{}}
-			var lastY []byte
+			fd := &founds[i]
+			cx, cy := cursor{texts: &fd.xs}, cursor{texts: &fd.ys}
 			for at := p[0]; at < p[1]; {
 				x, y, _, next, fault := f.fields(at)
 				if fault != nil {
 					fd.fault = fault
-					break
+					return
 				}
-				if _, known := fd.xs[string(x)]; !known {
-					fd.xs[string(x)] = at
+				if _, known := cx.find(x); !known {
+					fd.xs.add(string(x), at)
 				}
-				if lastY == nil || !bytes.Equal(y, lastY) { // nodes come row by row
-					if _, known := fd.ys[string(y)]; !known {
-						fd.ys[string(y)] = at + len(x) + 1
-					}
-					lastY = y
+				if _, known := cy.find(y); !known {
+					fd.ys.add(string(y), at+len(x)+1)
 				}
 				at = next
 			}
-			founds[i] = fd
 		})
 	}
 	wg.Wait()
-	xs, ys = founds[0].xs, founds[0].ys
-	for i, fd := range founds {
-		if fd.fault != nil {
-			return nil, nil, fd.fault
+	xs, ys = &founds[0].xs, &founds[0].ys
+	for i := range founds {
+		if founds[i].fault != nil {
+			return nil, nil, founds[i].fault
 		}
-		if i == 0 {
-			continue
-		}
-		for text, at := range fd.xs { // of two offsets the earlier part's is the smaller
-			if _, known := xs[text]; !known {
-				xs[text] = at
-			}
-		}
-		for text, at := range fd.ys {
-			if _, known := ys[text]; !known {
-				ys[text] = at
-			}
+		if i > 0 {
+			xs.merge(&founds[i].xs)
+			ys.merge(&founds[i].ys)
 		}
 	}
 	return xs, ys, nil
+}
+
+// merge adds what a later part of the file found.
+func (t *texts) merge(later *texts) {
+	for i, text := range later.text {
+		if _, known := t.number[text]; !known {
+			t.add(text, later.at[i])
+		}
+	}
 }
 
 // evenAxis is one axis of a lattice found from texts.
@@ -122,53 +155,47 @@ type evenAxis struct {
 	first decimal.Number
 	step  decimal.Number // zero for a single place
 	n     int
-	index map[string]int // text to place, counted from the first
+	index []int // of each text: its place, counted from the first
 }
 
 // axisOf makes an axis of places: the smallest step is the cell, and every other place must be a whole number of cells from the first.
-func (f *file) axisOf(name string, texts map[string]int) (evenAxis, error) {
+func (f *file) axisOf(name string, t *texts) (evenAxis, error) {
 	type place struct {
-		number decimal.Number
-		text   string
-		at     int
+		decimal.Number
+		text int
 	}
-	places := make([]place, 0, len(texts))
-	for text, at := range texts {
-		places = append(places, place{text: text, at: at})
-	}
-	slices.SortFunc(places, func(a, b place) int { return a.at - b.at }) // so that the first fault in the file is the one reported
-	for i := range places {
-		p := &places[i]
-		var err error
-		if p.number, err = decimal.Parse(string(trim([]byte(p.text)))); err != nil {
-			return evenAxis{}, f.fault(p.at, name, quote([]byte(p.text)), "a number such as 100.5")
-		}
-	}
-	slices.SortStableFunc(places, func(a, b place) int { return a.number.Cmp(b.number) })
-
-	a := evenAxis{first: places[0].number, n: 1, index: make(map[string]int, len(places))}
-	for i := 1; i < len(places); i++ {
-		gap, err := places[i].number.Sub(places[i-1].number)
+	places := make([]place, len(t.text))
+	for i, text := range t.text { // in the order of the file, so that its first fault is the one reported
+		n, err := decimal.Parse(string(trim([]byte(text))))
 		if err != nil {
-			return evenAxis{}, f.fault(places[i].at, name, places[i].text, "places that 17 digits can write")
+			return evenAxis{}, f.fault(t.at[i], name, quote([]byte(text)), "a number such as 100.5")
+		}
+		places[i] = place{n, i}
+	}
+	slices.SortStableFunc(places, func(a, b place) int { return a.Cmp(b.Number) })
+
+	a := evenAxis{first: places[0].Number, n: 1, index: make([]int, len(places))}
+	for i := 1; i < len(places); i++ {
+		gap, err := places[i].Sub(places[i-1].Number)
+		if err != nil {
+			return evenAxis{}, f.fault(t.at[places[i].text], name, places[i].String(), "places that 17 digits can write")
 		}
 		if gap.Sign() != 0 && (a.step.Sign() == 0 || gap.Cmp(a.step) < 0) {
 			a.step = gap
 		}
 	}
+	if a.step.Sign() == 0 {
+		return a, nil
+	}
 	for _, p := range places {
-		if a.step.Sign() == 0 {
-			a.index[p.text] = 0
-			continue
-		}
-		from, err := p.number.Sub(a.first)
+		from, err := p.Sub(a.first)
 		var k int64
 		var whole bool
 		if err == nil {
 			k, whole, err = from.FloorIndex(a.step)
 		}
 		if err != nil || !whole || k >= math.MaxInt {
-			return evenAxis{}, f.fault(p.at, name, p.number.String(),
+			return evenAxis{}, f.fault(t.at[p.text], name, p.String(),
 				fmt.Sprintf("a whole number of steps from %s; the smallest step is %s", a.first, a.step))
 		}
 		a.index[p.text] = int(k)
@@ -177,22 +204,26 @@ func (f *file) axisOf(name string, texts map[string]int) (evenAxis, error) {
 	return a, nil
 }
 
+// nodeFinder tells from the texts of a node where in the raster it is.
+type nodeFinder struct {
+	xs, ys       *texts
+	column, line []int // of each text; lines count from the south
+}
+
 // fill reads the values into g, whose nodes are all without a value.
-func (f *file) fill(g *grid.Grid, parts [][2]int, column, line map[string]int) error {
+func (f *file) fill(g *grid.Grid, parts [][2]int, nodes nodeFinder) error {
 	taken := make([]uint32, (len(g.Values)+31)/32)
 	faults := make([]*ReadError, len(parts))
 	twice := make([]bool, len(parts))
 	var wg sync.WaitGroup
 	for i, p := range parts {
 		wg.Go(func() {
-			var lastY []byte
-			row := 0
+			cx, cy := cursor{texts: nodes.xs}, cursor{texts: nodes.ys}
 			for at := p[0]; at < p[1]; {
-				x, y, z, next, _ := f.fields(at) // its faults were found before
-				if lastY == nil || !bytes.Equal(y, lastY) {
-					row, lastY = g.Spec.Rows-1-line[string(y)], y
-				}
-				node := row*g.Spec.Cols + column[string(x)]
+				x, y, z, next, _ := f.fields(at) // faults and unknown texts cannot be: they were found before
+				col, _ := cx.find(x)
+				line, _ := cy.find(y)
+				node := (g.Spec.Rows-1-nodes.line[line])*g.Spec.Cols + nodes.column[col]
 				bit := uint32(1) << (node % 32)
 				if atomic.OrUint32(&taken[node/32], bit)&bit != 0 {
 					twice[i] = true
@@ -210,7 +241,7 @@ func (f *file) fill(g *grid.Grid, parts [][2]int, column, line map[string]int) e
 	}
 	wg.Wait()
 	if slices.Contains(twice, true) {
-		return f.namedTwice(parts[0][0], column, line)
+		return f.namedTwice(parts[0][0], nodes)
 	}
 	for _, fault := range faults {
 		if fault != nil {
@@ -236,11 +267,14 @@ func (f *file) value(z []byte, at int) (float64, *ReadError) {
 }
 
 // namedTwice finds the first line whose node an earlier line has. Workers only know that there is one.
-func (f *file) namedTwice(body int, column, line map[string]int) error {
+func (f *file) namedTwice(body int, nodes nodeFinder) error {
 	seen := map[[2]int]int{}
+	cx, cy := cursor{texts: nodes.xs}, cursor{texts: nodes.ys}
 	for at := body; at < len(f.data); {
 		x, y, _, next, _ := f.fields(at)
-		node := [2]int{line[string(y)], column[string(x)]}
+		col, _ := cx.find(x)
+		line, _ := cy.find(y)
+		node := [2]int{nodes.line[line], nodes.column[col]}
 		if before, known := seen[node]; known {
 			return f.fault(at, "node", fmt.Sprintf("%s, %s again", trim(x), trim(y)),
 				fmt.Sprintf("each node once; line %d has it", f.fault(before, "", "", "").Line))

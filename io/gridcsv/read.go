@@ -98,10 +98,13 @@ func prefix(name string) string {
 // readAll reads to the end, but no more than limit bytes.
 func readAll(r io.Reader, limit int64) ([]byte, error) {
 	var buf bytes.Buffer
-	if s, ok := r.(interface{ Stat() (fs.FileInfo, error) }); ok {
-		if info, err := s.Stat(); err == nil && info.Mode().IsRegular() {
+	switch r := r.(type) { // where the size is known, take the memory at once
+	case interface{ Stat() (fs.FileInfo, error) }:
+		if info, err := r.Stat(); err == nil && info.Mode().IsRegular() {
 			buf.Grow(int(min(info.Size(), limit)) + bytes.MinRead)
 		}
+	case interface{ Len() int }:
+		buf.Grow(int(min(int64(r.Len()), limit)) + bytes.MinRead)
 	}
 	n, err := buf.ReadFrom(io.LimitReader(r, limit+1))
 	if err != nil {

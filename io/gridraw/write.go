@@ -209,28 +209,24 @@ func (c *converter) float32s(buf []byte, values []float64) (out []byte, bad int)
 		noDataBits = storedNaN32
 	}
 	out = resize(buf, 4*len(values))
+	loss, lossMax, lossy := c.loss, c.lossMax, 0
 	for i, v := range values {
 		f := float32(v)
 		bits := math.Float32bits(f)
-		if f-f != 0 {
+		if f-f != 0 || f == noData {
 			if v == v {
-				return out, i // infinite, or becomes so
+				return out, i // infinite, or becomes so, or like no data
 			}
 			bits = noDataBits
-		} else {
-			if f == noData {
-				return out, i
-			}
-			loss := math.Abs(float64(f) - v)
-			if loss > c.loss {
-				c.loss = loss
-			}
-			if loss > c.lossMax {
-				c.lossy++
+		} else if d := math.Abs(float64(f) - v); d > loss || d > lossMax {
+			loss = max(loss, d)
+			if d > lossMax {
+				lossy++
 			}
 		}
 		binary.LittleEndian.PutUint32(out[4*i:], bits)
 	}
+	c.loss, c.lossy = loss, lossy
 	return out, -1
 }
 

@@ -31,6 +31,9 @@ type Result struct {
 // bufferBytes is the size from which writing a file takes as long as copying memory to the system; larger buffers gained nothing.
 const bufferBytes = 1 << 20
 
+// directBytes is the size from which a write goes past the buffer: copying it there would cost more than the call.
+const directBytes = 128 << 10
+
 // File is an output being written. Its methods are for one goroutine at a time.
 type File struct {
 	path   string // as given
@@ -100,6 +103,12 @@ func (f *File) Write(p []byte) (int, error) {
 	if f.done {
 		return 0, naming("write", f.path, fs.ErrClosed)
 	}
+	if len(p) >= directBytes {
+		if err := f.buf.Flush(); err != nil {
+			return 0, err
+		}
+		return f.sink.Write(p)
+	}
 	return f.buf.Write(p)
 }
 
@@ -141,6 +150,9 @@ func (f *File) Result() Result {
 func (f *File) finish() error {
 	if err := f.buf.Flush(); err != nil {
 		return err
+	}
+	if f.sink.err != nil { // of a write past the buffer
+		return f.sink.err
 	}
 	if f.IsStandardOutput() {
 		return nil

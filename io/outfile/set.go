@@ -21,8 +21,8 @@ func (s *Set) Create(path string, opt Options) (*File, error) {
 }
 
 // Commit makes all outputs appear: first every file is brought to the disk, then all are renamed, in the order of their creation
-// but those with RenameLast after the others. If anything fails before the first rename, nothing has changed. Outputs that were
-// committed or aborted on their own are left out.
+// but those with RenameLast after the others. If anything fails before the first rename, nothing has changed; that includes a standard
+// output whose reader has left. Outputs that were committed or aborted on their own are left out.
 func (s *Set) Commit() error {
 	var open []*File
 	for _, f := range s.files {
@@ -56,12 +56,18 @@ func commit(files []*File) error {
 		}
 		return err
 	}
-	for _, f := range files {
-		if f.done {
-			return abort(naming("commit", f.path, fs.ErrClosed))
-		}
-		if err := f.finish(); err != nil {
-			return abort(err)
+	// Standard output last: what has gone there cannot be taken back if a disk is full.
+	for _, standard := range []bool{false, true} {
+		for _, f := range files {
+			if f.IsStandardOutput() != standard {
+				continue
+			}
+			if f.done {
+				return abort(naming("commit", f.path, fs.ErrClosed))
+			}
+			if err := f.finish(); err != nil {
+				return abort(err)
+			}
 		}
 	}
 	if err := renameAll(files); err != nil {
