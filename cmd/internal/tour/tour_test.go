@@ -8,7 +8,9 @@ import (
 	"os/exec"
 	"path/filepath"
 	"runtime"
+	"slices"
 	"strings"
+	"sync"
 	"testing"
 )
 
@@ -49,41 +51,70 @@ func fences(text string) []fence {
 // step is a command of a console block with what the page says it prints.
 type step struct{ command, output string }
 
-// steps takes a console block apart. Every command begins with "$ " and goes
-// on over lines that end with a backslash.
+// steps takes a console block apart. Every command begins with "$ "; further
+// lines of it begin with "> ", as a shell shows them.
 func steps(block string) ([]step, error) {
 	var out []step
-	continued := false
 	for line := range strings.SplitAfterSeq(block, "\n") {
-		command, isCommand := strings.CutPrefix(line, "$ ")
-		switch {
-		case continued:
-			out[len(out)-1].command += line
-		case isCommand:
+		if command, ok := strings.CutPrefix(line, "$ "); ok {
 			out = append(out, step{command: command})
-		case len(out) > 0:
-			out[len(out)-1].output += line
-			continue
-		case line != "":
-			return nil, fmt.Errorf("%q stands before the first command", line)
-		default:
 			continue
 		}
-		continued = strings.HasSuffix(line, "\\\n")
+		if len(out) == 0 {
+			if line != "" {
+				return nil, fmt.Errorf("%q stands before the first command", line)
+			}
+			continue
+		}
+		s := &out[len(out)-1]
+		if more, ok := strings.CutPrefix(line, "> "); ok && s.output == "" {
+			s.command += more
+		} else {
+			s.output += line
+		}
 	}
 	return out, nil
 }
 
-// program builds the program into a folder and returns the folder.
+// shown returns the command as a block shows it.
+func (s step) shown() string {
+	lines := strings.SplitAfter(strings.TrimSuffix(s.command, "\n"), "\n")
+	return "$ " + strings.Join(lines, "> ") + "\n"
+}
+
+// program returns the folder of the program, which is built once.
 func program(t *testing.T) string {
 	t.Helper()
-	bin := t.TempDir()
-	build := exec.Command("go", "build", "-o", filepath.Join(bin, "isofacet"), "./cmd/isofacet")
-	build.Dir = root
-	if out, err := build.CombinedOutput(); err != nil {
-		t.Fatalf("go build: %v\n%s", err, out)
+	bin, err := built()
+	if err != nil {
+		t.Fatal(err)
 	}
 	return bin
+}
+
+var built = sync.OnceValues(func() (string, error) {
+	bin := filepath.Join(scratch, "bin")
+	build := exec.Command("go", "build", "-o", bin+string(filepath.Separator), "./cmd/isofacet")
+	build.Dir = root
+	if out, err := build.CombinedOutput(); err != nil {
+		return "", fmt.Errorf("go build: %w\n%s", err, out)
+	}
+	return bin, nil
+})
+
+// scratch lives as long as the tests of this package.
+var scratch string
+
+func TestMain(m *testing.M) {
+	flag.Parse()
+	var err error
+	if scratch, err = os.MkdirTemp("", "tour"); err != nil {
+		fmt.Fprintln(os.Stderr, err)
+		os.Exit(1)
+	}
+	status := m.Run()
+	os.RemoveAll(scratch)
+	os.Exit(status)
 }
 
 func TestConsoleBlocks(t *testing.T) {
@@ -115,12 +146,12 @@ func TestConsoleBlocks(t *testing.T) {
 			cmd.Env = append(os.Environ(), "PATH="+path, "LC_ALL=C")
 			out, err := cmd.CombinedOutput()
 			if err != nil {
-				t.Errorf("$ %s%v\n%s", s.command, err, out)
+				t.Errorf("%s%v\n%s", s.shown(), err, out)
 			}
 			if !*update && string(out) != s.output {
-				t.Errorf("$ %sprints\n%sthe page says\n%s", s.command, out, s.output)
+				t.Errorf("%sprints\n%sthe page says\n%s", s.shown(), out, s.output)
 			}
-			fresh.WriteString("$ " + s.command + string(out))
+			fresh.WriteString(s.shown() + string(out))
 		}
 		last = f.end
 	}
@@ -195,9 +226,14 @@ func TestSetUpCommands(t *testing.T) {
 }
 
 func TestSteps(t *testing.T) {
-	got, err := steps("$ a --b \\\n    c\nout\n$ d\n")
-	if err != nil || len(got) != 2 || got[0] != (step{"a --b \\\n    c\n", "out\n"}) || got[1] != (step{"d\n", ""}) {
-		t.Errorf("steps = %q, %v", got, err)
+	block := "$ a --b \\\n>     c\nout\n> of a\n$ d\n"
+	got, err := steps(block)
+	want := []step{{"a --b \\\n    c\n", "out\n> of a\n"}, {"d\n", ""}}
+	if err != nil || !slices.Equal(got, want) {
+		t.Errorf("steps = %q, %v, want %q", got, err, want)
+	}
+	if shown := got[0].shown() + got[0].output + got[1].shown(); shown != block {
+		t.Errorf("shown again as %q, want %q", shown, block)
 	}
 	if _, err := steps("out\n"); err == nil {
 		t.Error("output before a command was taken")
