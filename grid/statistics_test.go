@@ -52,6 +52,9 @@ func TestStatisticsAgainstRationals(t *testing.T) {
 		values := rapid.SliceOfN(rapid.Float64Range(-1, 1), 2, 60).Draw(t, "values")
 		sum, n := new(big.Rat), new(big.Rat).SetInt64(int64(len(values)))
 		for i := range values {
+			if math.Abs(values[i]) < 1e-100 {
+				values[i] = 0 // squares would run into the subnormal numbers
+			}
 			values[i] += offset
 			sum.Add(sum, new(big.Rat).SetFloat64(values[i]))
 		}
