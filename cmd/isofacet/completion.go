@@ -2,6 +2,7 @@ package main
 
 import (
 	"fmt"
+	"strings"
 
 	"github.com/spf13/cobra"
 
@@ -33,7 +34,7 @@ file; for bash:
 					return cmd.Root().GenPowerShellCompletionWithDesc(p.out)
 				}
 			}
-			return status.Usage(fmt.Errorf("completion %q: expected one shell: bash, zsh, fish or powershell", args))
+			return status.Usage(fmt.Errorf("completion %q: expected bash, zsh, fish or powershell", strings.Join(args, " ")), "as in isofacet completion bash")
 		},
 	}
 }

@@ -144,9 +144,6 @@ func explainGrid(err error) (status.Code, string, bool) {
 }
 
 func explainFiles(err error) (status.Code, string, bool) {
-	if _, ok := errors.AsType[*outfile.TargetError](err); ok {
-		return status.NotFinished, "name a file, or - for standard output", true
-	}
 	switch {
 	case errors.Is(err, context.Canceled):
 		return status.Interrupted, "", true

@@ -121,7 +121,7 @@ func (g *gridCommand) run(cmd *cobra.Command, files []string) error {
 			return err
 		}
 	}
-	out, err := g.open(&g.writing, dests, g.paths())
+	out, err := g.open(cmd.Context(), &g.writing, dests, g.paths())
 	if err != nil {
 		return err
 	}
@@ -153,7 +153,8 @@ func (g *gridCommand) check() error {
 			"isofacet inspect suggests one")
 	}
 	if bool(g.outward) && !g.extent.IsSet() {
-		return status.Usage(errors.New("--extent-outward without --extent: expected the extent that it moves outward"))
+		return status.Usage(errors.New("--extent-outward without --extent: expected the extent that it moves outward"),
+			"without --extent the raster covers the readings")
 	}
 	return nil
 }
@@ -164,11 +165,11 @@ func (g *gridCommand) unused(cmd *cobra.Command, dests []*destination) error {
 	raws := slices.ContainsFunc(dests, func(d *destination) bool { return d.format != formatCSV })
 	switch {
 	case !texts && cmd.Flags().Changed("layout"):
-		return status.Usage(errors.New("--layout without a CSV output: expected an output that has a layout"))
+		return status.Usage(errors.New("--layout without a CSV output: expected an output that has a layout"), "add --out FILE.csv, or leave --layout out")
 	case !texts && cmd.Flags().Changed("decimals"):
-		return status.Usage(errors.New("--decimals without a CSV output: a raw file holds the numbers themselves"))
+		return status.Usage(errors.New("--decimals without a CSV output: expected none: a raw file holds the numbers themselves"), "leave --decimals out")
 	case g.noData.IsSet() && !raws && g.layout.Word() == "list":
-		return status.Usage(errors.New("--no-data with --layout list: a list leaves nodes without a value out"))
+		return status.Usage(errors.New("--no-data with --layout list: expected none: a list leaves nodes without a value out"), "leave --no-data out, or write --layout matrix")
 	}
 	return nil
 }

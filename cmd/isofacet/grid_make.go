@@ -3,6 +3,7 @@ package main
 import (
 	"context"
 	"fmt"
+	"io"
 	"path/filepath"
 	"slices"
 
@@ -50,8 +51,8 @@ type rasterResult struct {
 func (g *gridCommand) make(cmd *cobra.Command, files []string, list []*input, l *loaded, spec grid.Spec, out *outputs) error {
 	result := &gridResult{Extent: l.extents(g.decimals), Surface: l.surfaceCounts(g.decimals), Lattice: describe(spec)}
 	slices.SortStableFunc(out.list, func(a, b *destination) int { return boolCompare(a.path == "-", b.path == "-") })
-	g.report.Note(fmt.Sprintf("lattice: %d columns and %d rows of cell %s, from %s,%s to %s,%s, values at %s",
-		spec.Cols, spec.Rows, cellText(spec.CellX, spec.CellY),
+	g.report.Note(fmt.Sprintf("lattice: %s and %s of cell %s, from %s,%s to %s,%s, values at %s",
+		counted(spec.Cols, "column"), counted(spec.Rows, "row"), cellText(spec.CellX, spec.CellY),
 		result.Lattice.XMin, result.Lattice.YMin, result.Lattice.XMax, result.Lattice.YMax, spec.ValuesAt),
 		"columns", spec.Cols, "rows", spec.Rows)
 	g.warnOfLongOutline(l, advice.MaxEdge(advice.Spacing(l.surface.Mesh(), g.workers())))
@@ -178,16 +179,23 @@ func (g *gridCommand) writeRaw(d *destination, raster *grid.Grid, l *loaded) err
 		// Half a unit in the last place that the readings carry.
 		opt.LossMax = decimal.Float64(5, g.digitsCarried(l, d.part)+1)
 	}
-	info, err := gridraw.Encode(d.w, raster, opt)
-	if err != nil {
-		return err
-	}
-	if info.Lossy > 0 {
-		g.report.Warn("float32", fmt.Sprintf("%s: %d values differ by up to %v from what float32 holds, more than half a unit of the readings' last digit: raw keeps them",
-			d.path, info.Lossy, info.Loss), "values", info.Lossy, "loss", info.Loss)
+	if opt.Type == gridraw.Float32 {
+		// What is lost has to be known before anything goes to a pipe.
+		info, err := gridraw.Encode(io.Discard, raster, opt)
+		if err != nil {
+			return err
+		}
+		if info.Lossy > 0 {
+			g.report.Warn("float32", fmt.Sprintf("%s: %d values differ by up to %v from what float32 holds, more than half a unit of the readings' last digit: raw keeps them",
+				d.path, info.Lossy, info.Loss), "values", info.Lossy, "loss", info.Loss)
+		}
 		if err := g.settleWarnings(); err != nil {
 			return err
 		}
+	}
+	info, err := gridraw.Encode(d.w, raster, opt)
+	if err != nil {
+		return err
 	}
 	if d.beside == nil {
 		g.report.Note("a pipe has no place for the description of the raw numbers: the lattice above is all that says what they are")

@@ -59,7 +59,7 @@ func (p *program) inspect(cmd *cobra.Command, r *reading, w *writing, files []st
 	if err != nil {
 		return err
 	}
-	out, err := p.open(w, dests, p.paths())
+	out, err := p.open(cmd.Context(), w, dests, p.paths())
 	if err != nil {
 		return err
 	}

@@ -41,7 +41,8 @@ func (p *program) load(ctx context.Context, r *reading, list []*input) (*loaded,
 	l.measure()
 	p.tellReadings(list, set)
 	if set.Len() == 0 {
-		return nil, status.With(status.WrongData, fmt.Errorf("no reading is used of %d: expected at least three that are not in line", set.Counts.Read))
+		return nil, status.With(status.WrongData, fmt.Errorf("0 of %s used: expected at least three that are not in line", counted(set.Counts.Read, "reading")),
+			"look at what was left out: isofacet inspect lists all; --only, --without, --missing and --exclude choose")
 	}
 	need := uint64(set.Len()) * bytesReading
 	if err := p.announce("a surface of "+counted(set.Len(), "reading"), need); err != nil {
@@ -96,12 +97,10 @@ func (p *program) readExclusions(name string) (*readings.Exclusions, error) {
 	}
 	x, err := readings.ReadExclusions(in.Source, readings.Declared{})
 	if err != nil {
-		return nil, err
+		code, _ := explain(err)
+		return nil, status.With(code, err, "an exclusion file has a header with id (or x and y), decision and reason, and a row a reading")
 	}
 	p.report.Note(fmt.Sprintf("exclude: %s: %s to leave out, %d with another decision", name, counted(x.Len(), "row"), x.Other))
-	if n := len(x.NoReason); n > 0 {
-		p.report.Warn("no-reason", fmt.Sprintf("%s: %s to leave out without a reason, the first in line %d: not followed", name, counted(n, "row"), x.NoReason[0]))
-	}
 	return x, nil
 }
 

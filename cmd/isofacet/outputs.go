@@ -1,9 +1,11 @@
 package main
 
 import (
+	"context"
 	"errors"
 	"fmt"
 	"io"
+	"io/fs"
 	"path/filepath"
 	"slices"
 	"strings"
@@ -78,6 +80,7 @@ type destination struct {
 // outputs are all files that a run makes. They are begun before the work, so that
 // a missing folder shows at once, and appear together at its end.
 type outputs struct {
+	ctx    context.Context
 	p      *program
 	set    outfile.Set
 	list   []*destination
@@ -127,7 +130,8 @@ func (w *writing) destinations(usual string, files []string, named formatOf, usu
 		case known && asked == byExtension:
 			d.format = format
 		case known && family(format) != family(asked) && len(outs) == 1:
-			return nil, status.Usage(fmt.Errorf("--out %q: its extension says %s and --format says %s: expected the two to agree", out.File, format, asked))
+			return nil, status.Usage(fmt.Errorf("--out %q: its extension says %s and --format says %s: expected the two to agree", out.File, format, asked),
+				"leave --format out, or change the extension")
 		case known && family(format) != family(asked):
 			d.format = format // the format is for another of the outputs
 		case asked != byExtension:
@@ -139,7 +143,8 @@ func (w *writing) destinations(usual string, files []string, named formatOf, usu
 		list = append(list, d)
 	}
 	if asked != byExtension && !taken {
-		return nil, status.Usage(fmt.Errorf("--format %s: no output takes it: every extension says otherwise", asked))
+		return nil, status.Usage(fmt.Errorf("--format %s: no output takes it, every extension says otherwise: expected an output for it", asked),
+			"leave --format out, or change an extension")
 	}
 	return list, w.distinct(list)
 }
@@ -153,7 +158,7 @@ func (w *writing) distinct(list []*destination) error {
 			name = filepath.Clean(name)
 		}
 		if slices.Contains(seen, name) {
-			return status.Usage(fmt.Errorf("--out %q: named by two outputs: expected one output a file", d.path))
+			return status.Usage(fmt.Errorf("--out %q: named by two outputs: expected one output a file", d.path), "give each a name of its own")
 		}
 		seen = append(seen, name)
 	}
@@ -175,7 +180,7 @@ func expand(path string, files []string) (string, error) {
 		}
 		name, behind, ok := strings.Cut(after, "}")
 		if !ok || name != "file" {
-			return "", status.Usage(fmt.Errorf("--out %q: expected {file} between braces", path))
+			return "", status.Usage(fmt.Errorf("--out %q: expected {file} between braces", path), "{file} stands for the input's name; other names are for later versions")
 		}
 		rest = behind
 	}
@@ -183,7 +188,7 @@ func expand(path string, files []string) (string, error) {
 		return path, nil
 	}
 	if len(files) != 1 || files[0] == "-" {
-		return "", status.Usage(fmt.Errorf("--out %q: {file} with %d named inputs: expected one", path, len(files)))
+		return "", status.Usage(fmt.Errorf("--out %q: {file} with %d named inputs: expected one", path, len(files)), "write the name out")
 	}
 	base := filepath.Base(filepath.FromSlash(strings.TrimPrefix(files[0], samplePrefix)))
 	base = strings.TrimSuffix(base, filepath.Ext(base))
@@ -202,8 +207,8 @@ func safeName(s string) string {
 }
 
 // open begins the outputs. An output that is also an input is refused.
-func (p *program) open(w *writing, list []*destination, inputs []string) (*outputs, error) {
-	o := &outputs{p: p, list: list}
+func (p *program) open(ctx context.Context, w *writing, list []*destination, inputs []string) (*outputs, error) {
+	o := &outputs{ctx: ctx, p: p, list: list}
 	if err := o.begin(w, inputs); err != nil {
 		o.abort()
 		return nil, err
@@ -218,19 +223,19 @@ func (o *outputs) begin(w *writing, inputs []string) error {
 		if d.file, err = o.create("--out", d.path, outfile.Options{RenameLast: raw}, inputs); err != nil {
 			return err
 		}
-		d.w = o.hash(d.file, record.File{Name: d.path, Part: d.part, Format: d.format})
+		d.w = o.writer(d.file, record.File{Name: d.path, Part: d.part, Format: d.format})
 		if raw && d.path != "-" {
 			path := besidePath(d.path)
 			f, err := o.create("--out", path, outfile.Options{}, inputs)
 			if err != nil {
 				return err
 			}
-			d.beside = o.hash(f, record.File{Name: path, Part: d.part, Format: "json"})
+			d.beside = o.writer(f, record.File{Name: path, Part: d.part, Format: "json"})
 		}
 	}
 	if w.record.set {
 		if w.record.text == "-" {
-			return status.Usage(errors.New(`--record "-": expected a file name: standard output is for results`))
+			return status.Usage(errors.New(`--record "-": expected a file name: standard output is for results`), "name a file")
 		}
 		o.record, err = o.create("--record", w.record.text, outfile.Options{}, inputs)
 	}
@@ -240,21 +245,45 @@ func (o *outputs) begin(w *writing, inputs []string) error {
 // create begins one file.
 func (o *outputs) create(option, path string, opt outfile.Options, inputs []string) (*outfile.File, error) {
 	if in, same := outfile.SameFile(path, inputs...); same {
-		return nil, status.Usage(fmt.Errorf("%s %q: is the input %s as well: expected another file", option, path, in))
+		return nil, status.Usage(fmt.Errorf("%s %q: is the input %s as well: expected another file", option, path, in),
+			"an output may not take the place of what it is made from: name another file")
 	}
 	opt.Stdout = o.p.out
-	return o.set.Create(path, opt)
+	f, err := o.set.Create(path, opt)
+	if errors.Is(err, fs.ErrNotExist) {
+		return nil, status.With(status.NotFinished, fmt.Errorf("%s %q: no such folder: expected one that exists", option, path),
+			"make it first: mkdir -p "+filepath.Dir(path))
+	}
+	if e, ok := errors.AsType[*outfile.TargetError](err); ok {
+		return nil, status.Usage(fmt.Errorf("%s %w", option, e), "give every output a file name of its own; - is standard output")
+	}
+	return f, err
 }
 
-// hash returns f, hashed on the way if the run is recorded.
-func (o *outputs) hash(f *outfile.File, entry record.File) io.Writer {
+// writer returns f, hashed on the way if the run is recorded.
+func (o *outputs) writer(f *outfile.File, entry record.File) io.Writer {
+	w := io.Writer(&stoppable{f, o.ctx})
 	if o.p.rec == nil {
-		return f
+		return w
 	}
 	e := &entry
-	w, finish := e.Writer(f)
+	w, finish := e.Writer(w)
 	o.hashed = append(o.hashed, hashed{e, finish})
 	return w
+}
+
+// stoppable is a writer that ends with the run: a format need not look out for
+// signals.
+type stoppable struct {
+	io.Writer
+	ctx context.Context
+}
+
+func (s *stoppable) Write(b []byte) (int, error) {
+	if err := s.ctx.Err(); err != nil {
+		return 0, err
+	}
+	return s.Writer.Write(b)
 }
 
 // abort gives up everything that is not complete.
@@ -285,6 +314,9 @@ func (o *outputs) commit() error {
 		if err := rec.Write(o.record); err != nil {
 			return err
 		}
+	}
+	if err := o.ctx.Err(); err != nil {
+		return err
 	}
 	if err := o.set.Commit(); err != nil {
 		return err

@@ -84,11 +84,8 @@ func (q *queryCommand) run(cmd *cobra.Command, files []string) error {
 		if asked, err = q.input(q.at.Files[0]); err != nil {
 			return err
 		}
-		if slices.ContainsFunc(list, func(in *input) bool { return sameInput(in, asked) }) {
-			return status.Usage(fmt.Errorf("--at %q: is also read for readings: expected a file of places", q.at.Files[0]))
-		}
 	}
-	out, err := q.open(&q.writing, dests, q.paths())
+	out, err := q.open(cmd.Context(), &q.writing, dests, q.paths())
 	if err != nil {
 		return err
 	}
@@ -117,11 +114,12 @@ func (q *queryCommand) check(files []string) error {
 	case len(q.at.Places)+len(q.at.Files) == 0:
 		return status.Usage(errors.New("--at is missing: expected a place X,Y or a file of places"), "as in --at 431250,5621500")
 	case len(q.at.Files) > 1, len(q.at.Files) == 1 && len(q.at.Places) > 0:
-		return status.Usage(fmt.Errorf("--at %s: expected places X,Y, or one file of places: one table has one set of columns", q.at.String()))
+		return status.Usage(fmt.Errorf("--at %s: expected places X,Y, or one file of places: one table has one set of columns", q.at.String()),
+			"put all places into one file, or run the command once for each")
 	case len(q.at.Files) == 0 && q.atColumns.text != "":
-		return status.Usage(errors.New("--at-columns without a file of places: expected --at FILE"))
+		return status.Usage(errors.New("--at-columns without a file of places: expected --at FILE"), "leave --at-columns out: typed places are X,Y")
 	case len(q.at.Files) == 1 && q.at.Files[0] == "-" && (len(files) == 0 || slices.Contains(files, "-")):
-		return status.Usage(errors.New(`--at "-": standard input holds the readings: expected one of the two from a file`))
+		return status.Usage(errors.New(`--at "-": standard input holds the readings: expected one of the two from a file`), "name the file of readings")
 	}
 	return nil
 }

@@ -155,7 +155,7 @@ func flagFault(cmd *cobra.Command, err error) error {
 		if bad, ok := errors.AsType[*option.BadValue](err); ok {
 			return status.Usage(fmt.Errorf("%s %w", name, bad), optionHint(cmd, e.GetFlag()))
 		}
-		return status.Usage(fmt.Errorf("%s %q: %w", name, e.GetValue(), errors.Unwrap(e)))
+		return status.Usage(fmt.Errorf("%s %q: %w", name, e.GetValue(), errors.Unwrap(e)), optionHint(cmd, e.GetFlag()))
 	}
 	if e, ok := errors.AsType[*pflag.ValueRequiredError](err); ok {
 		f := e.GetFlag()
@@ -164,7 +164,7 @@ func flagFault(cmd *cobra.Command, err error) error {
 	if e, ok := errors.AsType[*pflag.NotExistError](err); ok {
 		return unknownOption(cmd, e)
 	}
-	return status.Usage(err)
+	return status.Usage(err, cmd.CommandPath()+" --help says how options are written")
 }
 
 // optionHint says what an option does.

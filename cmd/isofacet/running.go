@@ -101,7 +101,8 @@ func (p *program) settleWarnings() error {
 	if n == 0 || p.warnings.Word() != "fail" {
 		return nil
 	}
-	return status.With(status.WrongData, fmt.Errorf("%s: expected none under --warnings fail; nothing is written", counted(n, "warning")))
+	return status.With(status.WrongData, fmt.Errorf("%s: expected none under --warnings fail; nothing is written", counted(n, "warning")),
+		"--warnings keep goes on in spite of them")
 }
 
 // counted returns "1 warning", "3 warnings".

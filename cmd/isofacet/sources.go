@@ -1,6 +1,7 @@
 package main
 
 import (
+	"bytes"
 	"errors"
 	"fmt"
 	"io"
@@ -13,6 +14,7 @@ import (
 	"golang.org/x/term"
 
 	"isofacet/cmd/internal/memory"
+	"isofacet/cmd/internal/option"
 	"isofacet/cmd/internal/record"
 	"isofacet/cmd/internal/status"
 	"isofacet/io/readings"
@@ -30,7 +32,7 @@ type input struct {
 }
 
 // inputs turns the arguments of a command into inputs; without any it is standard
-// input. A file that is named twice is refused: its readings would count twice.
+// input.
 func (p *program) inputs(files []string) ([]*input, error) {
 	if len(files) == 0 {
 		if f, ok := p.in.(*os.File); ok && term.IsTerminal(int(f.Fd())) {
@@ -45,18 +47,14 @@ func (p *program) inputs(files []string) ([]*input, error) {
 		if err != nil {
 			return nil, err
 		}
-		for _, other := range list {
-			if sameInput(in, other) {
-				return nil, status.Usage(fmt.Errorf("%q: named twice: expected every input once", name))
-			}
-		}
 		list = append(list, in)
 	}
-	return list, nil
+	return list, p.announceReading(list)
 }
 
-// input returns the input of one name. Whether a file can be read shows here, not
-// after the work on the files before it.
+// input returns the input of one name. That there is no such file shows here, not
+// after the work on the files before it. A file that was named before, whatever
+// for, is refused: its readings would count twice, and standard input comes once.
 func (p *program) input(name string) (*input, error) {
 	in := &input{file: &record.File{Name: name}}
 	switch {
@@ -78,6 +76,12 @@ func (p *program) input(name string) (*input, error) {
 		}
 		in.path = name
 		in.Source = readings.Source{Name: name, Size: info.Size(), Open: func() (io.ReadCloser, error) { return os.Open(name) }}
+	}
+	for _, other := range p.opened {
+		if sameInput(in, other) {
+			return nil, status.Usage(fmt.Errorf("%q: named twice: expected every input once", name),
+				"a reading counts once; standard input can be read once")
+		}
 	}
 	p.guard(&in.Source, in.file)
 	p.opened = append(p.opened, in)
@@ -106,6 +110,37 @@ func sameInput(a, b *input) bool {
 	infoA, errA := os.Stat(a.path)
 	infoB, errB := os.Stat(b.path)
 	return errA == nil && errB == nil && os.SameFile(infoA, infoB)
+}
+
+// announceReading states what large files will need, by the length of their first
+// lines. It refuses nothing: how many of the lines are used is not known yet, and
+// guard stops what really fills the memory.
+func (p *program) announceReading(list []*input) error {
+	var size, rows int64
+	for _, in := range list {
+		if in.path == "" || in.Size == 0 {
+			continue
+		}
+		f, err := os.Open(in.path)
+		if err != nil {
+			return fileError(in.path, err)
+		}
+		head := make([]byte, 1<<16)
+		n, err := io.ReadFull(f, head)
+		f.Close()
+		if err != nil && err != io.ErrUnexpectedEOF {
+			return fileError(in.path, err)
+		}
+		lines := max(bytes.Count(head[:n], []byte{'\n'}), 1)
+		size += in.Size
+		rows += in.Size / int64(n) * int64(lines)
+	}
+	need := uint64(rows) * bytesReading
+	if need > p.budget.Bytes/largeShare {
+		p.report.Note(fmt.Sprintf("memory: %v of text hold some %d lines; a surface of all of them needs about %v of %v",
+			option.Size(size), rows, option.Size(need), option.Size(p.budget.Bytes)), "need_bytes", need, "limit_bytes", p.budget.Bytes)
+	}
+	return nil
 }
 
 // guard has the source hashed for the run record, and stopped when what was read
@@ -174,7 +209,7 @@ func (p *program) paths() []string {
 // noArguments refuses arguments where a command takes none.
 func noArguments(cmd *cobra.Command, args []string) error {
 	if len(args) > 0 {
-		return status.Usage(fmt.Errorf("%q: %s takes no files: expected options only", args[0], cmd.CommandPath()))
+		return status.Usage(fmt.Errorf("%q: %s takes no files: expected options only", args[0], cmd.CommandPath()), cmd.CommandPath()+" --help")
 	}
 	return nil
 }
