@@ -10,6 +10,7 @@ require (
 	github.com/inconshreveable/mousetrap v1.1.0
 	github.com/mattn/go-runewidth v0.0.30
 	github.com/paulmach/orb v0.14.0
+	github.com/pelletier/go-toml/v2 v2.4.3
 	github.com/rogpeppe/go-internal v1.16.0
 	github.com/santhosh-tekuri/jsonschema/v6 v6.0.3
 	github.com/spf13/cobra v1.10.2
