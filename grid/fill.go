@@ -64,6 +64,7 @@ func Fill(ctx context.Context, spec Spec, s *interp.Surface, opt Options) (*Grid
 	group, ctx := errgroup.WithContext(ctx)
 	for range workers {
 		group.Go(func() error {
+			w := &writer{scan: f}
 			for {
 				lo := int(next.Add(trianglesAtOnce)) - trianglesAtOnce
 				if lo >= total {
@@ -71,7 +72,7 @@ func Fill(ctx context.Context, spec Spec, s *interp.Surface, opt Options) (*Grid
 				}
 				hi := min(lo+trianglesAtOnce, total)
 				for t := lo; t < hi; t++ {
-					f.triangle(triangulate.Triangle(t))
+					f.triangle(w, triangulate.Triangle(t))
 				}
 				if err := ctx.Err(); err != nil {
 					return err

@@ -11,18 +11,19 @@ import (
 
 // Scan conversion: the nodes of a triangle, row by row.
 //
-// In each row the triangle covers what lies between its long edge (from the
-// lowest corner to the highest) and its short edges. Where an edge crosses a
-// row is computed in columns, in floating point; a node further from there than
-// the rounding can amount to is certain, and the few others, with every node in
-// the row of the lowest or highest corner, are located by exact signs:
+// All is measured in cells, u east from the first column and v north from the
+// last row, so that nodes stand at whole numbers. In each row the triangle covers
+// what lies between its long edge (from the lowest corner a to the highest c) and
+// its short ones. Where an edge crosses a row is known to a small tolerance; a
+// node further from there is certain, and the few others are located by exact
+// signs:
 //
-//	     C ............ exact
+//	     c ............ rows at a and c: exact, few nodes
 //	    /  \
-//	 ../....\........   L and R cross the row; nodes from L+tol to R-tol are
-//	  L xxxxx R         inside, those within tol of L or R are exact
-//	 /    ___B
-//	A----- ............ exact
+//	 ../....\........   l and s cross the row; nodes between l+tol and s-tol
+//	  l xxxxx s         are inside, those within tol of l or s are exact
+//	 /    ___b
+//	a----- ............
 type scan struct {
 	g    *Grid
 	s    *interp.Surface
@@ -31,9 +32,8 @@ type scan struct {
 	xs   []float64 // of the columns, rising
 	ys   []float64 // of the rows counted from the south, rising
 
-	x0, perX float64 // column of x is about (x-x0) perX
-	y0, perY float64
-	tol      float64 // rounding of a column number, but for the triangle's own share
+	x0, y0, perX, perY float64
+	tolU, tolV         float64 // how far rounding can move a place from its u, v
 }
 
 func newScan(g *Grid, s *interp.Surface, show Show) *scan {
@@ -43,155 +43,148 @@ func newScan(g *Grid, s *interp.Surface, show Show) *scan {
 	}
 	f.x0, f.perX = f.xs[0], 1/g.Spec.CellX.Float64()
 	f.y0, f.perY = f.ys[0], 1/g.Spec.CellY.Float64()
-	// Column k stands at x0 + k cell, rounded once; the column of an x is then
-	// known to three roundings of itself and one of the largest x.
-	farthest := max(math.Abs(f.xs[0]), math.Abs(f.xs[len(f.xs)-1]))
-	f.tol = ulpHalf * (8*float64(len(f.xs)) + 16*farthest*f.perX)
+	bound := orb.MultiPoint(f.m.Positions()).Bound()
+	f.tolU = tolerance(f.xs, bound.Min[0], bound.Max[0], f.perX)
+	f.tolV = tolerance(f.ys, bound.Min[1], bound.Max[1], f.perY)
 	return f
 }
 
-// ulpHalf bounds the relative error of one rounding.
-const ulpHalf = 1.0 / (1 << 53)
+// tolerance bounds, in cells, the rounding in a place's u (or v) and in that of a
+// node. With e = 2^-53: the difference from the first node is off by e of itself,
+// so is the reciprocal of the cell (two roundings) and the product, and a node is
+// off its whole number by e of its coordinate. Four times all that leaves room
+// for the steps from there to a crossing.
+func tolerance(nodes []float64, low, high, per float64) float64 {
+	first, last := nodes[0], nodes[len(nodes)-1]
+	span := max(high, last) - min(low, first)
+	size := max(math.Abs(low), math.Abs(high), math.Abs(first), math.Abs(last))
+	const e = 1.0 / (1 << 53)
+	return 4 * e * per * (4*span + size)
+}
 
-// triangle writes the nodes that t owns.
-func (f *scan) triangle(t triangulate.Triangle) {
-	c := f.m.Corners(t)
-	// a, b, d from the lowest to the highest; each exchange mirrors the turn.
-	a, b, d := f.m.Position(c[0]), f.m.Position(c[1]), f.m.Position(c[2])
+// triangle writes the nodes that t owns. w is scratch of the caller's.
+func (f *scan) triangle(w *writer, t triangulate.Triangle) {
+	k := f.m.Corners(t)
+	p, q, r := f.m.Position(k[0]), f.m.Position(k[1]), f.m.Position(k[2])
+	ua, va := (p[0]-f.x0)*f.perX, (p[1]-f.y0)*f.perY
+	ub, vb := (q[0]-f.x0)*f.perX, (q[1]-f.y0)*f.perY
+	uc, vc := (r[0]-f.x0)*f.perX, (r[1]-f.y0)*f.perY
+	// From the lowest to the highest; each exchange mirrors the turn.
 	shortRight := true
-	if b[1] < a[1] {
-		a, b, shortRight = b, a, !shortRight
+	if vb < va {
+		ua, va, ub, vb, shortRight = ub, vb, ua, va, !shortRight
 	}
-	if d[1] < b[1] {
-		b, d, shortRight = d, b, !shortRight
-		if b[1] < a[1] {
-			a, b, shortRight = b, a, !shortRight
+	if vc < vb {
+		ub, vb, uc, vc, shortRight = uc, vc, ub, vb, !shortRight
+		if vb < va {
+			ua, va, ub, vb, shortRight = ub, vb, ua, va, !shortRight
 		}
 	}
-	first := f.firstRow(a[1])
-	if first == len(f.ys) || f.ys[first] > d[1] {
+	top := float64(len(f.ys) - 1)
+	if vc < -f.tolV || va > top+f.tolV {
 		return
 	}
-	xMin, xMax := min(a[0], b[0], d[0]), max(a[0], b[0], d[0])
-	if xMax < f.xs[0] || xMin > f.xs[len(f.xs)-1] {
+	right := float64(len(f.xs) - 1)
+	uMin, uMax := ua, ua
+	if ub < uMin {
+		uMin = ub
+	} else if ub > uMax {
+		uMax = ub
+	}
+	if uc < uMin {
+		uMin = uc
+	} else if uc > uMax {
+		uMax = uc
+	}
+	if uMax < -f.tolU || uMin > right+f.tolU {
 		return
 	}
-	// The crossing x is off by at most six roundings of the edge's width and one
-	// of the largest x.
-	tol := f.tol + ulpHalf*f.perX*(16*max(math.Abs(xMin), math.Abs(xMax))+16*(xMax-xMin))
-	w := writer{scan: f, t: t}
-	if tol > 0.25 {
-		f.everyNode(&w, first, d[1], xMin, xMax)
+	first, last := 0, len(f.ys)-1
+	if va > f.tolV {
+		first = int(va-f.tolV) + 1
+	}
+	if vc+f.tolV < top {
+		last = int(vc + f.tolV)
+	}
+	if first > last {
 		return
 	}
-	w.prepare()
-	// Columns and, for each unit of y, what they change by along each edge.
-	long := (d[0] - a[0]) / (d[1] - a[1]) * f.perX
-	low := (b[0] - a[0]) / (b[1] - a[1]) * f.perX
-	high := (d[0] - b[0]) / (d[1] - b[1]) * f.perX
-	colA, colB := (a[0]-f.x0)*f.perX, (b[0]-f.x0)*f.perX
-	last := float64(len(f.xs)) - 0.5
-	for row := first; row < len(f.ys); row++ {
-		y := f.ys[row]
-		if y > d[1] {
-			return
-		}
-		if y == a[1] || y == d[1] {
-			f.endRow(&w, row, a, b, d)
+	long := (uc - ua) / (vc - va)
+	low := (ub - ua) / (vb - va)
+	high := (uc - ub) / (vc - vb)
+	tolV := 4 * f.tolV
+	tolLong := f.tolU + math.Abs(long)*tolV
+	tolLow := f.tolU + math.Abs(low)*tolV
+	tolHigh := f.tolU + math.Abs(high)*tolV
+	inView := uMin > 1 && uMax < right-1
+
+	w.prepare(t)
+	for row := first; row <= last; row++ {
+		v := float64(row)
+		if v <= va+f.tolV || v >= vc-f.tolV {
+			lo, hi := math.Inf(1), math.Inf(-1)
+			for _, e := range [3]struct{ u, v, tol float64 }{{ua, va, tolLong + tolLow}, {ub, vb, tolLow + tolHigh}, {uc, vc, tolLong + tolHigh}} {
+				if math.Abs(e.v-v) <= 2*f.tolV {
+					lo, hi = min(lo, e.u), max(hi, e.u)
+					// Not a number where an edge lies in the row, then both ends do.
+					if e.tol <= uMax-uMin {
+						lo, hi = min(lo, e.u-e.tol), max(hi, e.u+e.tol)
+					} else {
+						lo, hi = uMin, uMax
+					}
+				}
+			}
+			w.exactly(row, f.column(max(lo, uMin)-2*f.tolU), f.column(min(hi, uMax)+2*f.tolU))
 			continue
 		}
-		l := colA + (y-a[1])*long
-		r := colA + (y-a[1])*low
-		if y >= b[1] {
-			r = colB + (y-b[1])*high
+		l, tolL := ua+(v-va)*long, tolLong
+		s, tolS := ua+(v-va)*low, tolLow
+		if v > vb-f.tolV {
+			if v > vb+f.tolV {
+				s, tolS = ub+(v-vb)*high, tolHigh
+			} else {
+				s, tolS = ub, f.tolU+f.tolV*(uMax-uMin)
+				if t := max(tolLow, tolHigh); t > tolS {
+					tolS = min(t, uMax-uMin)
+				}
+			}
 		}
 		if !shortRight {
-			l, r = r, l
+			l, tolL, s, tolS = s, tolS, l, tolL
 		}
-		l, r = min(max(l, -0.5), last), min(max(r, -0.5), last)
-		// Whole numbers in (l-tol, l+tol], (l+tol, r-tol], (r-tol, r+tol].
-		nearL, inner := int(l-tol+1), int(l+tol+1)
-		nearR, end := int(r-tol+1), int(r+tol+1)
-		if inner >= nearR {
+		// Whole numbers in (l-tol, l+tol], (l+tol, s-tol], (s-tol, s+tol].
+		var nearL, inner, nearS, end int
+		if inView && tolL < 1 && tolS < 1 {
+			nearL, inner, nearS, end = int(l-tolL+1), int(l+tolL+1), int(s-tolS+1), int(s+tolS+1)
+		} else {
+			nearL, inner, nearS, end = f.column(l-tolL), f.column(l+tolL), f.column(s-tolS), f.column(s+tolS)
+		}
+		if inner >= nearS {
 			w.exactly(row, nearL, end)
 			continue
 		}
 		if nearL < inner {
 			w.exactly(row, nearL, inner)
 		}
-		w.inside(row, inner, nearR)
-		if nearR < end {
-			w.exactly(row, nearR, end)
+		w.inside(row, inner, nearS)
+		if nearS < end {
+			w.exactly(row, nearS, end)
 		}
 	}
 }
 
-// firstRow returns the first row, counted from the south, not below y.
-func (f *scan) firstRow(y float64) int {
-	n := len(f.ys)
-	if y <= f.ys[0] {
+// column returns the first column east of u, from 0 to the number of columns.
+func (f *scan) column(u float64) int {
+	if !(u >= 0) {
 		return 0
 	}
-	if y > f.ys[n-1] {
-		return n
+	if u >= float64(len(f.xs)-1) {
+		return len(f.xs)
 	}
-	row := min(max(int((y-f.y0)*f.perY), 0), n-1)
-	for row > 0 && f.ys[row-1] >= y {
-		row--
-	}
-	for f.ys[row] < y {
-		row++
-	}
-	return row
+	return int(u) + 1
 }
 
-// endRow writes the nodes in the row of the lowest corner a or the highest d:
-// at that corner, or along an edge that lies in the row.
-func (f *scan) endRow(w *writer, row int, a, b, d orb.Point) {
-	y := f.ys[row]
-	lo, hi := math.Inf(1), math.Inf(-1)
-	for _, p := range [3]orb.Point{a, b, d} {
-		if p[1] == y {
-			lo, hi = min(lo, p[0]), max(hi, p[0])
-		}
-	}
-	from, to := f.columns(lo, hi)
-	w.exactly(row, from, to)
-}
-
-// columns returns the columns from the first not west of lo to the last not
-// east of hi, exactly.
-func (f *scan) columns(lo, hi float64) (from, to int) {
-	n := len(f.xs)
-	at := func(x float64) int { return int(min(max((x-f.x0)*f.perX, 0), float64(n))) }
-	from = at(lo)
-	for from > 0 && f.xs[from-1] >= lo {
-		from--
-	}
-	for from < n && f.xs[from] < lo {
-		from++
-	}
-	to = max(at(hi), from)
-	for to > from && f.xs[to-1] > hi {
-		to--
-	}
-	for to < n && f.xs[to] <= hi {
-		to++
-	}
-	return from, to
-}
-
-// everyNode locates each node of the bounding box exactly: the cells are so
-// small for the coordinates that rounding spans a good part of one.
-func (f *scan) everyNode(w *writer, first int, yMax, xMin, xMax float64) {
-	w.prepare()
-	from, to := f.columns(xMin, xMax)
-	for row := first; row < len(f.ys) && f.ys[row] <= yMax; row++ {
-		w.exactly(row, from, to)
-	}
-}
-
-// writer puts values of one triangle into the grid.
+// writer puts values of one triangle after another into the grid.
 type writer struct {
 	*scan
 	t     triangulate.Triangle
@@ -199,10 +192,11 @@ type writer struct {
 	fixed float64 // the triangle's slope or azimuth
 }
 
-func (w *writer) prepare() {
+func (w *writer) prepare(t triangulate.Triangle) {
+	w.t = t
 	switch w.show {
 	case Value:
-		w.plane = w.s.Plane(w.t)
+		w.s.PlaneInto(&w.plane, t)
 	case Slope:
 		w.fixed = interp.Slope(w.s.Gradient(w.t))
 	case DownhillAzimuth:

@@ -47,21 +47,26 @@ type Plane struct {
 
 // Plane prepares triangle t, which takes as long as some ten values.
 func (s *Surface) Plane(t triangulate.Triangle) Plane {
+	var p Plane
+	s.PlaneInto(&p, t)
+	return p
+}
+
+// PlaneInto is Plane for many triangles in turn, without copying.
+func (s *Surface) PlaneInto(p *Plane, t triangulate.Triangle) {
 	i, j, k := s.canonical(t)
 	pi, pj, pk := &s.pos[i], &s.pos[j], &s.pos[k]
 	xi, yi, xj, yj, xk, yk := pi[0], pi[1], pj[0], pj[1], pk[0], pk[1]
 	zi, zj, zk := s.z[i], s.z[j], s.z[k]
 	d, rest := exact.Area2Parts(xi, yi, xj, yj, xk, yk)
 	inverse := 1 / d
-	return Plane{
-		xi: xi, yi: yi, xj: xj, yj: yj, xk: xk, yk: yk,
-		zi:    zi,
-		gj:    quotient(zj, zi, d, rest, inverse),
-		gk:    quotient(zk, zi, d, rest, inverse),
-		zLow:  min(zi, zj, zk),
-		zHigh: max(zi, zj, zk),
-		near:  withinTwo(xi, xj, xk) && withinTwo(yi, yj, yk),
-	}
+	p.xi, p.yi, p.xj, p.yj, p.xk, p.yk = xi, yi, xj, yj, xk, yk
+	p.zi = zi
+	p.gj = quotient(zj, zi, d, rest, inverse)
+	p.gk = quotient(zk, zi, d, rest, inverse)
+	p.zLow = min(zi, zj, zk)
+	p.zHigh = max(zi, zj, zk)
+	p.near = withinTwo(xi, xj, xk) && withinTwo(yi, yj, yk)
 }
 
 // quotient returns (a-b)/(d+rest), off by e of itself: a first quotient and its
@@ -104,13 +109,22 @@ func (p *Plane) Span(dst, xs []float64, y float64) {
 		}
 		return
 	}
-	q := *p
-	ay, by, cy := q.yi-y, q.yj-y, q.yk-y
+	// Writing to dst could change *p for all the compiler knows: keep copies.
+	xi, xj, xk := p.xi, p.xj, p.xk
+	ay, by, cy := p.yi-y, p.yj-y, p.yk-y
+	zi, gj, gk, low, high := p.zi, p.gj, p.gk, p.zLow, p.zHigh
 	for n, x := range xs {
-		ax := q.xi - x
-		wj := differenceOfProducts(q.xk-x, ay, cy, ax)
-		wk := differenceOfProducts(ax, by, ay, q.xj-x)
-		dst[n] = q.blend(wj, wk)
+		ax := xi - x
+		wj := differenceOfProducts(xk-x, ay, cy, ax)
+		wk := differenceOfProducts(ax, by, ay, xj-x)
+		z := math.FMA(wk, gk, math.FMA(wj, gj, zi))
+		if z < low {
+			z = low
+		}
+		if z > high {
+			z = high
+		}
+		dst[n] = z
 	}
 }
 
