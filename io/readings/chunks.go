@@ -21,6 +21,7 @@ type chunks struct {
 	have   int
 	ended  bool
 	err    error
+	size   int         // of a chunk
 	spare  chan []byte // buffers to use again
 	format format
 }
@@ -28,6 +29,7 @@ type chunks struct {
 // decoded returns r without its byte order mark, UTF-16 made UTF-8, and the name
 // of the encoding. Without a mark the bytes pass as they are.
 func decoded(r io.Reader) (io.Reader, string, error) {
+	r = &insistent{r: r}
 	var mark [3]byte
 	n, err := io.ReadFull(r, mark[:])
 	if err != nil && err != io.EOF && err != io.ErrUnexpectedEOF {
@@ -48,16 +50,28 @@ func decoded(r io.Reader) (io.Reader, string, error) {
 	return transform.NewReader(whole, unicode.BOMOverride(transform.Nop)), name, nil
 }
 
+// insistent gives up on a reader that keeps returning nothing, which callers that
+// want a full buffer would ask for ever.
+type insistent struct {
+	r    io.Reader
+	idle int
+}
+
+func (i *insistent) Read(b []byte) (int, error) {
+	n, err := i.r.Read(b)
+	if i.idle++; n > 0 {
+		i.idle = 0
+	} else if err == nil && i.idle == 100 {
+		err = io.ErrNoProgress
+	}
+	return n, err
+}
+
 // fill reads until the buffer is full or the input ends.
 func (c *chunks) fill() {
-	for idle := 0; c.have < len(c.buf) && !c.ended; {
+	for c.have < len(c.buf) && !c.ended {
 		n, err := c.r.Read(c.buf[c.have:])
 		c.have += n
-		if idle++; n > 0 {
-			idle = 0
-		} else if err == nil && idle == 100 {
-			err = io.ErrNoProgress
-		}
 		if err != nil {
 			c.ended = true
 			if err != io.EOF {
@@ -70,7 +84,7 @@ func (c *chunks) fill() {
 // start makes the first buffer and passes over the first n lines, which may have
 // any length. It returns how many there were.
 func (c *chunks) start(n int) (skipped int) {
-	c.buf = c.buffer(maxRecord) // detection looks at whole lines
+	c.buf = c.buffer(4 * c.size) // detection looks at whole lines
 	c.fill()
 	p := 0
 	for skipped < n && p < c.have {
@@ -133,7 +147,7 @@ func (c *chunks) next() ([]byte, *PositionError) {
 			}
 		}
 		if n > 0 {
-			fresh := c.buffer(max(chunkSize, c.have-n))
+			fresh := c.buffer(max(c.size, c.have-n))
 			c.have = copy(fresh, b[n:])
 			c.buf = fresh
 			return b[:n], nil

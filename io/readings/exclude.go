@@ -176,7 +176,7 @@ func (s *sniffer) exclusionRow(e *Exclusions, b []byte, t *tokens, w exclusionCo
 		x.hasPlace = true
 	}
 	if !x.hasID && !x.hasPlace {
-		return s.at(b, 0, &PositionError{Kind: Blank, What: "decision \"leave out\"", Expected: "an id, or x and y, to say which reading"})
+		return s.at(b, 0, &PositionError{Kind: MissingRole, What: "decision to leave out what", Expected: "an id, or x and y"})
 	}
 	if x.reason == "" {
 		e.NoReason = append(e.NoReason, x.line)
@@ -241,11 +241,14 @@ func (e *Exclusions) warnings(hit []atomic.Bool) []Warning {
 			continue
 		}
 		r := &e.rows[k]
-		what := fmt.Sprintf("id %q", r.id)
-		if !r.hasID {
-			what = fmt.Sprintf("place %s,%s", plain(r.place[0]), plain(r.place[1]))
+		what := "no reading matches"
+		if r.hasID {
+			what += fmt.Sprintf(" id %q", r.id)
 		}
-		all = append(all, Warning{e.Name, r.line, "no reading matches " + what})
+		if r.hasPlace {
+			what += fmt.Sprintf(" at %s,%s", plain(r.place[0]), plain(r.place[1]))
+		}
+		all = append(all, Warning{e.Name, r.line, what})
 	}
 	for _, line := range e.NoReason {
 		all = append(all, Warning{e.Name, line, "leaves out without a reason: not followed"})

@@ -11,6 +11,8 @@ import (
 // beginning are headers: 0, 1, or 2 with a row of units.
 func (s *sniffer) columns(b []byte, rows []row) (headers int, err *PositionError) {
 	declared := &s.declared.Columns
+	first := s.line + countLines(b[:rows[0].at[0]]) + 1
+	s.layout.HeaderLine = first // for warnings; 0 again if it is none
 	switch {
 	case declared.IsZero():
 		headers, err = s.columnsByWords(b, rows)
@@ -22,18 +24,16 @@ func (s *sniffer) columns(b []byte, rows []row) (headers int, err *PositionError
 	if err != nil {
 		return 0, err
 	}
+	s.layout.HeaderLine = 0
 	if headers == 1 {
-		s.layout.HeaderLine = s.line + countLines(b[:rows[0].at[0]]) + 1
+		s.layout.HeaderLine = first
 		if len(rows) > 1 && s.isUnitRow(rows[1]) {
 			headers = 2
 			s.layout.Note = join(s.layout.Note, "a row of units follows the header")
 		}
 	}
 	if err := s.complete(); err != nil {
-		if len(rows) > 0 {
-			s.atField(b, rows[0], -1, err)
-		}
-		return 0, err
+		return 0, s.atField(b, rows[0], -1, err)
 	}
 	return headers, nil
 }
@@ -258,7 +258,6 @@ func (s *sniffer) isUnitRow(r row) bool {
 // easting above a column declared as northing, say, is worth a warning: it is the
 // commonest way to mirror a job.
 func (s *sniffer) name(header row) {
-	s.layout.HeaderLine = s.line + 1
 	for i := range s.layout.Columns {
 		if i >= len(header.fields) {
 			break
@@ -267,7 +266,7 @@ func (s *sniffer) name(header row) {
 		c.Name = header.fields[i]
 		said := headerWords[wordKey(c.Name)].role
 		if s.isNumeric(c.Role) && (said == X || said == Y || said == Z) && said != c.Role {
-			s.warnings = append(s.warnings, Warning{s.layout.File, 0,
+			s.warnings = append(s.warnings, Warning{s.layout.File, s.layout.HeaderLine,
 				fmt.Sprintf("column %d is headed %q but declared as %s", i+1, shorten(c.Name), c.Role)})
 		}
 	}

@@ -49,6 +49,10 @@ type Options struct {
 	// Progress, if not nil, is told now and then how many bytes are parsed of
 	// how many (0 if unknown), never from two goroutines at once.
 	Progress func(done, total int64)
+
+	// For tests: the size of a chunk if not 0, and to read every line the careful way.
+	chunk   int
+	careful bool
 }
 
 // A SpotRule says what becomes of several readings at one place.
@@ -123,6 +127,9 @@ const (
 )
 
 func (o *Options) check() error {
+	if o.chunk == 0 {
+		o.chunk = chunkSize
+	}
 	if err := o.Declared.check(); err != nil {
 		return err
 	}

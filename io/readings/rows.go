@@ -54,7 +54,7 @@ func newWorker(p *plan, o *Options, hit []atomic.Bool) *worker {
 		}
 	}
 	w.choosing = len(w.only)+len(w.without) > 0 || w.exclude != nil
-	w.careful = p.raw
+	w.careful = p.raw || o.careful
 	return w
 }
 

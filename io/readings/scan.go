@@ -126,7 +126,7 @@ func (s *scanner) source(number int, src Source) error {
 			perr = &PositionError{Kind: Unreadable, What: "read", Err: err}
 			return
 		}
-		f.chunks = chunks{r: text, spare: make(chan []byte, s.o.Workers+4)}
+		f.chunks = chunks{r: text, size: s.o.chunk, spare: make(chan []byte, s.o.Workers+4)}
 		perr = s.begin(f, Layout{File: src.Name, Encoding: encoding, SkipRows: s.o.SkipRows})
 	}()
 	select {

@@ -147,6 +147,7 @@ func (s *collected) representative(m []int32, rule SpotRule) int32 {
 }
 
 // before orders readings by z if the rule looks at it, then by (x, y), z, texts.
+// A reading with a name goes before one without.
 func (s *collected) before(i, j int32, rule SpotRule) bool {
 	c := 0
 	switch rule {
@@ -159,7 +160,10 @@ func (s *collected) before(i, j int32, rule SpotRule) bool {
 		c = cmp.Or(exact.CompareXY(s.Points[i], s.Points[j]), cmp.Compare(s.Z[i], s.Z[j]))
 	}
 	for t := 0; c == 0 && t < textSlots; t++ {
-		c = cmp.Compare(s.text(t, i), s.text(t, j))
+		a, b := s.text(t, i), s.text(t, j)
+		if c = cmp.Compare(a, b); a == "" || b == "" {
+			c = -c
+		}
 	}
 	return c < 0
 }

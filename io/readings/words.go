@@ -92,7 +92,7 @@ func words(list string) map[string]bool {
 // unitWords may end a header name, stand in brackets behind it, or fill a row of
 // units below the header.
 var unitWords = words("m mm cm km metre metres meter meters ft feet foot usft ftus ftint ift masl mamsl amsl asl msl ftmsl " +
-	"mnn mod us survey international")
+	"mnn mod us int intl survey international")
 
 // wordKey reduces a header name to what is looked up.
 func wordKey(name string) string {
