@@ -55,7 +55,7 @@ func Fill(ctx context.Context, spec Spec, s *interp.Surface, opt Options) (*Grid
 	if workers <= 0 {
 		workers = runtime.GOMAXPROCS(0)
 	}
-	if err := g.setNoData(ctx, workers); err != nil {
+	if err := g.setNoData(ctx, s.Mesh(), workers); err != nil {
 		return nil, err
 	}
 	f := newScan(g, s, opt.Show)
@@ -104,28 +104,69 @@ func newUnset(spec Spec) (*Grid, error) {
 	return &Grid{Spec: spec, Values: make([]float64, spec.NumNodes())}, nil
 }
 
-// setNoData makes every value NaN, in parallel: touching fresh memory costs
-// more than writing it.
-func (g *Grid) setNoData(ctx context.Context, workers int) error {
-	n := len(g.Values)
+// setNoData makes NaN of every value that the surface may leave alone: all but
+// those well inside its outline, which the triangles write.
+func (g *Grid) setNoData(ctx context.Context, m *triangulate.Mesh, workers int) error {
+	inside := g.wellInside(m)
 	var group errgroup.Group
 	for w := range workers {
 		group.Go(func() error {
-			part := g.Values[w*n/workers : (w+1)*n/workers]
-			for len(part) > 0 {
+			for row := w * len(inside) / workers; row < (w+1)*len(inside)/workers; row++ {
 				if err := ctx.Err(); err != nil {
 					return err
 				}
-				k := min(len(part), 1<<20)
-				for i := range part[:k] {
-					part[i] = math.NaN()
+				values, in := g.Row(row), inside[row]
+				for i := range values[:in.from] {
+					values[i] = math.NaN()
 				}
-				part = part[k:]
+				for i := in.to; i < len(values); i++ {
+					values[i] = math.NaN()
+				}
 			}
 			return nil
 		})
 	}
 	return group.Wait()
+}
+
+// wellInside returns, for every row, columns whose nodes are certainly in a
+// triangle: more than a cell away from the hull. Where triangles are hidden there
+// may be gaps anywhere, and it knows of none.
+func (g *Grid) wellInside(m *triangulate.Mesh) []columnSpan {
+	inside := make([]columnSpan, g.Spec.Rows)
+	if m.NumTriangles() == 0 || m.NumTriangles() < m.Whole().NumTriangles() {
+		return inside
+	}
+	for i := range inside {
+		inside[i] = columnSpan{-1, -1}
+	}
+	// Counter-clockwise, edges to the west of the surface run south, those to
+	// its east north; what runs neither way shuts the row.
+	ys := g.Spec.Ys()
+	hull := m.Hull()
+	for i, v := range hull {
+		a, b := m.Position(v), m.Position(hull[(i+1)%len(hull)])
+		g.eachRowNear(a, b, func(row int, span columnSpan) {
+			in := &inside[row]
+			switch y := ys[row]; {
+			case b[1] < y && y < a[1]:
+				in.from = max(in.from, span.to)
+			case a[1] < y && y < b[1]:
+				if in.to < 0 {
+					in.to = span.from
+				}
+				in.to = min(in.to, span.from)
+			default:
+				in.from, in.to = g.Spec.Cols, 0
+			}
+		})
+	}
+	for i, in := range inside {
+		if in.from < 0 || in.to < 0 || in.from >= in.to {
+			inside[i] = columnSpan{0, 0}
+		}
+	}
+	return inside
 }
 
 // String returns the word that options use.

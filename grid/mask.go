@@ -48,45 +48,47 @@ type columnSpan struct{ from, to int }
 // nearRims returns, for every row, the columns within about one of a rim, as
 // spans in order; they may overlap.
 func (g *Grid) nearRims(r *triangulate.Region) [][]columnSpan {
-	xs, ys := g.Spec.Xs(), g.Spec.Ys()
-	cols, rows := len(xs), len(ys)
-	cellX, cellY := g.Spec.CellX.Float64(), g.Spec.CellY.Float64()
-	// Rounding moves a place by far less than a cell (see Spec.Validate), so one
-	// cell around a rim is ample.
-	column := func(x float64) float64 { return (x - xs[0]) / cellX }
-	rowOf := func(y float64) float64 { return (ys[0] - y) / cellY }
-	whole := func(f float64, most int) int { return int(min(max(f, -1), float64(most))) }
-
-	near := make([][]columnSpan, rows)
+	near := make([][]columnSpan, g.Spec.Rows)
 	boundary, voids := r.Rings()
 	for _, ring := range slices.Concat(boundary, voids) {
 		for i := 1; i < len(ring); i++ {
-			a, b := ring[i-1], ring[i]
-			if a[1] < b[1] {
-				a, b = b, a // a is the northern end
-			}
-			for row := max(whole(rowOf(a[1])-1, rows), 0); row <= min(whole(rowOf(b[1])+1, rows), rows-1); row++ {
-				// The part of the edge within a cell of the row.
-				x := func(y float64) float64 {
-					if a[1] == b[1] {
-						return a[0]
-					}
-					return a[0] + (b[0]-a[0])*min(max((a[1]-y)/(a[1]-b[1]), 0), 1)
+			g.eachRowNear(ring[i-1], ring[i], func(row int, span columnSpan) {
+				if span.from < span.to {
+					near[row] = append(near[row], span)
 				}
-				west, east := x(ys[row]+cellY), x(ys[row]-cellY)
-				if a[1] == b[1] {
-					west, east = a[0], b[0]
-				}
-				west, east = min(west, east), max(west, east)
-				from, to := max(whole(column(west)-1, cols), 0), whole(column(east)+2, cols)
-				if from < to {
-					near[row] = append(near[row], columnSpan{from, to})
-				}
-			}
+			})
 		}
 	}
 	for _, spans := range near {
 		slices.SortFunc(spans, func(a, b columnSpan) int { return a.from - b.from })
 	}
 	return near
+}
+
+// eachRowNear calls f for every row within a cell of the line from a to b, with
+// the columns within a cell of the line in that row. Rounding moves a place by
+// less than a cell (see Spec.Validate), so the line passes between no others.
+func (g *Grid) eachRowNear(a, b orb.Point, f func(row int, span columnSpan)) {
+	cellX, cellY := g.Spec.CellX.Float64(), g.Spec.CellY.Float64()
+	x0, y0 := g.Spec.X(0), g.Spec.Y(0)
+	whole := func(f float64, most int) int { return int(min(max(f, -1), float64(most))) }
+	column := func(x float64) float64 { return (x - x0) / cellX }
+	if a[1] < b[1] {
+		a, b = b, a // a is the northern end
+	}
+	first := max(whole((y0-a[1])/cellY-1, g.Spec.Rows), 0)
+	last := min(whole((y0-b[1])/cellY+1, g.Spec.Rows), g.Spec.Rows-1)
+	for row := first; row <= last; row++ {
+		west, east := a[0], b[0]
+		if a[1] > b[1] {
+			// The part of the line within a cell of the row.
+			x := func(y float64) float64 {
+				return a[0] + (b[0]-a[0])*min(max((a[1]-y)/(a[1]-b[1]), 0), 1)
+			}
+			y := y0 - float64(row)*cellY
+			west, east = x(y+cellY), x(y-cellY)
+		}
+		west, east = min(west, east), max(west, east)
+		f(row, columnSpan{max(whole(column(west)-1, g.Spec.Cols), 0), max(whole(column(east)+2, g.Spec.Cols), 0)})
+	}
 }
