@@ -50,7 +50,8 @@ func (g *rolePatterns) match(text []byte) bool {
 	return hit
 }
 
-// chosen says why the patterns leave the current record out, "" if they do not.
+// chosen says why the patterns or the code leave the current record out, "" if they
+// do not.
 func (w *worker) chosen() string {
 	for i := range w.only {
 		if g := &w.only[i]; !g.match(w.current[g.slot]) {
@@ -61,6 +62,9 @@ func (w *worker) chosen() string {
 		if g := &w.without[i]; g.match(w.current[g.slot]) {
 			return "among " + g.said
 		}
+	}
+	if w.byCode != nil {
+		return w.byCode(w.current[textSlot[Code]])
 	}
 	return ""
 }

@@ -28,6 +28,7 @@ type worker struct {
 	line    int // of the record, from 0 in the block
 
 	only, without []rolePatterns
+	byCode        func(code []byte) string
 	exclude       *Exclusions
 	hit           []atomic.Bool     // rows of exclude that matched
 	reasons       map[string]string // reasons met, each kept once
@@ -53,7 +54,8 @@ func newWorker(p *plan, o *Options, hit []atomic.Bool) *worker {
 			w.slots = append(w.slots, a.slot)
 		}
 	}
-	w.choosing = len(w.only)+len(w.without) > 0 || w.exclude != nil
+	w.byCode = o.Select.Code
+	w.choosing = len(w.only)+len(w.without) > 0 || w.byCode != nil || w.exclude != nil
 	w.careful = p.raw || o.careful
 	return w
 }

@@ -41,12 +41,21 @@ func (p Pattern) check(option string) error {
 	return nil
 }
 
+// Match reports whether the whole text fits the pattern, which must be one that
+// ParsePattern takes.
+func (p Pattern) Match(text string) bool { return match(p.Text, text) }
+
 // A Selection says which readings to use. A reading is used if, for every role
 // that Only names, one of its patterns of that role matches, no pattern of
-// Without matches, and no row of Exclude leaves it out.
+// Without matches, Code gives no reason against it, and no row of Exclude leaves
+// it out; they are asked in this order.
 type Selection struct {
 	Only, Without []Pattern
-	Exclude       *Exclusions
+	// Code, if not nil, is told the code of each reading, empty if it has none, and
+	// returns why to leave the reading out, or "". It is called by several
+	// goroutines and must not keep the bytes.
+	Code    func(code []byte) (reason string)
+	Exclude *Exclusions
 }
 
 func (s *Selection) check() error {

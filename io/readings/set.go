@@ -72,6 +72,9 @@ type Merged struct {
 	Point orb.Point
 	Z     float64
 	ID    string
+	// Code and LineName are its texts in the roles code and line: a line through it
+	// runs through the reading that stands for it.
+	Code, LineName string
 }
 
 // A LeftOut reading is readable but not used.

@@ -54,7 +54,7 @@ func (s *collected) mergeSpots(ctx context.Context) error {
 		for _, i := range m {
 			if i != stays {
 				merged = append(merged, Merged{File: int32(s.Source(int(i))), Line: s.Lines[i], Point: s.Points[i], Z: s.Z[i],
-					ID: strings.Clone(s.text(idSlot, i))})
+					ID: strings.Clone(s.text(idSlot, i)), Code: strings.Clone(s.text(codeSlot, i)), LineName: strings.Clone(s.text(lineSlot, i))})
 				into = append(into, stays)
 				gone = append(gone, i)
 			}
@@ -79,7 +79,7 @@ func (s *collected) mergeSpots(ctx context.Context) error {
 	return nil
 }
 
-var idSlot, zoneSlot = int(textSlot[ID]), int(textSlot[Zone])
+var idSlot, codeSlot, lineSlot, zoneSlot = int(textSlot[ID]), int(textSlot[Code]), int(textSlot[Line]), int(textSlot[Zone])
 
 // spread is the highest minus the lowest z.
 func (s *collected) spread(m []int32) float64 {
