@@ -29,8 +29,7 @@ func mustRead(t testing.TB, text string, o Options) *Set {
 }
 
 // checkCounts is the promise that nothing is silent.
-func checkCounts(t testing.TB, s *Set) {
-	t.Helper()
+func checkCounts(t interface{ Fatalf(string, ...any) }, s *Set) {
 	c := s.Counts
 	if c.Used+c.Merged+c.LeftOut+c.Refused != c.Read {
 		t.Fatalf("counts do not add up: %+v", c)
@@ -55,8 +54,7 @@ func dump(s *Set) []string {
 	return all
 }
 
-func columns(t testing.TB, text string) Columns {
-	t.Helper()
+func columns(t interface{ Fatal(...any) }, text string) Columns {
 	c, err := ParseColumns(text)
 	if err != nil {
 		t.Fatal(err)
