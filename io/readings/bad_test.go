@@ -94,6 +94,8 @@ func TestBadInput(t *testing.T) {
 		// Files.
 		{"nothing", "", "", Declared{}, "a.csv: no line to read: expected readings", Empty},
 		{"blank lines alone", "\n \n\r\n", "", Declared{}, "a.csv: no line to read: expected readings", Empty},
+		{"delimiters alone", "# c\n,,\n , \n", "", Declared{}, "a.csv: every line begins with \"#\": expected readings, or a comment mark to be declared (\"none\" if these are readings)", WhichComment},
+		{"commas alone", ",,\n , \n", "", Declared{}, "a.csv: no line to read: expected readings", Empty},
 		{"all skipped", "x,y,z\n1,2,3\n", "", Declared{SkipRows: 5}, "a.csv: no line to read: expected readings", Empty},
 		{"binary", "PK\x03\x04\x00\x00more\n", "", Declared{},
 			"a.csv:1:5: a zero byte: looks like a binary file: expected text in UTF-8, Windows-1252, or UTF-16 with a byte order mark", Binary},

@@ -81,10 +81,15 @@ func (c *chunks) fill() {
 	}
 }
 
-// start makes the first buffer and passes over the first n lines, which may have
-// any length. It returns how many there were.
-func (c *chunks) start(n int) (skipped int) {
-	c.buf = c.buffer(4 * c.size) // detection looks at whole lines
+// start makes the first buffer, for an input of about size bytes (0 if unknown),
+// and passes over the first n lines, which may have any length. It returns how many
+// there were.
+func (c *chunks) start(size int64, n int) (skipped int) {
+	first := 4 * c.size // detection looks at many lines
+	if size > 0 && size < int64(first) {
+		first = int(size) + 1 // one more, to see the end
+	}
+	c.buf = c.buffer(first)
 	c.fill()
 	p := 0
 	for skipped < n && p < c.have {
@@ -155,10 +160,17 @@ func (c *chunks) next() ([]byte, *PositionError) {
 		if c.have >= maxRecord {
 			return nil, tooLong(b)
 		}
-		larger := make([]byte, min(2*len(c.buf), maxRecord), min(2*len(c.buf), maxRecord)+1)
-		copy(larger, b)
-		c.buf = larger
+		c.grow()
 	}
+}
+
+// grow makes the buffer larger, up to the longest record.
+func (c *chunks) grow() {
+	size := min(2*len(c.buf), maxRecord)
+	larger := make([]byte, size, size+1)
+	copy(larger, c.buf[:c.have])
+	c.buf = larger
+	c.fill()
 }
 
 // tooLong says what is wrong with bytes that hold no whole record.

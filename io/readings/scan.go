@@ -106,6 +106,13 @@ type file struct {
 	convertedFirst, converted int
 }
 
+func (f *file) noteConverted(n, first int) {
+	if f.converted == 0 {
+		f.convertedFirst = first
+	}
+	f.converted += n
+}
+
 // source reads one source to its end.
 func (s *scanner) source(number int, src Source) error {
 	ctx, cancel := context.WithCancel(s.ctx)
@@ -127,7 +134,7 @@ func (s *scanner) source(number int, src Source) error {
 			return
 		}
 		f.chunks = chunks{r: text, size: s.o.chunk, spare: make(chan []byte, s.o.Workers+4)}
-		perr = s.begin(f, Layout{File: src.Name, Encoding: encoding, SkipRows: s.o.SkipRows})
+		perr = s.begin(f, src.Size, Layout{File: src.Name, Encoding: encoding, SkipRows: s.o.SkipRows})
 	}()
 	select {
 	case <-ready:
@@ -150,7 +157,7 @@ func (s *scanner) source(number int, src Source) error {
 		return err
 	}
 	if f.converted > 0 {
-		s.warn(Warning{src.Name, f.convertedFirst, fmt.Sprintf("not UTF-8: taken as Windows-1252, as are %s in all", lines(f.converted))})
+		s.warn(Warning{src.Name, f.convertedFirst, fmt.Sprintf("not UTF-8: taken as Windows-1252 (%s in all)", lines(f.converted))})
 	}
 	return nil
 }
@@ -159,11 +166,14 @@ func (s *scanner) warn(w Warning) { s.summary.Warnings = append(s.summary.Warnin
 
 // begin makes the plan from the first lines and passes over those that hold no
 // readings.
-func (s *scanner) begin(f *file, l Layout) *PositionError {
-	skipped := f.chunks.start(s.o.SkipRows)
+func (s *scanner) begin(f *file, size int64, l Layout) *PositionError {
+	skipped := f.chunks.start(size, s.o.SkipRows)
 	sniff := newSniffer(&s.o.Declared, s.need, l)
 	sniff.line, sniff.counts.Skipped = skipped, skipped
 	for {
+		for !f.chunks.ended && f.chunks.have < maxRecord && lastLineEnd(f.chunks.buf[:f.chunks.have], 0, true) == 0 {
+			f.chunks.grow()
+		}
 		b := f.chunks.buf[:f.chunks.have]
 		if len(b) == 0 && f.chunks.err != nil {
 			return &PositionError{Line: sniff.line + 1, Kind: Unreadable, What: "read", Err: f.chunks.err}
@@ -176,6 +186,9 @@ func (s *scanner) begin(f *file, l Layout) *PositionError {
 		n := 0
 		for range passed {
 			n += behindLineEnd(b[n:], lineEnd(b[n:], 0))
+		}
+		if _, converted, first := readable(b[:n]); converted > 0 {
+			f.noteConverted(converted, before+first+1)
 		}
 		f.chunks.drop(n)
 		f.line = before + passed
@@ -342,10 +355,9 @@ func (s *scanner) take(f *file, blk *Block, size int) error {
 		}
 	}
 	s.bad.Total += blk.Counts.Refused
-	if blk.converted > 0 && f.converted == 0 {
-		f.convertedFirst = f.line + blk.first + 1
+	if blk.converted > 0 {
+		f.noteConverted(blk.converted, f.line+blk.first+1)
 	}
-	f.converted += blk.converted
 	s.summary.Counts.add(&blk.Counts)
 	if s.o.Lenient && s.bad.Total > mostBad && s.bad.Total > s.summary.Counts.Read/2 {
 		return &PositionError{File: layout.File, Line: f.line + 1, Kind: TooManyBad,

@@ -87,6 +87,16 @@ func (s *sniffer) sniff(b []byte, atEnd bool) (p *plan, passed int, err *Positio
 		start = s.passOver(t)
 		rows = take(t, start, s.format, sampleRows)
 	}
+	if len(rows) == 0 {
+		// Delimiters alone, as below a table from a spreadsheet.
+		if atEnd {
+			return nil, 0, s.nothing()
+		}
+		s.passRows(t, start, len(t))
+		n := countLines(t)
+		s.line += n
+		return nil, n, nil
+	}
 	s.layout.Delimiter = Delimiter(s.format.delimiter)
 	s.layout.Comment = string(s.format.comment)
 	headers, err := s.columns(t, rows)
@@ -100,6 +110,7 @@ func (s *sniffer) sniff(b []byte, atEnd bool) (p *plan, passed int, err *Positio
 	end := start
 	if headers > 0 {
 		end = rows[headers-1].next
+		s.passRows(t, start, end)
 	}
 	passed = countLines(t[:end])
 	if end == len(t) && !isLineEnd(t[end-1]) {
@@ -173,6 +184,21 @@ func (s *sniffer) passOver(b []byte) int {
 		p = behindLineEnd(b, end)
 	}
 	return p
+}
+
+// passRows counts the comments and blank rows of b[from:to].
+func (s *sniffer) passRows(b []byte, from, to int) {
+	t := tokens{format: s.format}
+	for p := from; p < to; {
+		if s.format.isComment(b[p:]) {
+			s.counts.Comments++
+			p = behindLineEnd(b, lineEnd(b, p))
+			continue
+		}
+		if p = t.record(b, p); allEmpty(t.fields) {
+			s.counts.BlankLines++
+		}
+	}
 }
 
 // take takes apart the first records of b from start on, blank ones and comments
