@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"math"
 	"math/big"
 	"slices"
 
@@ -66,7 +67,10 @@ const splitRounds = 16
 // the segments as given, exactly, rounded once to the nearest doubles; crossings
 // that round to one place become one vertex, which may be an input point. Then it
 // looks again, since the pieces differ from the segments by that rounding, until
-// none cross. The result depends on the sets of points and segments alone, but
+// none cross. Pieces that run almost along each other would go on crossing a few
+// units in the last place further each time; where pieces cross as near as
+// nearUlps to an end of one of them, they are led through that end. The result
+// depends on the sets of points and segments alone, but
 // for the order of the pieces.
 //
 // It returns an error wrapping ErrCrossingsRemain when splitRounds rounds do not
@@ -77,11 +81,11 @@ func SplitCrossings(ctx context.Context, pts []orb.Point, segs []Segment) (*Spli
 		s.Of[i] = int32(i)
 	}
 	through := map[orb.Point]map[int32]bool{} // the segments that cross at a place
-	for range splitRounds {
+	for round := range splitRounds {
 		if err := ctx.Err(); err != nil {
 			return nil, err
 		}
-		if !s.round(through) {
+		if !s.round(through, round > 0) {
 			s.finish(len(pts), through)
 			return s, nil
 		}
@@ -89,8 +93,35 @@ func SplitCrossings(ctx context.Context, pts []orb.Point, segs []Segment) (*Spli
 	return nil, fmt.Errorf("%d rounds: %w", splitRounds, ErrCrossingsRemain)
 }
 
-// round splits the pieces that cross and tells whether there were any.
-func (s *Split) round(through map[orb.Point]map[int32]bool) bool {
+// nearUlps is how near, in units in the last place, a crossing of pieces counts as
+// being at an end.
+const nearUlps = 32
+
+// nearestEnd returns the end of segment i or j that is nearest to p and within
+// nearUlps on both axes, or p if there is none.
+func (f *crossingFinder) nearestEnd(i, j int32, p orb.Point) orb.Point {
+	ends := [4]orb.Point{f.pts[f.segs[i].From], f.pts[f.segs[i].To], f.pts[f.segs[j].From], f.pts[f.segs[j].To]}
+	var ulp [2]float64 // at the largest coordinate of each axis
+	for axis := range 2 {
+		size := 0.0
+		for _, e := range ends {
+			size = max(size, math.Abs(e[axis]))
+		}
+		ulp[axis] = math.Nextafter(size, math.Inf(1)) - size
+	}
+	best, distance := p, math.Inf(1)
+	for _, e := range ends {
+		d := max(math.Abs(e[0]-p[0])/ulp[0], math.Abs(e[1]-p[1])/ulp[1])
+		if d <= nearUlps && (d < distance || d == distance && exact.CompareXY(e, best) < 0) {
+			best, distance = e, d
+		}
+	}
+	return best
+}
+
+// round splits the pieces that cross and tells whether there were any. snap leads
+// pieces that cross near an end through it.
+func (s *Split) round(through map[orb.Point]map[int32]bool, snap bool) bool {
 	f := newCrossingFinder(s.Points, s.Pieces)
 	type cut struct {
 		at orb.Point
@@ -102,6 +133,9 @@ func (s *Split) round(through map[orb.Point]map[int32]bool) bool {
 			return
 		}
 		at, onI, onJ := f.intersection(i, j)
+		if snap {
+			at = f.nearestEnd(i, j, at)
+		}
 		cuts[i] = append(cuts[i], cut{at, onI})
 		cuts[j] = append(cuts[j], cut{at, onJ})
 		if through[at] == nil {
