@@ -1,0 +1,201 @@
+package contour
+
+import (
+	"context"
+	"slices"
+	"testing"
+
+	"github.com/paulmach/orb"
+	"pgregory.net/rapid"
+
+	"isofacet/grid/decimal"
+	"isofacet/interp"
+	"isofacet/triangulate"
+)
+
+func levelAt(z float64) Level {
+	n, err := decimal.FromFloat(z)
+	if err != nil {
+		panic(err)
+	}
+	return Level{Number: n, Z: z}
+}
+
+// eachSample runs check on many samples of every kind.
+func eachSample(t *testing.T, check func(t *rapid.T, s *interp.Surface, levels Levels)) {
+	for name, draw := range samples {
+		t.Run(name, func(t *testing.T) {
+			rapid.Check(t, func(rt *rapid.T) {
+				in := draw(rt).oneValue()
+				m, err := triangulate.Delaunay(context.Background(), in.pts, triangulate.Options{Workers: 1})
+				if err != nil {
+					rt.Fatal(err)
+				}
+				s, err := interp.FromInputs(m, in.z)
+				if err != nil {
+					rt.Fatal(err)
+				}
+				check(rt, s, in.levelSet())
+			})
+		})
+	}
+}
+
+// TestLinesAreValidP5 checks the form of lines on hard surfaces: against the oracle, and by the half-edges that the
+// following itself passed.
+func TestLinesAreValidP5(t *testing.T) {
+	eachSample(t, func(t *rapid.T, s *interp.Surface, levels Levels) {
+		passed := make([][]triangulate.HalfEdge, len(levels))
+		src := newTriangles(s)
+		src.probe = &probe{
+			passed:   func(k int, h triangulate.HalfEdge) { passed[k] = append(passed[k], h) },
+			flip:     triangulate.NoTriangle,
+			crossing: Crossing,
+		}
+		probed, _, err := collect(context.Background(), src, levels, Options{Workers: 1})
+		if err != nil {
+			t.Fatal(err)
+		}
+		for k, l := range levels {
+			if err := checkPassing(s, l.Z, passed[k]); err != nil {
+				t.Fatalf("level %v: %v", l.Z, err)
+			}
+		}
+		lines, r, err := Lines(context.Background(), s, levels, Options{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if err := checkLines(s, levels, lines, r); err != nil {
+			t.Fatal(err)
+		}
+		if !sameLines(lines, probed) {
+			t.Fatal("lines differ when looked into")
+		}
+	})
+}
+
+func sameLines(a, b []Line) bool {
+	return slices.EqualFunc(a, b, func(a, b Line) bool {
+		return a.Level == b.Level && a.Closed == b.Closed && a.Depression == b.Depression && slices.Equal(a.Points, b.Points)
+	})
+}
+
+// TestMutationsAreNoticed puts faults into the following of lines: the checks must fail.
+func TestMutationsAreNoticed(t *testing.T) {
+	pts := []orb.Point{{0, 0}, {3.1, 0.2}, {6, -0.3}, {0.2, 3}, {3, 2.8}, {6.2, 3.1}, {-0.1, 6}, {2.9, 6.1}, {6, 6.3}}
+	z := []float64{0, 1, 0, 1, 3, 1, 0, 2, 1}
+	s := surfaceOf(t, pts, z, 1)
+	levels := Levels{levelAt(0.7), levelAt(1), levelAt(1.3), levelAt(2.2)}
+	run := func(p probe) (lines []Line, r Report, passed [][]triangulate.HalfEdge) {
+		src := newTriangles(s)
+		passed = make([][]triangulate.HalfEdge, len(levels))
+		p.passed = func(k int, h triangulate.HalfEdge) { passed[k] = append(passed[k], h) }
+		src.probe = &p
+		lines, r, err := collect(context.Background(), src, levels, Options{Workers: 1})
+		if err != nil {
+			t.Fatal(err)
+		}
+		return lines, r, passed
+	}
+	// What runs astray asks for crossings on sides that are not crossed.
+	somewhere := func(a orb.Point, za float64, b orb.Point, zb, level float64) orb.Point {
+		if (za >= level) == (zb >= level) {
+			return a
+		}
+		return Crossing(a, za, b, zb, level)
+	}
+	fault := func(passed [][]triangulate.HalfEdge) bool {
+		for k, l := range levels {
+			if checkPassing(s, l.Z, passed[k]) != nil {
+				return true
+			}
+		}
+		return false
+	}
+
+	lines, r, passed := run(probe{flip: triangulate.NoTriangle, crossing: Crossing})
+	if err := checkLines(s, levels, lines, r); err != nil || fault(passed) {
+		t.Fatalf("without a fault: %v, passing wrong: %v", err, fault(passed))
+	}
+	astray := 0 // at the outline a wrong turn ends the line like the right one
+	for tr := range s.Mesh().Triangles() {
+		lines, r, passed := run(probe{flip: tr, crossing: somewhere})
+		if err := checkLines(s, levels, lines, r); err == nil {
+			t.Errorf("a corner of triangle %d on the wrong side: not noticed in the lines", tr)
+		}
+		if fault(passed) {
+			astray++
+		}
+	}
+	if astray == 0 {
+		t.Error("corners on the wrong side: never noticed in what was passed")
+	}
+	unordered := func(a orb.Point, za float64, b orb.Point, zb, level float64) orb.Point {
+		return crossing(a[0], a[1], za, b[0], b[1], zb, level)
+	}
+	lines, r, _ = run(probe{flip: triangulate.NoTriangle, crossing: unordered})
+	if err := checkLines(s, levels, lines, r); err == nil {
+		t.Error("ends of sides not taken in (x, y) order: not noticed")
+	}
+}
+
+// TestOneAnswerP2 compares lines and bands of shuffled readings and of several numbers of workers, bit for bit.
+func TestOneAnswerP2(t *testing.T) {
+	eachSample(t, func(t *rapid.T, s *interp.Surface, levels Levels) {
+		m := s.Mesh()
+		n := m.NumVertices()
+		order := rapid.Permutation(indices(n)).Draw(t, "order")
+		pts, z := make([]orb.Point, n), make([]float64, n)
+		for i, v := range order {
+			pts[i], z[i] = m.Position(triangulate.Vertex(v)), s.Z()[v]
+		}
+		m2, err := triangulate.Delaunay(context.Background(), pts, triangulate.Options{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		s2, err := interp.FromInputs(m2, z)
+		if err != nil {
+			t.Fatal(err)
+		}
+		want, wantReport, err := Lines(context.Background(), s, levels, Options{Workers: 1})
+		if err != nil {
+			t.Fatal(err)
+		}
+		wantBands, err := Bands(context.Background(), s, levels, Options{Workers: 1})
+		if err != nil {
+			t.Fatal(err)
+		}
+		for _, workers := range []int{1, 2, 3, 8} {
+			got, r, err := Lines(context.Background(), s2, levels, Options{Workers: workers})
+			if err != nil {
+				t.Fatal(err)
+			}
+			if !sameLines(got, want) || r.WithoutLength != wantReport.WithoutLength {
+				t.Fatalf("%d workers, shuffled: other lines", workers)
+			}
+			bands, err := Bands(context.Background(), s2, levels, Options{Workers: workers})
+			if err != nil {
+				t.Fatal(err)
+			}
+			if !sameBands(bands, wantBands) {
+				t.Fatalf("%d workers, shuffled: other bands", workers)
+			}
+		}
+	})
+}
+
+func indices(n int) []int {
+	out := make([]int, n)
+	for i := range out {
+		out[i] = i
+	}
+	return out
+}
+
+func sameBands(a, b []Band) bool {
+	same := func(l, m *Level) bool { return (l == nil) == (m == nil) && (l == nil || *l == *m) }
+	return slices.EqualFunc(a, b, func(a, b Band) bool {
+		return same(a.Lower, b.Lower) && same(a.Upper, b.Upper) &&
+			slices.EqualFunc(a.Polygon, b.Polygon, func(r, q orb.Ring) bool { return slices.Equal(r, q) })
+	})
+}

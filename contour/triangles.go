@@ -1,0 +1,177 @@
+package contour
+
+import (
+	"github.com/paulmach/orb"
+
+	"isofacet/interp"
+	"isofacet/triangulate"
+)
+
+// triangles is a surface as a source of lines. A passage is a half-edge.
+type triangles struct {
+	mesh *triangulate.Mesh
+	pos  []orb.Point
+	z    []float64
+	// ranks holds, for every vertex, how many levels are not above its value: it is above level k if ranks > k.
+	ranks []int32
+	probe *probe
+}
+
+// probe looks into the following of lines, and puts faults into it, for tests that must notice them.
+type probe struct {
+	passed   func(k int, h triangulate.HalfEdge)
+	flip     triangulate.Triangle // here the corner across from where a line enters changes sides
+	crossing func(a orb.Point, za float64, b orb.Point, zb, level float64) orb.Point
+}
+
+func newTriangles(s *interp.Surface) *triangles {
+	m := s.Mesh()
+	return &triangles{mesh: m, pos: m.Positions(), z: s.Z()}
+}
+
+func (s *triangles) cells() int   { return s.mesh.NumTriangles() }
+func (s *triangles) slots() int64 { return int64(s.mesh.NumTriangles()) }
+
+func (s *triangles) rank(zs []float64, workers int) {
+	s.ranks = make([]int32, len(s.z))
+	inRanges(len(s.z), workers, func(_, from, to int) { rankValues(s.ranks[from:to], s.z[from:to], zs) })
+}
+
+// rankValues stores in dst how many of the levels zs are not above each of the values. Neighbours are likely to have near
+// values.
+func rankValues(dst []int32, values, zs []float64) {
+	near := 0
+	for i, z := range values {
+		near = below(zs, z, near)
+		dst[i] = int32(near)
+	}
+}
+
+func (s *triangles) spans(dst []span, first int, outline *[]passage) {
+	for i := range dst {
+		h := triangulate.Triangle(first + i).HalfEdge(0)
+		a, b, c := s.ranks[s.mesh.Origin(h)], s.ranks[s.mesh.Origin(h+1)], s.ranks[s.mesh.Origin(h+2)]
+		dst[i] = span{min(a, b, c), max(a, b, c)}
+		if outline != nil && a|b|c != 0 { // all below every level: no line begins
+			for e := h; e < h+3; e++ {
+				if s.mesh.Twin(e) == triangulate.NoHalfEdge {
+					if sp := s.side(passage(e)); sp.lo < sp.hi {
+						*outline = append(*outline, passage(e))
+					}
+				}
+			}
+		}
+	}
+}
+
+func (s *triangles) side(p passage) span {
+	h := triangulate.HalfEdge(p)
+	return span{s.ranks[s.mesh.Dest(h)], s.ranks[s.mesh.Origin(h)]}
+}
+
+func (s *triangles) begins(p passage) bool {
+	return s.mesh.Twin(triangulate.HalfEdge(p)) == triangulate.NoHalfEdge
+}
+
+func (s *triangles) follow(k int, z float64, starts []passage, seeds []int32, m *marks, points *arena, use func(fragment)) {
+	for _, p := range starts {
+		h := triangulate.HalfEdge(p)
+		if m.claim(int64(h.Triangle())) {
+			use(s.followFrom(k, z, h, m, points))
+		}
+	}
+	for _, t := range seeds {
+		if m.claim(int64(t)) {
+			use(s.followFrom(k, z, s.entry(k, triangulate.Triangle(t)), m, points))
+		}
+	}
+}
+
+// entry returns the half-edge of t through which the line of level k enters: from a corner above to one below.
+func (s *triangles) entry(k int, t triangulate.Triangle) triangulate.HalfEdge {
+	h := t.HalfEdge(0)
+	r := int32(k)
+	a, b, c := s.ranks[s.mesh.Origin(h)] > r, s.ranks[s.mesh.Origin(h+1)] > r, s.ranks[s.mesh.Origin(h+2)] > r
+	switch {
+	case a && !b:
+		return h
+	case b && !c:
+		return h + 1
+	case c && !a:
+		return h + 2
+	}
+	panic("contour: a triangle in the list of a level that does not cross it")
+}
+
+// followFrom returns the fragment that begins at h, whose triangle is claimed.
+func (s *triangles) followFrom(k int, z float64, h triangulate.HalfEdge, m *marks, points *arena) fragment {
+	f := fragment{first: passage(h)}
+	line := points.begin()
+	// The side that is passed runs from a, above, to b, below.
+	a, b := s.mesh.Origin(h), s.mesh.Dest(h)
+	pa, pb := s.pos[a], s.pos[b]
+	za, zb := s.z[a], s.z[b]
+	for {
+		if s.probe == nil {
+			line = appendPoint(line, Crossing(pa, za, pb, zb, z))
+		} else {
+			s.probe.passed(k, h)
+			line = appendPoint(line, s.probe.crossing(pa, za, pb, zb, z))
+		}
+		c := s.mesh.Apex(h)
+		above := s.z[c] >= z
+		if s.probe != nil && s.probe.flip == h.Triangle() {
+			above = !above
+		}
+		if above {
+			h = s.mesh.Next(h) // b→c
+			pa, za = s.pos[c], s.z[c]
+		} else {
+			h = s.mesh.Prev(h) // c→a
+			pb, zb = s.pos[c], s.z[c]
+		}
+		h = s.mesh.Twin(h)
+		if h == triangulate.NoHalfEdge {
+			line = appendPoint(line, Crossing(pa, za, pb, zb, z))
+			f.after = noPassage
+			break
+		}
+		if !m.claim(int64(h.Triangle())) {
+			f.after = passage(h)
+			break
+		}
+	}
+	if f.after == f.first {
+		line = append(line, line[0]) // room for the point that will repeat the first
+	}
+	f.points = points.keep(line)
+	return f
+}
+
+// appendPoint appends p unless it repeats the last point.
+func appendPoint(line []orb.Point, p orb.Point) []orb.Point {
+	if n := len(line); n > 0 && line[n-1] == p {
+		return line
+	}
+	return append(line, p)
+}
+
+func (s *triangles) release(seeds []int32, m *marks) {
+	for _, t := range seeds {
+		m.free(int64(t))
+	}
+}
+
+func (s *triangles) outline(zs []float64, use func(a, b orb.Point, ra, rb int, at func(k int) orb.Point) error) error {
+	for h := range triangulate.HalfEdge(s.mesh.NumHalfEdges()) {
+		if s.mesh.Twin(h) != triangulate.NoHalfEdge {
+			continue
+		}
+		a, b := s.mesh.Origin(h), s.mesh.Dest(h)
+		at := func(k int) orb.Point { return Crossing(s.pos[a], s.z[a], s.pos[b], s.z[b], zs[k]) }
+		if err := use(s.pos[a], s.pos[b], int(s.ranks[a]), int(s.ranks[b]), at); err != nil {
+			return err
+		}
+	}
+	return nil
+}
