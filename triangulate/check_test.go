@@ -237,9 +237,7 @@ func TestCheckSeesEveryFlip(t *testing.T) {
 // twice. Links, signs, convexity and counts are all in order.
 func TestCheckSeesADoubleWinding(t *testing.T) {
 	m := &Mesh{pos: []orb.Point{{0, 0}}, vertexOf: []Vertex{0, 1, 2, 3, 4, 5}}
-	for _, p := range []orb.Point{{10, 0}, {-8, 6}, {3, -10}, {3, 10}, {-8, -6}} {
-		m.pos = append(m.pos, p)
-	}
+	m.pos = append(m.pos, []orb.Point{{10, 0}, {-8, 6}, {3, -10}, {3, 10}, {-8, -6}}...)
 	for i := range Vertex(5) {
 		h := HalfEdge(3 * i)
 		m.half = append(m.half,

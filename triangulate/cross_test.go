@@ -255,8 +255,11 @@ func TestCross(t *testing.T) {
 			}
 			return anywhere()
 		}
-		crossings := 0
-		for range 2000 {
+		crossings, lines := 0, 2000
+		if testing.Short() {
+			lines = 300
+		}
+		for range lines {
 			a, b := some(), some()
 			crossings += compareCross(t, name, m, l, a, b)
 			if r.IntN(20) == 0 {

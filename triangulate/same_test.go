@@ -17,11 +17,14 @@ import (
 
 // sets are ten inputs large enough to be built by several goroutines.
 func sets() map[string][]orb.Point {
-	const n = 20_000
+	n := 20_000
+	if testing.Short() {
+		n = 9_000 // still enough for goroutines
+	}
 	all := map[string][]orb.Point{
 		"kuzmin":          pointsets.Kuzmin(n, 3),
 		"repeated places": append(pointsets.Survey(n/2, 3), pointsets.Survey(n/2, 3)...),
-		"few places":      slices.Repeat(lattice(30, 30, 0, 0, 1), 25),
+		"few places":      slices.Repeat(lattice(30, 30, 0, 0, 1), n/900),
 	}
 	for _, d := range pointsets.All {
 		all[d.Name] = d.Points(n, 3)
@@ -33,9 +36,13 @@ func sets() map[string][]orb.Point {
 // are the same for any order of the input and any number of workers.
 func TestOneAnswer(t *testing.T) {
 	r := rand.New(rand.NewPCG(1, 1))
+	numbers := []int{1, 2, 3, 8}
+	if testing.Short() {
+		numbers = []int{3}
+	}
 	for name, pts := range sets() {
 		want := corners(checked(t, pts, triangulate.Options{Workers: 1}))
-		for _, workers := range []int{1, 2, 3, 8} {
+		for _, workers := range numbers {
 			m := checked(t, shuffled(pts, r), triangulate.Options{Workers: workers})
 			sameTriangles(t, fmt.Sprintf("%s, shuffled, %d workers", name, workers), corners(m), want)
 		}

@@ -84,6 +84,9 @@ func sampled(m int) []int {
 // TestSelectionAgainstAnAdversary: an input made against the sampling costs no
 // more than a few sorts.
 func TestSelectionAgainstAnAdversary(t *testing.T) {
+	if testing.Short() {
+		t.Skip("-short: it compares times, which the race detector stretches unevenly")
+	}
 	const n = 100_000
 	x, turns := adversary(n)
 	if turns < 200 {

@@ -67,7 +67,7 @@ func TestTieRuleInAllOrders(t *testing.T) {
 			}
 		}
 		// Seven is one in nine for time's sake; they hold all sixes anyway.
-		if n := len(set); n >= 3 && n <= 6 || n == 7 && chosen%9 == 1 {
+		if n := len(set); n >= 3 && n <= 6 || n == 7 && chosen%9 == 1 && !testing.Short() {
 			sets = append(sets, set)
 		}
 	}
