@@ -76,9 +76,9 @@
 // Delaunay takes time O(n log n) and, while it works, 92 bytes a point (up to
 // 135 if nearly all are on the hull); the mesh keeps 68 bytes a point. A Locator
 // adds 2 bytes a vertex once for the mesh, Around and the like 4. Locate takes
-// expected time O(1) for evenly spread vertices when the place is in memory that is
-// at hand, so sort places along a curve before asking for many. Cross takes O(1)
-// for each crossing.
+// expected time O(1) for evenly spread vertices, nearly all of it waiting for
+// memory: whoever asks for many places sorts them along a curve first. Cross takes
+// O(1) for each crossing.
 //
 // # Method
 //
