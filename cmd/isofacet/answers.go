@@ -75,14 +75,14 @@ func (q *queryCommand) answer(cmd *cobra.Command, list []*input, l *loaded, aske
 	if err != nil {
 		return err
 	}
-	result := &queryResult{Extent: l.extents(q.decimals), Surface: l.surfaceCounts(q.decimals), Asked: len(samples)}
+	outside := 0
 	for i := range samples {
 		if samples[i].Location.Place == triangulate.Outside {
-			result.Outside++
+			outside++
 		}
 	}
-	q.report.Note(fmt.Sprintf("places: %d asked, %d outside the surface", result.Asked, result.Outside), "asked", result.Asked, "outside", result.Outside)
-	if result.Outside == result.Asked && result.Asked > 0 {
+	q.report.Note(fmt.Sprintf("places: %d asked, %d outside the surface", len(samples), outside), "asked", len(samples), "outside", outside)
+	if outside == len(samples) && outside > 0 {
 		q.report.Warn("all-outside", "every place lies outside the surface: are x and y in the right order?")
 	}
 	q.warnOfLongOutline(l, advice.MaxEdge(advice.Spacing(l.surface.Mesh(), q.workers())))
@@ -91,7 +91,7 @@ func (q *queryCommand) answer(cmd *cobra.Command, list []*input, l *loaded, aske
 	}
 	if q.rec != nil {
 		q.recordReadings(list, l)
-		q.rec.Stable.Result = result
+		q.rec.Stable.Result = &queryResult{l.extents(q.decimals), l.surfaceCounts(q.decimals), len(samples), outside}
 	}
 	t := q.table(l, asked, samples)
 	for _, d := range out.list {

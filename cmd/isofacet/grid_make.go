@@ -49,11 +49,12 @@ type rasterResult struct {
 // memory; the one for standard output comes last, since what went there cannot be
 // taken back.
 func (g *gridCommand) make(cmd *cobra.Command, files []string, list []*input, l *loaded, spec grid.Spec, out *outputs) error {
-	result := &gridResult{Extent: l.extents(g.decimals), Surface: l.surfaceCounts(g.decimals), Lattice: describe(spec)}
+	var rasters []rasterResult
+	sides := describe(spec)
 	slices.SortStableFunc(out.list, func(a, b *destination) int { return boolCompare(a.path == "-", b.path == "-") })
 	g.report.Note(fmt.Sprintf("lattice: %s and %s of cell %s, from %s,%s to %s,%s, values at %s",
 		counted(spec.Cols, "column"), counted(spec.Rows, "row"), cellText(spec.CellX, spec.CellY),
-		result.Lattice.XMin, result.Lattice.YMin, result.Lattice.XMax, result.Lattice.YMax, spec.ValuesAt),
+		sides.XMin, sides.YMin, sides.XMax, sides.YMax, spec.ValuesAt),
 		"columns", spec.Cols, "rows", spec.Rows)
 	g.warnOfLongOutline(l, advice.MaxEdge(advice.Spacing(l.surface.Mesh(), g.workers())))
 
@@ -67,7 +68,7 @@ func (g *gridCommand) make(cmd *cobra.Command, files []string, list []*input, l 
 				return err
 			}
 			shown = d.part
-			result.Rasters = append(result.Rasters, g.describeRaster(l, raster))
+			rasters = append(rasters, g.describeRaster(l, raster))
 		}
 		if err := g.settleWarnings(); err != nil {
 			return err
@@ -78,7 +79,7 @@ func (g *gridCommand) make(cmd *cobra.Command, files []string, list []*input, l 
 	}
 	if g.rec != nil {
 		g.recordReadings(list, l)
-		g.rec.Stable.Result = result
+		g.rec.Stable.Result = &gridResult{l.extents(g.decimals), l.surfaceCounts(g.decimals), sides, rasters}
 	}
 	return out.commit()
 }

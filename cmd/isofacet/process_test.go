@@ -9,6 +9,7 @@ import (
 	"os"
 	"os/exec"
 	"path/filepath"
+	"runtime"
 	"strings"
 	"syscall"
 	"testing"
@@ -220,4 +221,34 @@ func TestClosedPipe(t *testing.T) {
 	if text, err := os.ReadFile(filepath.Join(dir, "slope.csv")); err != nil || !strings.HasPrefix(string(text), `y\x,`) {
 		t.Errorf("the other output begins %.20q, %v", text, err)
 	}
+}
+
+// endless is a stream of readings that never ends.
+type endless struct{ n int }
+
+func (e *endless) Read(b []byte) (int, error) {
+	text := b[:0]
+	for len(text)+40 < len(b) {
+		text = fmt.Appendf(text, "%d %d %d\n", e.n, e.n*7919%100003, e.n%97)
+		e.n++
+	}
+	return len(text), nil
+}
+
+// A stream that never ends stops at the memory limit, with its status and the
+// number, and without having taken much more.
+func TestEndlessInputIsRefused(t *testing.T) {
+	dir := workshop(t)
+	cmd, words := start(t, dir, &endless{}, "grid", "--cell", "1", "--out", "out.csv", "--memory", "100MB")
+	cmd.Wait()
+	if got := cmd.ProcessState.ExitCode(); got != 4 {
+		t.Errorf("exit status %d, want 4\n%s", got, words)
+	}
+	if !strings.Contains(words.String(), "reading standard input, after") || !strings.Contains(words.String(), "expected to fit 95.4MiB") {
+		t.Errorf("says %q", words)
+	}
+	if usage, ok := cmd.ProcessState.SysUsage().(*syscall.Rusage); ok && runtime.GOOS == "linux" && usage.Maxrss > 300<<10 {
+		t.Errorf("took %d KiB under a limit of 100 MB", usage.Maxrss)
+	}
+	wantOld(t, dir)
 }
