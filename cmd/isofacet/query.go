@@ -25,9 +25,9 @@ those of readings and written in front of the answers as they are.
 Where triangles meet, slope and azimuth are those of the triangle that owns the
 place: the one just east of it, or north where an edge runs east.
 
-With --explain a row also holds the number of the triangle (in the order of its
-corners, from 1), its three readings, smallest x first, and the weight of each: the
-value is the sum of weight times reading.`
+With --explain a row also holds the triangle's number (from 1, triangles sorted by
+their corners), its three readings counter-clockwise, the one with the smallest x
+first, and the weight of each: the value is the sum of weight times reading.`
 
 const queryExample = `isofacet query sample:gravel-pit/shots.csv --at 431250,5621500 --at 431260,5621500
 isofacet query sample:gravel-pit/shots.csv --at sample:gravel-pit/checks.csv --out checked.csv

@@ -22,8 +22,8 @@ func Help(w io.Writer, cmd *cobra.Command) error {
 	fmt.Fprintf(p, "Usage: %s\n", usage(cmd))
 	if cmd.Long != "" {
 		fmt.Fprintln(p)
-		for _, line := range lines(cmd.Long) {
-			writeWrapped(p, line, 0)
+		for _, paragraph := range joined(lines(cmd.Long)) {
+			writeWrapped(p, paragraph, 0)
 		}
 	}
 	if cmd.HasAvailableSubCommands() {
@@ -50,6 +50,23 @@ func Help(w io.Writer, cmd *cobra.Command) error {
 		fmt.Fprintf(p, "\nMore about a command: %s COMMAND --help\n", cmd.CommandPath())
 	}
 	return p.Flush()
+}
+
+// joined makes one line of every paragraph; empty and indented lines stay as they
+// are.
+func joined(lines []string) []string {
+	var out []string
+	open := false
+	for _, line := range lines {
+		plain := line != "" && !strings.HasPrefix(line, " ")
+		if plain && open {
+			out[len(out)-1] += " " + line
+		} else {
+			out = append(out, line)
+		}
+		open = plain
+	}
+	return out
 }
 
 // usage returns the line that shows how a command is typed.

@@ -45,8 +45,7 @@ func TestHelp(t *testing.T) {
 
 Usage: tool cut [options] [FILE...]
 
-Cuts .dotted and 'quoted' things with a \ in them.
-.TH is no macro here.
+Cuts .dotted and 'quoted' things with a \ in them. .TH is no macro here.
 
 Raster
   --cell S|SX,SY          size of a cell, with a text that is so long that it
