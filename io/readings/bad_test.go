@@ -12,6 +12,7 @@ import (
 // there and what was expected; advice is the program's.
 func TestBadInput(t *testing.T) {
 	const head = "id,x,y,z,code\n"
+	var met [kindCount]bool
 	long := strings.Repeat("n", 2000)
 	for _, c := range []struct {
 		name, text string
@@ -153,8 +154,16 @@ func TestBadInput(t *testing.T) {
 				if !errors.As(err, &p) || p.Kind != c.kind || p.File != "a.csv" {
 					t.Errorf("kind %d, want %d", p.Kind, c.kind)
 				}
+				met[p.Kind] = true
 			}
 		})
+	}
+	// What no small text can bring about: other tests do, or 2^31 readings would.
+	met[0], met[Unreadable], met[TooManyBad], met[TooMany] = true, true, true, true
+	for k, ok := range met {
+		if !ok {
+			t.Errorf("no input leads to kind %d", k)
+		}
 	}
 }
 

@@ -2,7 +2,6 @@ package readings
 
 import (
 	"bytes"
-	"math"
 	"strconv"
 	"unicode/utf8"
 	"unsafe"
@@ -257,5 +256,3 @@ func expectedNumber(kind Kind, decimal byte) string {
 	}
 	return "a number such as " + example
 }
-
-func isFinite(v float64) bool { return !math.IsNaN(v) && !math.IsInf(v, 0) }

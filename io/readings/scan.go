@@ -148,6 +148,7 @@ func (s *scanner) source(number int, src Source) error {
 	if perr := s.rolesToChooseBy(f.plan); perr != nil {
 		return perr
 	}
+	before := s.summary.Counts.Read
 	if f.chunks.ended {
 		err = s.inline(ctx, f)
 	} else {
@@ -155,6 +156,9 @@ func (s *scanner) source(number int, src Source) error {
 	}
 	if err != nil {
 		return err
+	}
+	if s.summary.Counts.Read == before {
+		s.warn(Warning{src.Name, 0, "no readings"})
 	}
 	if f.converted > 0 {
 		s.warn(Warning{src.Name, f.convertedFirst, fmt.Sprintf("not UTF-8: taken as Windows-1252 (%s in all)", lines(f.converted))})
