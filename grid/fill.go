@@ -21,6 +21,7 @@ const (
 	Value           Show = iota // the interpolated value
 	Slope                       // rise over run of the triangle that owns the node
 	DownhillAzimuth             // where water would run, degrees clockwise from north; no-data on a flat
+	Shade                       // the share of a light from the north-west that the owner is struck by, 0 to 1; see shade
 )
 
 // Options says what to show and how to work.
@@ -34,7 +35,7 @@ type Options struct {
 	Progress func(done, total int)
 }
 
-// Fill returns s, or its slope or azimuth, at every node of spec. Nodes outside
+// Fill returns s, or its slope, azimuth or shade, at every node of spec. Nodes outside
 // the surface are NaN; a node on the outline is inside.
 //
 // Every node is written once, by the triangle that owns it (see
@@ -178,6 +179,8 @@ func (s Show) String() string {
 		return "slope"
 	case DownhillAzimuth:
 		return "downhill-azimuth"
+	case Shade:
+		return "shade"
 	}
 	return fmt.Sprintf("Show(%d)", uint8(s))
 }

@@ -189,7 +189,7 @@ type writer struct {
 	*scan
 	t     triangulate.Triangle
 	plane interp.Plane
-	fixed float64 // the triangle's slope or azimuth
+	fixed float64 // the triangle's slope, azimuth or shade
 }
 
 func (w *writer) prepare(t triangulate.Triangle) {
@@ -201,6 +201,8 @@ func (w *writer) prepare(t triangulate.Triangle) {
 		w.fixed = interp.Slope(w.s.Gradient(w.t))
 	case DownhillAzimuth:
 		w.fixed = interp.DownhillAzimuth(w.s.Gradient(w.t))
+	case Shade:
+		w.fixed = shade(w.s.Gradient(w.t))
 	}
 }
 
