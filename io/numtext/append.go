@@ -21,17 +21,8 @@ func Append(dst []byte, v float64, decimals int) []byte {
 	if decimals < 0 {
 		return shortest(dst, v)
 	}
-	if decimals < len(pow10) {
-		// t = fl(v 10^d) is off by at most half an ulp of t, and t, its nearest integer r and 1/2 are multiples of that ulp
-		// below 2^52. So unless |t - r| = 1/2 exactly, |t - r| is at least an ulp from 1/2, and the exact product rounds to r too.
-		t := float64(v * pow10[decimals])
-		if math.Abs(t) < 1<<51 {
-			const shift = 3 << 51 // adding it leaves no bits for a fraction: rounds to an integer, ties to even
-			r := float64(t+shift) - shift
-			if math.Abs(t-r) != 0.5 {
-				return fixed(dst, int64(r), decimals)
-			}
-		}
+	if n, ok := units(v, decimals); ok {
+		return fixed(dst, n, decimals)
 	}
 	first := len(dst)
 	dst = strconv.AppendFloat(dst, v, 'f', decimals, 64)
@@ -41,8 +32,34 @@ func Append(dst []byte, v float64, decimals int) []byte {
 var pow10 = [...]float64{1, 1e1, 1e2, 1e3, 1e4, 1e5, 1e6, 1e7, 1e8, 1e9, 1e10, 1e11,
 	1e12, 1e13, 1e14, 1e15, 1e16, 1e17, 1e18, 1e19, 1e20, 1e21, 1e22}
 
+// units returns v 10^decimals rounded to the nearest integer, unless it takes more than a product to tell which.
+func units(v float64, decimals int) (n int64, ok bool) {
+	if decimals >= len(pow10) {
+		return 0, false
+	}
+	// t = fl(v 10^d) is off by at most half an ulp of t, and t, its nearest integer r and 1/2 are multiples of that ulp
+	// below 2^52. So unless |t - r| = 1/2 exactly, |t - r| is at least an ulp from 1/2, and the exact product rounds to r too.
+	t := float64(v * pow10[decimals])
+	if !(math.Abs(t) < 1<<51) {
+		return 0, false
+	}
+	const shift = 3 << 51 // adding it leaves no bits for a fraction: rounds to an integer, ties to even
+	r := float64(t+shift) - shift
+	return int64(r), math.Abs(t-r) != 0.5
+}
+
 // Rounded returns the double that a reader gets from Append's text: v rounded to so many decimals, or v itself for Shortest.
+// It never falls when v rises.
 func Rounded(v float64, decimals int) float64 {
+	if v == 0 {
+		return 0 // without the sign
+	}
+	if decimals < 0 {
+		return v
+	}
+	if n, ok := units(v, decimals); ok {
+		return float64(n) / pow10[decimals] // both exact: one rounding, as in Parse
+	}
 	var buf [32]byte
 	r, _ := Parse(Append(buf[:0], v, decimals)) // Append writes nothing else than numbers within the range of doubles
 	return r
