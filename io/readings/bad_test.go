@@ -131,6 +131,7 @@ func TestBadInput(t *testing.T) {
 		{"no z, but a depth", "well,x,y,depth to water\nA,1,2,3\n", "", Declared{},
 			"a.csv:1: no column for z: expected x, y and z; the roles found are id, x, y, depth", MissingRole},
 		{"no z declared, but a depth", "A,1,2,3\n", "id,x,y,depth", Declared{}, "a.csv:1: no column for z: expected x, y and z; the roles found are id, x, y, depth", MissingRole},
+		{"a header of thousands", "x,y,z" + strings.Repeat(",a", 5000) + "\n", "", Declared{}, "a.csv:1: 5003 fields: expected at most 4096", FieldCount},
 		{"no y", "x,z\n1,2\n", "", Declared{}, "a.csv:1: no column for y: expected x, y and z; the roles found are x, z", MissingRole},
 		{"a depth beside z", "A,1,2,3,4\n", "id,x,y,z,depth", Declared{},
 			"a.csv:1: role depth: expected a role that is used here: x y z id code line zone status time round class qualifier", UnusedRole},
@@ -187,7 +188,7 @@ func TestLenient(t *testing.T) {
 	if !slices.Equal(got, want) {
 		t.Errorf("refused:\n%s", strings.Join(got, "\n"))
 	}
-	wantOut := []LeftOut{{0, 8, "G", "z is -9999.00"}, {0, 9, "H", "z is blank"}}
+	wantOut := []LeftOut{{0, 8, "G", "z is -9999"}, {0, 9, "H", "z is blank"}}
 	if !slices.Equal(s.LeftOut, wantOut) {
 		t.Errorf("left out: %+v", s.LeftOut)
 	}
@@ -213,8 +214,8 @@ func TestMissingMarks(t *testing.T) {
 		{"nm", "NM", "z is NM"},
 		{"dry", "-9999,DRY,NM", "z is DRY"},
 		{"-9999", "-9999", "z is -9999"},
-		{"-9999.0", "-9999", "z is -9999.0"},
-		{"-9.999e3", "-9999", "z is -9.999e3"},
+		{"-9999.0", "-9999", "z is -9999"},
+		{"-9.999e3", "-9999", "z is -9999"},
 		{"", "blank", "z is blank"},
 		{"", "NM", ""},
 		{"NaN", "NaN", "z is NaN"},

@@ -11,6 +11,9 @@ import (
 // beginning are headers: 0, 1, or 2 with a row of units.
 func (s *sniffer) columns(b []byte, rows []row) (headers int, err *PositionError) {
 	declared := &s.declared.Columns
+	if n := len(rows[0].fields); n > maxColumns {
+		return 0, s.atField(b, rows[0], -1, &PositionError{Kind: FieldCount, What: fields(n), Expected: fmt.Sprintf("at most %d", maxColumns)})
+	}
 	first := s.line + countLines(b[:rows[0].at[0]]) + 1
 	s.layout.HeaderLine = first // for warnings; 0 again if it is none
 	switch {

@@ -19,7 +19,7 @@ type plan struct {
 	fieldOf [roleCount]int // number of the field of a role from 0, -1 without one
 
 	missingText map[string]string // by markKey: what to call it
-	missingZ    []float64         // marks that are numbers
+	missingZ    []missingValue
 	// raw keeps every record as it is written (positions).
 	raw bool
 }
@@ -67,7 +67,7 @@ func newPlan(l Layout, d *Declared, f format, n need) *plan {
 	p.missingText = make(map[string]string)
 	for _, m := range d.Missing {
 		if v, ok := markNumber(m); ok {
-			p.missingZ = append(p.missingZ, v)
+			p.missingZ = append(p.missingZ, missingValue{v, m})
 		} else if strings.EqualFold(m, blankMark) {
 			p.missingText[""] = "blank"
 		} else {
@@ -75,6 +75,22 @@ func newPlan(l Layout, d *Declared, f format, n need) *plan {
 		}
 	}
 	return p
+}
+
+// missingValue is a mark that is a number.
+type missingValue struct {
+	v    float64
+	mark string
+}
+
+// missing returns the mark that a value of z is, "" if it is none.
+func (p *plan) missing(z float64) string {
+	for i := range p.missingZ {
+		if p.missingZ[i].v == z {
+			return p.missingZ[i].mark
+		}
+	}
+	return ""
 }
 
 // blankMark stands for the empty field among missing marks.

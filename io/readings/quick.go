@@ -128,10 +128,8 @@ func (w *worker) quickRow(b []byte, p int, blk *Block) (next int) {
 	default:
 		return 0
 	}
-	for _, z := range w.missingZ {
-		if v[2] == z {
-			return 0
-		}
+	if w.missing(v[2]) != "" {
+		return 0
 	}
 	if w.choosing {
 		for slot := range from {

@@ -3,7 +3,6 @@ package readings
 import (
 	"bytes"
 	"fmt"
-	"slices"
 	"strings"
 	"sync/atomic"
 	"unicode"
@@ -191,8 +190,8 @@ func (w *worker) record(b []byte, p, next int) {
 			complain(i, &PositionError{Kind: kind, What: role.String(), Seen: shorten(string(t)), Expected: expectedNumber(kind, w.decimal)})
 			continue
 		}
-		if role == Z && slices.Contains(w.missingZ, value) {
-			missing = fmt.Sprintf("z is %s", t)
+		if mark := w.missing(value); mark != "" && role == Z {
+			missing = fmt.Sprintf("z is %s", mark)
 			continue
 		}
 		v[a.slot], decimals[a.slot] = value, d
