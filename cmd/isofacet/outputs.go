@@ -28,13 +28,15 @@ type writing struct {
 // byExtension is the word for "no format was named".
 const byExtension = "by extension"
 
+const groupOutput = "Output"
+
 // writingOptions returns the options of every command that writes. Parts are the
 // names that may stand before the equals sign of --out, formats those of --format.
 func (w *writing) writingOptions(parts, formats []string) []manual.Option {
 	w.outs = option.Outs{Parts: parts}
 	w.format = option.NewChoice(append([]string{byExtension}, formats...)...)
 	w.record = typed{form: "FILE"}
-	const group = "Output"
+	const group = groupOutput
 	out := "file to write, - for standard output"
 	if len(parts) > 1 {
 		out += "; PART=FILE writes one of the parts " + strings.Join(parts, ", ")

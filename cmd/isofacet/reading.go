@@ -30,6 +30,8 @@ type reading struct {
 	verticalDatum   option.Label
 }
 
+const groupLabels = "Labels, carried into every output"
+
 // readingOptions returns the options of every command that reads readings.
 func (r *reading) readingOptions() []manual.Option {
 	zero := decimal.FromInt(0)
@@ -43,7 +45,7 @@ func (r *reading) readingOptions() []manual.Option {
 	r.only = parsedList[readings.Pattern]{form: "ROLE=PATTERN", parse: pattern("only")}
 	r.without = parsedList[readings.Pattern]{form: "ROLE=PATTERN", parse: pattern("without")}
 
-	const text, which, labels = "Text of the readings", "Which readings", "Labels, carried into every output"
+	const text, which, labels = "Text of the readings", "Which readings", groupLabels
 	return []manual.Option{
 		{Group: text, Name: "columns", Value: &r.columns, Default: "the header's words",
 			Text: "what the columns hold: in order, as in id,northing,easting,elevation,code (- skips one), or by header name or number, as in x=East,y=North,z=4"},

@@ -37,12 +37,14 @@ type running struct {
 	helpErr  error
 }
 
+const groupRunning = "Running"
+
 // runningOptions returns the options of every command that does work.
 func (r *running) runningOptions() []manual.Option {
 	r.progress = option.NewChoice(string(progress.Auto), string(progress.Always), string(progress.Never))
 	r.log = option.NewChoice(string(report.Text), string(report.JSON))
 	r.warnings = option.NewChoice("keep", "fail")
-	const group = "Running"
+	const group = groupRunning
 	return []manual.Option{
 		{Group: group, Name: "threads", Value: &r.threads, Text: "processors to use; the results do not depend on it", Default: "all"},
 		{Group: group, Name: "memory", Value: &r.memory, Text: "memory to stay within; work that would not fit is refused", Default: "three quarters of what is free"},
