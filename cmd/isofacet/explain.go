@@ -88,6 +88,7 @@ var kindHints = map[readings.Kind]string{
 	readings.LongLine:      "is the file a text with a reading a line?",
 	readings.Empty:         "is it the right file, and are --skip-rows and --comment right?",
 	readings.Unreadable:    "look at the name and at the rights to read it",
+	readings.TooMany:       "thin the readings, or take a part of the area at a time",
 	readings.TooManyBad:    "the layout is probably not what was detected: say --columns, --delimiter, --decimal",
 	readings.NoHeader:      "say what the columns hold, as in --columns id,x,y,z",
 	readings.UnknownHeader: "say what the columns hold, as in --columns x=East,y=North,z=4",
@@ -112,10 +113,14 @@ func explainReadings(err error) (status.Code, string, bool) {
 		return status.WrongUsage, "see --" + e.Option + " in the help of the command", true
 	}
 	if e, ok := errors.AsType[*readings.PositionError](err); ok {
-		if e.Kind == readings.Unreadable {
-			return status.NotFinished, kindHints[e.Kind], true
+		code := status.WrongData
+		switch e.Kind {
+		case readings.Unreadable:
+			code = status.NotFinished
+		case readings.TooMany:
+			code = status.TooBig
 		}
-		return status.WrongData, kindHints[e.Kind], true
+		return code, kindHints[e.Kind], true
 	}
 	if _, ok := errors.AsType[*interp.SameSpotError](err); ok {
 		return status.WrongData, "say with --same-spot which of them counts", true
@@ -148,7 +153,7 @@ func explainFiles(err error) (status.Code, string, bool) {
 	case errors.Is(err, context.Canceled):
 		return status.Interrupted, "", true
 	case errors.Is(err, syscall.ENOSPC):
-		return status.NotFinished, "the disk is full: make room, or write to another; what was there before is untouched", true
+		return status.NotFinished, "the disk is full: make room, or write elsewhere", true
 	case errors.Is(err, fs.ErrPermission):
 		return status.NotFinished, "look at the rights of the file and of its folder", true
 	case errors.Is(err, fs.ErrNotExist):

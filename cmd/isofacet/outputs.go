@@ -87,6 +87,9 @@ type outputs struct {
 	set    outfile.Set
 	list   []*destination
 	record *outfile.File
+	// written counts the bytes of the output being written, for progress.
+	written  int
+	progress func(done, total int)
 	// hashed has an entry for every file that the run record names.
 	hashed []hashed
 }
@@ -264,7 +267,7 @@ func (o *outputs) create(option, path string, opt outfile.Options, inputs []stri
 
 // writer returns f, hashed on the way if the run is recorded.
 func (o *outputs) writer(f *outfile.File, entry record.File) io.Writer {
-	w := io.Writer(&stoppable{f, o.ctx})
+	w := io.Writer(&watched{f, o})
 	if o.p.rec == nil {
 		return w
 	}
@@ -274,18 +277,23 @@ func (o *outputs) writer(f *outfile.File, entry record.File) io.Writer {
 	return w
 }
 
-// stoppable is a writer that ends with the run: a format need not look out for
-// signals.
-type stoppable struct {
+// watched is a writer that ends with the run and shows how far it has come: a
+// format need not look out for signals, nor count.
+type watched struct {
 	io.Writer
-	ctx context.Context
+	o *outputs
 }
 
-func (s *stoppable) Write(b []byte) (int, error) {
-	if err := s.ctx.Err(); err != nil {
+func (w *watched) Write(b []byte) (int, error) {
+	if err := w.o.ctx.Err(); err != nil {
 		return 0, err
 	}
-	return s.Writer.Write(b)
+	n, err := w.Writer.Write(b)
+	w.o.written += n
+	if w.o.progress != nil {
+		w.o.progress(w.o.written, 0)
+	}
+	return n, err
 }
 
 // abort gives up everything that is not complete.
@@ -294,7 +302,10 @@ func (o *outputs) abort() { o.set.Abort() }
 // write has one destination written. Standard output is passed on at once; its
 // reader leaving early ends that output and nothing else.
 func (o *outputs) write(d *destination, one func(*destination) error) error {
+	report, finish := o.p.display.Stage("writing bytes")
+	o.written, o.progress = 0, report
 	err := one(d)
+	finish()
 	if err == nil && d.file.IsStandardOutput() {
 		err = d.file.Commit()
 	}

@@ -38,14 +38,23 @@ func (a *At) Set(text string) error {
 		a.Files = append(a.Files, text)
 		return nil
 	}
-	if errX != nil || errY != nil || !finite(x) || !finite(y) {
+	if errX != nil || errY != nil {
 		return &BadValue{text, "two numbers X,Y, such as 431.5,-20"}
 	}
-	a.Places = append(a.Places, Place{x, y, tx, ty})
+	if !accepted(x) || !accepted(y) {
+		return &BadValue{text, "two numbers X,Y of 0 or from 1e-60 to 1e60 in size"}
+	}
+	// Adding 0 makes -0 into 0.
+	a.Places = append(a.Places, Place{x + 0, y + 0, tx, ty})
 	return nil
 }
 
-func finite(v float64) bool { return !math.IsNaN(v) && !math.IsInf(v, 0) }
+// accepted reports whether v is a coordinate that the surface decides exactly; NaN
+// and infinities are none.
+func accepted(v float64) bool {
+	size := math.Abs(v)
+	return size == 0 || size >= 1e-60 && size <= 1e60
+}
 
 // String writes the places and files as they are typed, separated by blanks.
 func (a *At) String() string {

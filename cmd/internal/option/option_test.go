@@ -46,7 +46,7 @@ func TestValues(t *testing.T) {
 			[]string{"", "slope=", "speed=a.csv"}},
 		{"place", func() pflag.Value { return new(At) },
 			map[string]string{"1,2": "1,2", "-1.50,2e3": "-1.50,2e3", "wells.csv": "wells.csv", "-": "-", "a,b.csv": "a,b.csv"},
-			[]string{"", "5", "1,b", "nan,1", "1,2,3"}},
+			[]string{"", "5", "1,b", "nan,1", "1,2,3", "1e70,0", "0,-1e-70", "inf,0"}},
 		{"label", func() pflag.Value { return new(Label) },
 			map[string]string{"NAVD88": "NAVD88", "local, 2019": "local, 2019"}, []string{"", " ", "a\nb"}},
 		{"system", func() pflag.Value { return new(System) },

@@ -13,8 +13,8 @@
 //
 // A display that is not shown writes nothing at all, so a pipe, a log file or a
 // scheduler's mail holds only words. A shown one stays quiet for the first
-// moments: short work draws no bar. Text written through the display while a bar
-// stands appears above it.
+// moments: short work draws no bar. Text written through the display is written
+// before Write returns, whatever is drawn.
 //
 // # Cost
 //

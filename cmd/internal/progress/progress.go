@@ -47,8 +47,8 @@ type Display struct {
 	start time.Time
 
 	mu   sync.Mutex
-	bars *mpb.Progress // nil until the first bar stands
-	bar  *mpb.Bar      // the bar of the stage at work, nil between stages
+	bars *mpb.Progress // nil while nothing is drawn
+	bar  *mpb.Bar      // the one bar of bars
 }
 
 // New returns a display on w that draws bars only if shown.
@@ -81,10 +81,11 @@ func (d *Display) Stage(name string) (report func(done, total int), finish func(
 func (d *Display) draw(name string, done, total int64) {
 	d.mu.Lock()
 	defer d.mu.Unlock()
+	if !d.shown {
+		return
+	}
 	if d.bars == nil {
 		d.bars = mpb.New(mpb.WithOutput(d.w), mpb.WithAutoRefresh(), mpb.WithWidth(64))
-	}
-	if d.bar == nil {
 		d.bar = d.bars.AddBar(0,
 			mpb.BarRemoveOnComplete(),
 			mpb.PrependDecorators(decor.Name(name, decor.WC{W: 16, C: decor.DindentRight})),
@@ -122,32 +123,35 @@ func thousands(n int64) string {
 func (d *Display) endStage() {
 	d.mu.Lock()
 	defer d.mu.Unlock()
-	if d.bar != nil {
-		d.bar.Abort(true)
-		d.bar.Wait()
-		d.bar = nil
-	}
+	d.clear()
 }
 
-// Write writes text above the bar that stands, or straight to the output.
+// clear takes away what is drawn and waits until it is gone. The next report
+// draws anew.
+func (d *Display) clear() {
+	if d.bars == nil {
+		return
+	}
+	d.bar.Abort(true)
+	d.bars.Wait()
+	d.bars, d.bar = nil, nil
+}
+
+// Write takes the bar away and writes text straight to the output. (The library
+// can print above a bar, but from a goroutine of its own: a word could come late or,
+// on a terminal that tells no size, not at all.)
 func (d *Display) Write(text []byte) (int, error) {
 	d.mu.Lock()
 	defer d.mu.Unlock()
-	if d.bars != nil {
-		return d.bars.Write(text)
-	}
+	d.clear()
 	return d.w.Write(text)
 }
 
 // Close takes away what is drawn; afterwards the display only passes text on.
 // Closing twice is harmless.
 func (d *Display) Close() {
-	d.endStage()
 	d.mu.Lock()
 	defer d.mu.Unlock()
+	d.clear()
 	d.shown = false
-	if d.bars != nil {
-		d.bars.Wait()
-		d.bars = nil
-	}
 }

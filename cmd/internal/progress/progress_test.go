@@ -87,13 +87,17 @@ func TestLongWorkDrawsItsNameAndShare(t *testing.T) {
 	wg.Wait()
 	report(10*batch, 20*batch)
 	time.Sleep(400 * time.Millisecond) // more than two of the library's refreshes
-	d.Write([]byte("a word above the bar\n"))
+	d.Write([]byte("a word in between\n"))
+	if !strings.HasSuffix(out.String(), "a word in between\n") {
+		t.Errorf("drew %q, want the word at once, at the end", out.String())
+	}
+	report(10*batch, 20*batch)
 	time.Sleep(400 * time.Millisecond)
 	finish()
 	d.Close()
 	d.Write([]byte("after\n"))
 	got := out.String()
-	for _, want := range []string{"triangulating", "50 %", "a word above the bar", "after\n"} {
+	for _, want := range []string{"triangulating", "50 %", "a word in between", "after\n"} {
 		if !strings.Contains(got, want) {
 			t.Errorf("drew %q, want %q in it", got, want)
 		}
