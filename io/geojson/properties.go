@@ -37,12 +37,16 @@ func (r *Reader) propertiesMember(o *object, depth int) error {
 		key, at, ok, err := s.member(first, r.key[:0], nameMost)
 		r.key = key[:0]
 		if err != nil || !ok {
+			r.previous = o.properties
 			return err
+		}
+		if o.properties == nil {
+			o.properties = make([]Property, 0, len(r.previous))
 		}
 		if err := r.keep(len(key) + propertyCost); err != nil {
 			return err
 		}
-		name := string(key)
+		name := r.nameLike(len(o.properties), key)
 		if twice(o.properties, &names, name) {
 			return s.fault(at, Structure, "property", name, "it once", nil)
 		}
@@ -52,6 +56,14 @@ func (r *Reader) propertiesMember(o *object, depth int) error {
 		}
 		o.properties = append(o.properties, Property{name, v})
 	}
+}
+
+// nameLike returns key as a string: that of the previous feature, if its property i has the same name, as it mostly has.
+func (r *Reader) nameLike(i int, key []byte) string {
+	if i < len(r.previous) && r.previous[i].Name == string(key) {
+		return r.previous[i].Name
+	}
+	return string(key)
 }
 
 // propertyCost is what a property counts beside its bytes against the limit, so that many short ones are bounded too.

@@ -38,6 +38,8 @@ type Reader struct {
 	text   int // bytes of properties
 	mixed  bool
 	key    []byte // scratch
+	// previous are the properties of the feature before: names and their number seldom change.
+	previous []Property
 
 	warnings []Warning
 	members  []Property
