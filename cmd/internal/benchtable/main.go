@@ -6,6 +6,7 @@ import (
 	"fmt"
 	"os"
 	"path/filepath"
+	"slices"
 	"strings"
 )
 
@@ -53,7 +54,8 @@ func render(root string) (map[string][]byte, error) {
 		return nil, err
 	}
 	var files []*raw
-	for _, name := range names { // Glob sorts
+	slices.SortStableFunc(names, func(a, b string) int { return place(a) - place(b) })
+	for _, name := range names {
 		f, err := os.Open(name)
 		if err != nil {
 			return nil, err
@@ -76,6 +78,20 @@ func render(root string) (map[string][]byte, error) {
 		}
 	}
 	return pages, nil
+}
+
+// way is the order of the rooms in the tables: that of a reading on its way.
+var way = []string{"io-readings", "triangulate", "interp", "grid", "contour", "io", "cmd"}
+
+// place returns where the file of a room stands in the tables.
+func place(name string) int {
+	room := strings.TrimSuffix(strings.TrimPrefix(filepath.Base(name), "raw-"), ".txt")
+	for i, w := range way {
+		if room == w || strings.HasPrefix(room, w+"-") {
+			return i
+		}
+	}
+	return len(way)
 }
 
 // splice puts the table between the marks of a page.

@@ -36,22 +36,25 @@ func full(files []*raw) string {
 	return b.String()
 }
 
+// briefSets is on how many distributions an operation must have been measured
+// to stand in the brief table.
+const briefSets = 3
+
 // brief writes one table for all: the operations that were measured at the
-// size on more than one distribution, and a column for each distribution.
+// size on several distributions, and a column for each distribution.
 func brief(files []*raw, size string) string {
+	room := func(r *result) string { return r.op + " (`" + r.pkg + "`)" }
 	var all []*result
 	for _, f := range files {
 		all = append(all, pick(f.results, func(r *result) bool { return r.size == size })...)
 	}
-	ops := distinct(all, func(r *result) string { return r.op })
-	ops = slices.DeleteFunc(ops, func(op string) bool {
-		return len(pick(all, func(r *result) bool { return r.op == op })) < 2
+	all = pick(all, func(r *result) bool {
+		return len(pick(all, func(o *result) bool { return room(o) == room(r) })) >= briefSets
 	})
-	if len(ops) == 0 {
+	if len(all) == 0 {
 		return ""
 	}
-	all = pick(all, func(r *result) bool { return slices.Contains(ops, r.op) })
-	sets := distinct(all, func(r *result) string { return r.set })
+	ops, sets := distinct(all, room), distinct(all, func(r *result) string { return r.set })
 	var b strings.Builder
 	b.WriteString("| " + heading(size) + " |")
 	for _, s := range sets {
@@ -63,9 +66,11 @@ func brief(files []*raw, size string) string {
 		fmt.Fprintf(&b, "| %s |", op)
 		for _, s := range sets {
 			text := ""
-			if r := find(all, op, s, size); r != nil {
-				m, spread, _ := r.median("ns/op")
-				text, widest = duration(m), max(widest, spread)
+			for _, r := range all {
+				if room(r) == op && r.set == s {
+					m, spread, _ := r.median("ns/op")
+					text, widest = duration(m), max(widest, spread)
+				}
 			}
 			fmt.Fprintf(&b, " %s |", text)
 		}
