@@ -83,9 +83,9 @@ func (g *Grid) eachRowNear(a, b orb.Point, f func(row int, span columnSpan)) {
 		if a[1] > b[1] {
 			// The part of the line within a cell of the row.
 			x := func(y float64) float64 {
-				return a[0] + (b[0]-a[0])*min(max((a[1]-y)/(a[1]-b[1]), 0), 1)
+				return a[0] + float64((b[0]-a[0])*min(max((a[1]-y)/(a[1]-b[1]), 0), 1))
 			}
-			y := y0 - float64(row)*cellY
+			y := y0 - float64(float64(row)*cellY)
 			west, east = x(y+cellY), x(y-cellY)
 		}
 		west, east = min(west, east), max(west, east)

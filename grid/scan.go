@@ -59,7 +59,7 @@ func tolerance(nodes []float64, low, high, per float64) float64 {
 	span := max(high, last) - min(low, first)
 	size := max(math.Abs(low), math.Abs(high), math.Abs(first), math.Abs(last))
 	const e = 1.0 / (1 << 53)
-	return 4 * e * per * (4*span + size)
+	return 4 * e * per * (float64(4*span) + size)
 }
 
 // triangle writes the nodes that t owns. w is scratch of the caller's.
@@ -113,9 +113,9 @@ func (f *scan) triangle(w *writer, t triangulate.Triangle) {
 	low := (ub - ua) / (vb - va)
 	high := (uc - ub) / (vc - vb)
 	tolV := 4 * f.tolV
-	tolLong := f.tolU + math.Abs(long)*tolV
-	tolLow := f.tolU + math.Abs(low)*tolV
-	tolHigh := f.tolU + math.Abs(high)*tolV
+	tolLong := f.tolU + float64(math.Abs(long)*tolV)
+	tolLow := f.tolU + float64(math.Abs(low)*tolV)
+	tolHigh := f.tolU + float64(math.Abs(high)*tolV)
 	inView := uMin > 1 && uMax < right-1
 
 	w.prepare(t)
@@ -137,13 +137,13 @@ func (f *scan) triangle(w *writer, t triangulate.Triangle) {
 			w.exactly(row, f.column(max(lo, uMin)-2*f.tolU), f.column(min(hi, uMax)+2*f.tolU))
 			continue
 		}
-		l, tolL := ua+(v-va)*long, tolLong
-		s, tolS := ua+(v-va)*low, tolLow
+		l, tolL := ua+float64((v-va)*long), tolLong
+		s, tolS := ua+float64((v-va)*low), tolLow
 		if v > vb-f.tolV {
 			if v > vb+f.tolV {
-				s, tolS = ub+(v-vb)*high, tolHigh
+				s, tolS = ub+float64((v-vb)*high), tolHigh
 			} else {
-				s, tolS = ub, f.tolU+f.tolV*(uMax-uMin)
+				s, tolS = ub, f.tolU+float64(f.tolV*(uMax-uMin))
 				if t := max(tolLow, tolHigh); t > tolS {
 					tolS = min(t, uMax-uMin)
 				}

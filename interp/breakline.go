@@ -30,12 +30,14 @@ const (
 // BreaklineOptions says how breaklines join each other and the readings.
 type BreaklineOptions struct {
 	Crossing CrossingRule
-	// SpreadMax is how far heights at one place may differ, in the unit of z: of a
-	// line's vertex from a reading or another line's vertex there (the mean is
-	// taken), and of lines that cross.
-	SpreadMax float64
-	// Merge, when not nil, gives the height of a place from all the heights there,
-	// whatever their spread.
+	// CrossingSpreadMax is how far the heights of lines that cross may differ there
+	// and still be split, in the unit of z; the new vertex has their mean.
+	CrossingSpreadMax float64
+	// SpotSpreadMax is how far the heights at one place may differ, of a line's
+	// vertex from a reading or another line's vertex there.
+	SpotSpreadMax float64
+	// Merge gives the height of a place from all the heights there, readings first,
+	// then lines in turn; nil for their exact mean.
 	Merge func(z []float64) float64
 	// TouchWithin is the distance within which a point counts as lying on a
 	// segment; 0 for exactly.
@@ -216,9 +218,7 @@ func (j *joiner) mergeSpots() error {
 		spread := slices.Max(heights) - slices.Min(heights)
 		var z float64
 		switch {
-		case j.opt.Merge != nil:
-			z = j.opt.Merge(heights)
-		case spread > j.opt.SpreadMax:
+		case spread > j.opt.SpotSpreadMax:
 			if worst == nil || exact.CompareXY(p, worst.At) < 0 {
 				worst = &SpotError{At: p, Heights: heights, Spread: spread}
 				for _, i := range is {
@@ -226,6 +226,8 @@ func (j *joiner) mergeSpots() error {
 				}
 			}
 			continue
+		case j.opt.Merge != nil:
+			z = j.opt.Merge(heights)
 		default:
 			z = mean(heights)
 		}
@@ -329,16 +331,12 @@ func (j *joiner) settle(split *triangulate.Split) error {
 				high = i
 			}
 		}
-		if j.opt.Merge == nil && v.Heights[high]-v.Heights[low] > j.opt.SpreadMax {
+		if v.Heights[high]-v.Heights[low] > j.opt.CrossingSpreadMax {
 			c := j.crossing(m.Segments[low], m.Segments[high], at)
 			c.SpreadTooLarge = true
 			e.Crossings = append(e.Crossings, c)
 		}
-		if j.opt.Merge != nil {
-			v.Z = j.opt.Merge(v.Heights)
-		} else {
-			v.Z = mean(v.Heights)
-		}
+		v.Z = mean(v.Heights)
 		made[k] = v.Z
 		j.report.Made = append(j.report.Made, v)
 	}

@@ -57,7 +57,7 @@ func TestCrossingLines(t *testing.T) {
 	if !errors.As(err, &ce) || !ce.Crossings[0].SpreadTooLarge {
 		t.Fatalf("split, heights apart: %v", err)
 	}
-	s, report, err := interp.WithBreaklines(context.Background(), pts, z, lines, interp.BreaklineOptions{Crossing: interp.SplitCrossings, SpreadMax: 0.25})
+	s, report, err := interp.WithBreaklines(context.Background(), pts, z, lines, interp.BreaklineOptions{Crossing: interp.SplitCrossings, CrossingSpreadMax: 0.25})
 	if err != nil {
 		t.Fatal(err)
 	}

@@ -135,7 +135,7 @@ func (b *buckets) near(a, c orb.Point, d float64, f func(point int32)) {
 		xLow, xHigh := low[0], high[0]
 		if dy := high[1] - low[1]; dy > 0 && b.perY > 0 {
 			at := func(y float64) float64 {
-				return low[0] + (high[0]-low[0])*min(max((y-low[1])/dy, 0), 1)
+				return low[0] + float64((high[0]-low[0])*min(max((y-low[1])/dy, 0), 1))
 			}
 			south := b.yMin + float64(row)/b.perY
 			xLow, xHigh = at(south-1/b.perY-d), at(south+2/b.perY+d)
