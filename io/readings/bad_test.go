@@ -194,8 +194,8 @@ func TestLenient(t *testing.T) {
 	}
 }
 
-// Lenient reading of what is no point file at all stops before its list of bad lines
-// fills the memory.
+// Lenient reading of what is no point file at all stops before its list of bad
+// lines fills the memory.
 func TestLenientStops(t *testing.T) {
 	text := "x,y,z\n1,2,3\n" + strings.Repeat("a\n", mostBad+1)
 	_, err := read(text, Options{Lenient: true})

@@ -14,8 +14,8 @@ type Block struct {
 	Lines  []uint32
 
 	LeftOut []LeftOut
-	// Refused are the bad lines. Reading that is not lenient keeps the first few
-	// of each block; Counts.Refused is how many there are.
+	// Refused are the bad lines. Reading that is not lenient keeps the first few of
+	// each block; Counts.Refused is how many there are.
 	Refused []*PositionError
 	Counts  Counts // Used counts Points
 

@@ -12,12 +12,12 @@ import (
 
 // Chains of near places.
 //
-// Two readings belong together if a chain of readings with steps of at most D
-// joins them. The shortest tree that joins all places holds such a chain if there is
-// one, and the Delaunay triangulation holds that tree (Preparata & Shamos 1985,
-// section 6.1): so its edges of at most D, joined by a union-find, give the
-// chains in the time of a triangulation, whatever the readings look like. A grid of cells
-// of size D is faster on ordinary data and quadratic where many readings share a cell.
+// Two readings belong together if a chain of readings with steps of at most D joins
+// them. The shortest tree that joins all places holds such a chain if there is one,
+// and the Delaunay triangulation holds that tree (Preparata & Shamos 1985, section
+// 6.1): so its edges of at most D, joined by a union-find, give the chains in the
+// time of a triangulation, whatever the readings look like. A grid of cells of size
+// D is faster on ordinary data and quadratic where many readings share a cell.
 
 // chains groups the readings by chains of steps of at most s.o.Spots.Within.
 func (s *collected) chains(ctx context.Context) (groups, error) {
@@ -60,15 +60,15 @@ func (s *collected) chains(ctx context.Context) (groups, error) {
 	return groupByRoot(root, len(join)), nil
 }
 
-// near reports whether two places are at most d apart. The differences are those
-// of the decimals as written, so that 0.01 apart is within 0.01.
+// near reports whether two places are at most d apart. The differences are those of
+// the decimals as written, so that 0.01 apart is within 0.01.
 func (s *collected) near(p, q orb.Point, d float64) bool {
 	dx, dy := asWritten(p[0]-q[0], s.DecimalsXY), asWritten(p[1]-q[1], s.DecimalsXY)
 	return float64(dx*dx)+float64(dy*dy) <= float64(d*d)
 }
 
-// union joins the sets of a and b; the smaller number becomes the root. find
-// halves the paths it walks, so both are nearly constant in time.
+// union joins the sets of a and b; the smaller number becomes the root. find halves
+// the paths it walks, so both are nearly constant in time.
 func union(join []int32, a, b int32) {
 	a, b = find(join, a), find(join, b)
 	if a < b {
@@ -86,8 +86,8 @@ func find(join []int32, v int32) int32 {
 	return v
 }
 
-// groupByRoot lists the readings of every root that has two or more, in the
-// order of the first of each.
+// groupByRoot lists the readings of every root that has two or more, in the order
+// of the first of each.
 func groupByRoot(root []int32, roots int) (g groups) {
 	count := make([]int32, roots)
 	for _, r := range root {

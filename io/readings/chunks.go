@@ -10,8 +10,8 @@ import (
 	"golang.org/x/text/transform"
 )
 
-// chunkSize is how much is read and parsed at a time: enough that a chunk costs
-// far more than handing it over, little enough that it stays in a core's cache.
+// chunkSize is how much is read and parsed at a time: enough that a chunk costs far
+// more than handing it over, little enough that it stays in a core's cache.
 const chunkSize = 256 << 10
 
 // chunks cuts a stream into pieces that hold whole records.
@@ -26,8 +26,8 @@ type chunks struct {
 	format format
 }
 
-// decoded returns r without its byte order mark, UTF-16 made UTF-8, and the name
-// of the encoding. Without a mark the bytes pass as they are.
+// decoded returns r without its byte order mark, UTF-16 made UTF-8, and the name of
+// the encoding. Without a mark the bytes pass as they are.
 func decoded(r io.Reader) (io.Reader, string, error) {
 	r = &insistent{r: r}
 	var mark [3]byte
@@ -126,12 +126,12 @@ func (c *chunks) buffer(size int) []byte {
 	return make([]byte, size, size+1)
 }
 
-// next hands out the next whole records, nil at the end of the input. The
-// caller gives the memory back to c.spare.
+// next hands out the next whole records, nil at the end of the input. The caller
+// gives the memory back to c.spare.
 //
-// A record longer than maxRecord is an error of kind LongLine (or Binary) at
-// the line behind what was handed out before; a read error comes after all
-// that was read is handed out.
+// A record longer than maxRecord is an error of kind LongLine (or Binary) at the
+// line behind what was handed out before; a read error comes after all that was
+// read is handed out.
 func (c *chunks) next() ([]byte, *PositionError) {
 	for {
 		c.fill()
@@ -186,9 +186,9 @@ func binaryError() *PositionError {
 	return &PositionError{Kind: Binary, What: "a zero byte: looks like a binary file", Expected: "text in UTF-8, Windows-1252, or UTF-16 with a byte order mark"}
 }
 
-// readable returns b, or where lines of it are not UTF-8, a copy with those
-// lines taken as Windows-1252, how many they are, and the number of the first
-// in b from 0.
+// readable returns b, or where lines of it are not UTF-8, a copy with those lines
+// taken as Windows-1252, how many they are, and the number of the first in b from
+// 0.
 func readable(b []byte) (text []byte, converted, first int) {
 	if utf8.Valid(b) {
 		return b, 0, 0

@@ -5,12 +5,12 @@ import (
 	"strings"
 )
 
-// Columns say which column of a file plays which role. The zero value leaves it
-// to the header line.
+// Columns say which column of a file plays which role. The zero value leaves it to
+// the header line.
 type Columns struct {
 	list []column
-	// named is true for ROLE=NAME and ROLE=NUMBER, false for a list in the
-	// order of the file.
+	// named is true for ROLE=NAME and ROLE=NUMBER, false for a list in the order of
+	// the file.
 	named bool
 	heads bool
 }
@@ -27,8 +27,8 @@ type column struct {
 //	x=East,y=North,z=4                    by header name or by number, the others are skipped
 //
 // The words are those of ParseRole. Every role may be given once. A header name
-// that holds a comma or is a whole number must be given by its number.
-// The empty string is the zero Columns. Errors are *OptionError.
+// that holds a comma or is a whole number must be given by its number. The empty
+// string is the zero Columns. Errors are *OptionError.
 func ParseColumns(text string) (Columns, error) {
 	var c Columns
 	if strings.TrimSpace(text) == "" {

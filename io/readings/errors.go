@@ -6,8 +6,8 @@ import (
 	"strings"
 )
 
-// A Kind says what sort of trouble a PositionError is, so that a program can
-// choose its advice without reading the text.
+// A Kind says what sort of trouble a PositionError is, so that a program can choose
+// its advice without reading the text.
 type Kind uint8
 
 // The kinds, each with an input that leads to it.
@@ -46,8 +46,8 @@ const (
 
 // A PositionError is one trouble at one place of an input.
 //
-// It prints as file:line:column: what "seen": expected ..., and leaves out what
-// it does not know. Lines and columns count from 1; a column counts characters.
+// It prints as file:line:column: what "seen": expected ..., and leaves out what it
+// does not know. Lines and columns count from 1; a column counts characters.
 type PositionError struct {
 	File   string
 	Line   int // 0: the whole file
@@ -100,9 +100,9 @@ func (e *PositionError) message() string {
 
 func (e *PositionError) Unwrap() error { return e.Err }
 
-// BadLines says which lines could not be read. Reading goes on behind a bad
-// line, so that one does not hide the next: First holds the first few, Total
-// how many there are.
+// BadLines says which lines could not be read. Reading goes on behind a bad line,
+// so that one does not hide the next: First holds the first few, Total how many
+// there are.
 type BadLines struct {
 	First []*PositionError
 	Total int
@@ -144,8 +144,8 @@ func (e *BadLines) Unwrap() []error {
 	return all
 }
 
-// An OptionError is a value that a caller or a user gave for one of the
-// settings of this package.
+// An OptionError is a value that a caller or a user gave for one of the settings of
+// this package.
 type OptionError struct {
 	Option   string // columns, delimiter, decimal, ...
 	Seen     string

@@ -8,13 +8,13 @@ import (
 	"github.com/paulmach/orb"
 )
 
-// Exclusions are the rows of a file that says which readings to leave out, and
-// why. Columns, by the names in its header: id, or x and y (or all three), then decision and
-// reason. Only the decision "leave out" with a reason counts.
+// Exclusions are the rows of a file that says which readings to leave out, and why.
+// Columns, by the names in its header: id, or x and y (or all three), then decision
+// and reason. Only the decision "leave out" with a reason counts.
 type Exclusions struct {
 	Name string
-	// Other is how many rows have another decision, or none; NoReason are the
-	// lines of rows that would leave out and do not say why. Neither count.
+	// Other is how many rows have another decision, or none; NoReason are the lines
+	// of rows that would leave out and do not say why. Neither count.
 	Other    int
 	NoReason []int
 
@@ -34,12 +34,12 @@ type exclusion struct {
 // Len returns how many rows count.
 func (e *Exclusions) Len() int { return len(e.rows) }
 
-// maxExclusions bounds the size of an exclusion file: it is kept in memory and
-// was written by a person, or by a page a person clicked on.
+// maxExclusions bounds the size of an exclusion file: it is kept in memory and was
+// written by a person, or by a page a person clicked on.
 const maxExclusions = 64 << 20
 
-// ReadExclusions reads an exclusion file. Of d it uses the delimiter, the
-// decimal mark, the comment mark and the rows to skip. A row that cannot be read is an
+// ReadExclusions reads an exclusion file. Of d it uses the delimiter, the decimal
+// mark, the comment mark and the rows to skip. A row that cannot be read is an
 // error: nobody would notice what it failed to leave out.
 func ReadExclusions(src Source, d Declared) (*Exclusions, error) {
 	if err := d.check(); err != nil {
@@ -99,8 +99,8 @@ func ReadExclusions(src Source, d Declared) (*Exclusions, error) {
 // exclusionColumns are the numbers of the columns, -1 for none.
 type exclusionColumns struct{ id, x, y, decision, reason, count int }
 
-// exclusionDelimiter finds the delimiter by the words of the header: there may
-// be no numbers to go by.
+// exclusionDelimiter finds the delimiter by the words of the header: there may be
+// no numbers to go by.
 func (s *sniffer) exclusionDelimiter(b []byte) byte {
 	if s.declared.Delimiter != DetectDelimiter {
 		return byte(s.declared.Delimiter)
@@ -191,8 +191,8 @@ func (s *sniffer) exclusionRow(e *Exclusions, b []byte, t *tokens, w exclusionCo
 	return nil
 }
 
-// place reads a coordinate with the declared decimal mark, or the point, or
-// behind a semicolon or tab the comma.
+// place reads a coordinate with the declared decimal mark, or the point, or behind
+// a semicolon or tab the comma.
 func (s *sniffer) place(t []byte) (v float64, kind Kind) {
 	if s.declared.Decimal != DetectDecimal {
 		v, _, kind = parseNumber(t, byte(s.declared.Decimal))

@@ -6,8 +6,8 @@ import (
 	"testing"
 )
 
-// FuzzRead reads any bytes by any settings: no panic, no hang; either an error of
-// a known type or counts that add up; the quick and the careful way agree.
+// FuzzRead reads any bytes by any settings: no panic, no hang; either an error of a
+// known type or counts that add up; the quick and the careful way agree.
 func FuzzRead(f *testing.F) {
 	for _, s := range []string{
 		"id,x,y,z,code\nA,1,2,3,G\nB,1.5,-2.5,3e2,\"a,b\"\n",

@@ -100,22 +100,22 @@ func (d Decimal) String() string {
 	return "detect"
 }
 
-// A Declared layout is what the caller says about the text of the files. The
-// zero value has everything detected, for each file by itself.
+// A Declared layout is what the caller says about the text of the files. The zero
+// value has everything detected, for each file by itself.
 type Declared struct {
 	Columns   Columns
 	Delimiter Delimiter
 	Decimal   Decimal
-	// Comment is the text that begins a line to be passed over. Empty: "#", if
-	// the first line of the file begins with it; "none": there are none.
+	// Comment is the text that begins a line to be passed over. Empty: "#", if the
+	// first line of the file begins with it; "none": there are none.
 	Comment string
 	// SkipRows is how many lines at the top of each file are passed over before
 	// anything else is looked at.
 	SkipRows int
 	// Missing are texts that stand for "no value" in x, y or z. One that is a
-	// number counts in z alone, whatever way it is written (-9999 and -9999.00
-	// are the same); "blank" stands for an empty field. Case does not matter.
-	// A line with one of them is left out, with that reason.
+	// number counts in z alone, whatever way it is written (-9999 and -9999.00 are
+	// the same); "blank" stands for an empty field. Case does not matter. A line
+	// with one of them is left out, with that reason.
 	Missing []string
 }
 

@@ -9,15 +9,15 @@ import (
 
 // Numbers.
 //
-// A number is a sign, digits with at most one decimal mark among or around
-// them, and perhaps a decimal exponent: -12.40, .5, 3., 1.2e-3. The minus may be one
-// of the dashes that word processors put in its place. Nothing else is a number:
-// no thousands marks, no hexadecimal, no underscores, no NaN.
+// A number is a sign, digits with at most one decimal mark among or around them,
+// and perhaps a decimal exponent: -12.40, .5, 3., 1.2e-3. The minus may be one of
+// the dashes that word processors put in its place. Nothing else is a number: no
+// thousands marks, no hexadecimal, no underscores, no NaN.
 //
-// Most field numbers have at most 15 digits. Their digits, read as an integer,
-// and the power of ten they are divided by are both exact in a double, so that
-// one division rounds once and gives what a correctly rounding parser gives
-// (Clinger 1990). The others go to package strconv.
+// Most field numbers have at most 15 digits. Their digits, read as an integer, and
+// the power of ten they are divided by are both exact in a double, so that one
+// division rounds once and gives what a correctly rounding parser gives (Clinger
+// 1990). The others go to package strconv.
 
 // powersOfTen are exact in a double.
 var powersOfTen = [...]float64{
@@ -30,8 +30,8 @@ const exactIntegers = 1 << 53 // integers up to here are exact in a double
 // mostDecimals is where counting decimals stops; a double has no use for more.
 const mostDecimals = 255
 
-// parseNumber reads a whole text as a number and counts its decimals. kind is 0
-// if it is one, or says what stands there.
+// parseNumber reads a whole text as a number and counts its decimals. kind is 0 if
+// it is one, or says what stands there.
 func parseNumber(text []byte, decimal byte) (v float64, decimals int, kind Kind) {
 	t, negative := cutSign(text)
 	var m uint64 // the digits as an integer, while there are at most 19
@@ -100,8 +100,8 @@ scan:
 	return v, decimals, 0
 }
 
-// parseExponent reads the digits behind an e. Exponents beyond any double are
-// cut, which keeps their sense.
+// parseExponent reads the digits behind an e. Exponents beyond any double are cut,
+// which keeps their sense.
 func parseExponent(t []byte) (e int, ok bool) {
 	negative := false
 	if len(t) > 0 && (t[0] == '+' || t[0] == '-') {
@@ -142,8 +142,8 @@ func parseLong(t []byte, end int, decimal byte, exponent int, hasExponent bool) 
 			buf = strconv.AppendInt(buf, int64(exponent), 10)
 		}
 	}
-	// The grammar is checked: the only error left is ErrRange, with the value
-	// Inf. A number too small for a double comes back as 0. Both are refused by size.
+	// The grammar is checked: the only error left is ErrRange, with the value Inf.
+	// A number too small for a double comes back as 0. Both are refused by size.
 	v, _ := strconv.ParseFloat(unsafe.String(&buf[0], len(buf)), 64)
 	return v
 }
@@ -162,8 +162,8 @@ func cutSign(t []byte) (rest []byte, negative bool) {
 	return cutDash(t)
 }
 
-// cutDash takes off a minus sign outside ASCII: U+2212, or one of the hyphens
-// and the en dash, U+2010 to U+2013, or the small and the wide one.
+// cutDash takes off a minus sign outside ASCII: U+2212, or one of the hyphens and
+// the en dash, U+2010 to U+2013, or the small and the wide one.
 func cutDash(t []byte) (rest []byte, dash bool) {
 	if len(t) < 3 || t[0] < 0xe0 {
 		return t, false
@@ -206,8 +206,8 @@ func classify(text []byte, decimal byte) Kind {
 	return NotNumber
 }
 
-// grouped reports whether t is digits in groups of three behind the first, with
-// one and the same mark between them, and perhaps a fraction.
+// grouped reports whether t is digits in groups of three behind the first, with one
+// and the same mark between them, and perhaps a fraction.
 func grouped(t []byte, decimal byte) bool {
 	if k := bytes.LastIndexByte(t, decimal); k >= 0 {
 		if !isDigits(string(t[k+1:])) && k+1 < len(t) {

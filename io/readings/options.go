@@ -12,8 +12,8 @@ import (
 type Source struct {
 	Name string // as messages call it
 	Size int64  // in bytes, for progress; 0 if unknown
-	// Open is called once. Reading stops at the first error of the reader that
-	// is not io.EOF.
+	// Open is called once. Reading stops at the first error of the reader that is
+	// not io.EOF.
 	Open func() (io.ReadCloser, error)
 }
 
@@ -24,30 +24,30 @@ func FromBytes(name string, data []byte) Source {
 	}}
 }
 
-// FromReader is a source that is open already, such as standard input. It is
-// not closed.
+// FromReader is a source that is open already, such as standard input. It is not
+// closed.
 func FromReader(name string, r io.Reader) Source {
 	return Source{name, 0, func() (io.ReadCloser, error) { return io.NopCloser(r), nil }}
 }
 
-// Options steer Read and Scan. The zero value detects every layout, stops at
-// bad input, uses every reading and merges those at one place that agree.
+// Options steer Read and Scan. The zero value detects every layout, stops at bad
+// input, uses every reading and merges those at one place that agree.
 type Options struct {
 	Declared
 
-	// Lenient leaves out bad lines and lists them. Otherwise they are an error
-	// of type *BadLines.
+	// Lenient leaves out bad lines and lists them. Otherwise they are an error of
+	// type *BadLines.
 	Lenient bool
 
 	Select Selection
 	Spots  Spots // Scan does not look at it
 
-	// Workers is how many lines are parsed at a time; 0 is one per processor.
-	// The result does not depend on it.
+	// Workers is how many lines are parsed at a time; 0 is one per processor. The
+	// result does not depend on it.
 	Workers int
 
-	// Progress, if not nil, is told now and then how many bytes are parsed of
-	// how many (0 if unknown), never from two goroutines at once.
+	// Progress, if not nil, is told now and then how many bytes are parsed of how
+	// many (0 if unknown), never from two goroutines at once.
 	Progress func(done, total int64)
 
 	// For tests: the size of a chunk if not 0, and to read every line the careful way.
@@ -89,21 +89,21 @@ func ParseSpotRule(text string) (SpotRule, error) {
 	return 0, &OptionError{"same-spot", text, strings.Join(spotNames[1:], ", ")}
 }
 
-// Spots say which readings stand at one place, and what becomes of them. k
-// readings at one place become one that is used and k-1 that are merged.
+// Spots say which readings stand at one place, and what becomes of them. k readings
+// at one place become one that is used and k-1 that are merged.
 //
-// Whatever the rule, readings of unlike zones at one place are refused, and so
-// are heads (Layout.Heads) of unlike ids: they belong to different waters.
+// Whatever the rule, readings of unlike zones at one place are refused, and so are
+// heads (Layout.Heads) of unlike ids: they belong to different waters.
 type Spots struct {
 	Rule SpotRule
-	// Spread is how far apart (highest minus lowest z) the readings of one
-	// place may lie, in the unit of z. SpotAgree always looks at it; a named
-	// rule does only if SpreadGiven is true, and refuses what exceeds it.
+	// Spread is how far apart (highest minus lowest z) the readings of one place
+	// may lie, in the unit of z. SpotAgree always looks at it; a named rule does
+	// only if SpreadGiven is true, and refuses what exceeds it.
 	Spread      float64
 	SpreadGiven bool
-	// Within joins readings no further apart than this, in the unit of x and y,
-	// and through them chains of any length; 0 joins equal places only. The place
-	// of a chain is its smallest (x, y).
+	// Within joins readings no further apart than this, in the unit of x and y, and
+	// through them chains of any length; 0 joins equal places only. The place of a
+	// chain is its smallest (x, y).
 	Within float64
 }
 
@@ -119,8 +119,8 @@ func (s *Spots) check() error {
 	return nil
 }
 
-// The sizes of coordinates that are accepted beside 0: products of four of
-// them neither overflow nor underflow.
+// The sizes of coordinates that are accepted beside 0: products of four of them
+// neither overflow nor underflow.
 const (
 	smallest = 1e-60
 	largest  = 1e60

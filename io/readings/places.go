@@ -16,11 +16,11 @@ import (
 // Places that repeat.
 //
 // Nearly all places of a survey stand once, so the question is which do not. Every
-// place sets the bit of its hash in a table of some 16 to 32 bits a place; a bit that
-// is set twice goes into a second table. Only places whose bit stands in the
+// place sets the bit of its hash in a table of some 16 to 32 bits a place; a bit
+// that is set twice goes into a second table. Only places whose bit stands in the
 // second table, the repeated ones and a few that share a bit by chance, are sorted
-// and compared. Setting bits is free of order, so several goroutines may do it. A plain
-// hash table of all places costs three times as much, a sort ten times.
+// and compared. Setting bits is free of order, so several goroutines may do it. A
+// plain hash table of all places costs three times as much, a sort ten times.
 
 // samePlaces finds the groups of equal places. Coordinates must not be NaN, and
 // zero must be +0.
@@ -75,8 +75,8 @@ type candidate struct {
 	index int32
 }
 
-// groupCandidates keeps the candidates that have company. The groups come in
-// the order of their first members.
+// groupCandidates keeps the candidates that have company. The groups come in the
+// order of their first members.
 func groupCandidates(points []orb.Point, c []candidate) (g groups) {
 	slices.SortFunc(c, func(a, b candidate) int {
 		if a.hash != b.hash {

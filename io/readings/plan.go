@@ -3,8 +3,8 @@ package readings
 import "strings"
 
 // A plan is how the lines of one file are read: what sniff made of what was
-// declared and what the first lines show. It does not change afterwards and
-// serves every worker.
+// declared and what the first lines show. It does not change afterwards and serves
+// every worker.
 type plan struct {
 	format
 	layout  Layout

@@ -31,9 +31,9 @@ type Positions struct {
 // Len returns how many positions there are.
 func (p *Positions) Len() int { return len(p.Points) }
 
-// Row appends the fields of row i, as written but without quotes and blanks
-// around them, to dst and returns it: len(Names) fields. It must not be called by
-// two goroutines at once.
+// Row appends the fields of row i, as written but without quotes and blanks around
+// them, to dst and returns it: len(Names) fields. It must not be called by two
+// goroutines at once.
 func (p *Positions) Row(dst []string, i int) []string {
 	from, to := p.rows.bounds(i)
 	p.tokens.record(p.rows.data[from:to], 0)
@@ -43,9 +43,10 @@ func (p *Positions) Row(dst []string, i int) []string {
 	return dst
 }
 
-// ReadPositions reads a list of places: columns x and y, found as Read finds
-// its columns, and any others, which are carried along. Of o it uses what is
-// declared, Lenient, Workers and Progress; missing marks in x or y leave a row out. Lines of two numbers between blanks are x y, of three x y z.
+// ReadPositions reads a list of places: columns x and y, found as Read finds its
+// columns, and any others, which are carried along. Of o it uses what is declared,
+// Lenient, Workers and Progress; missing marks in x or y leave a row out. Lines of
+// two numbers between blanks are x y, of three x y z.
 //
 // Errors are those of Scan. Rows are kept in memory as they are written, and may
 // have at most 65,535 bytes.

@@ -7,9 +7,9 @@ import (
 	"github.com/paulmach/orb"
 )
 
-// quick reads records as long as they are of the usual kind: the expected number
-// of fields, no quotes, numbers of at most 19 digits without exponents. It
-// returns where it stopped: at the end of b, or at a record for worker.row.
+// quick reads records as long as they are of the usual kind: the expected number of
+// fields, no quotes, numbers of at most 19 digits without exponents. It returns
+// where it stopped: at the end of b, or at a record for worker.row.
 //
 // b ends with a line end, so that every loop over a field stops.
 func (w *worker) quick(b []byte, p int) int {

@@ -5,20 +5,20 @@ import (
 	"math"
 )
 
-// Read reads all sources into memory: the readings to use, and where every
-// other went. See Scan for how lines are read, Spots for readings at one place.
+// Read reads all sources into memory: the readings to use, and where every other
+// went. See Scan for how lines are read, Spots for readings at one place.
 //
-// The set of used places and values, with their ids and codes, depends on the
-// set of lines, not on their order or on the number of workers, except under
-// SpotFirst and SpotLast. If lines are equal in every kept column, it is open which of
-// their line numbers is reported as used.
+// The set of used places and values, with their ids and codes, depends on the set
+// of lines, not on their order or on the number of workers, except under SpotFirst
+// and SpotLast. If lines are equal in every kept column, it is open which of their
+// line numbers is reported as used.
 //
-// Errors: *PositionError for a file that cannot be read, *BadLines for lines
-// that cannot (unless Options.Lenient), *SpotError for readings at one place that
-// may not be merged, *OptionError, ctx.Err(). No Set comes with an error.
+// Errors: *PositionError for a file that cannot be read, *BadLines for lines that
+// cannot (unless Options.Lenient), *SpotError for readings at one place that may
+// not be merged, *OptionError, ctx.Err(). No Set comes with an error.
 //
-// Cost: see the package comment. Memory: 28 bytes a reading and its texts with
-// four bytes each, twice that while the columns are put together.
+// Cost: see the package comment. Memory: 28 bytes a reading and its texts with four
+// bytes each, twice that while the columns are put together.
 func Read(ctx context.Context, sources []Source, o Options) (*Set, error) {
 	var blocks []*Block
 	var refused []*PositionError

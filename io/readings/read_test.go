@@ -62,8 +62,8 @@ func columns(t interface{ Fatal(...any) }, text string) Columns {
 	return c
 }
 
-// One survey of four shots in many layouts. M1 of the trade's list, and T18: a
-// file with decimal commas is the same survey as one with points.
+// One survey of four shots in many layouts. M1 of the trade's list, and T18: a file
+// with decimal commas is the same survey as one with points.
 func TestSameSurveyInManyLayouts(t *testing.T) {
 	const plain = `id,easting,northing,elevation,code
 P1,500000.125,4600000.5,101.25,GRD

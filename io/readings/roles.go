@@ -5,9 +5,9 @@ import "strings"
 // A Role is what a column holds.
 type Role uint8
 
-// The roles. X, Y and Z are numbers and make the reading; the roles for which
-// Kept is true are text that stays with it; the others belong to work that
-// Read does not do, and declaring one of them is an error.
+// The roles. X, Y and Z are numbers and make the reading; the roles for which Kept
+// is true are text that stays with it; the others belong to work that Read does not
+// do, and declaring one of them is an error.
 const (
 	NoRole Role = iota // a column that is skipped
 	ID
@@ -57,8 +57,8 @@ func (r Role) String() string {
 	return "unknown role"
 }
 
-// Kept reports whether the text of the role stays with every reading, for
-// selection and for output.
+// Kept reports whether the text of the role stays with every reading, for selection
+// and for output.
 func (r Role) Kept() bool { return r < roleCount && textSlot[r] >= 0 }
 
 // keptRoles are the text roles in the order of their slots.
@@ -86,9 +86,9 @@ func Roles() []Role {
 	return all
 }
 
-// ParseRole returns the role that a word of a list of columns stands for: its
-// own name or one of easting, northing, height, elevation, head,
-// top-of-casing. Case does not matter.
+// ParseRole returns the role that a word of a list of columns stands for: its own
+// name or one of easting, northing, height, elevation, head, top-of-casing. Case
+// does not matter.
 func ParseRole(word string) (Role, bool) {
 	w := strings.ToLower(strings.TrimSpace(word))
 	for r := ID; r < roleCount; r++ {

@@ -13,10 +13,10 @@ import (
 
 // Rows, the careful way.
 //
-// worker.row reads one record by every rule: quotes, missing marks, selection,
-// and a message for whatever is wrong. worker.quick reads the usual record
-// without any of that, and leaves to row whatever surprises it. Both read a record
-// alike: a test holds one against the other.
+// worker.row reads one record by every rule: quotes, missing marks, selection, and
+// a message for whatever is wrong. worker.quick reads the usual record without any
+// of that, and leaves to row whatever surprises it. Both read a record alike: a
+// test holds one against the other.
 
 // worker parses blocks by one plan.
 type worker struct {

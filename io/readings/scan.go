@@ -24,17 +24,18 @@ type Summary struct {
 	Warnings []Warning
 }
 
-// Scan reads the sources one after the other and calls each with their readings
-// in blocks of some thousand lines, in order. A block is the callee's to keep. An error
-// of each ends the scan and comes back as it is. Places that repeat are not looked at.
+// Scan reads the sources one after the other and calls each with their readings in
+// blocks of some thousand lines, in order. A block is the callee's to keep. An
+// error of each ends the scan and comes back as it is. Places that repeat are not
+// looked at.
 //
 // Reading goes on behind bad lines to count them, and blocks come all the same:
-// without Options.Lenient, Scan returns *BadLines at the end if there were any,
-// and what each was given should be forgotten. Other errors are *PositionError,
+// without Options.Lenient, Scan returns *BadLines at the end if there were any, and
+// what each was given should be forgotten. Other errors are *PositionError,
 // *OptionError, or ctx.Err().
 //
-// Cost: see the package comment. Memory: some blocks per worker, whatever the
-// size of the input.
+// Cost: see the package comment. Memory: some blocks per worker, whatever the size
+// of the input.
 func Scan(ctx context.Context, sources []Source, o Options, each func(*Block) error) (*Summary, error) {
 	s, err := newScanner(ctx, sources, &o, needValue, each)
 	if err != nil {
@@ -375,6 +376,6 @@ func (s *scanner) take(f *file, blk *Block, size int) error {
 	return s.each(blk)
 }
 
-// mostBad is how many bad lines lenient reading lists before it asks whether
-// the file holds readings at all: the list is kept in memory.
+// mostBad is how many bad lines lenient reading lists before it asks whether the
+// file holds readings at all: the list is kept in memory.
 const mostBad = 1_000_000

@@ -43,9 +43,9 @@ func anyRow(t *rapid.T, delimiter string) string {
 	return strings.Join(f, delimiter)
 }
 
-// The quick way, several workers and small chunks change nothing: not the
-// readings, not a line number, not a message. Line ends are mixed, quotes stay open,
-// records run over the edges of chunks.
+// The quick way, several workers and small chunks change nothing: not the readings,
+// not a line number, not a message. Line ends are mixed, quotes stay open, records
+// run over the edges of chunks.
 func TestEveryWayReadsAlike(t *testing.T) {
 	rapid.Check(t, func(t *rapid.T) {
 		d := rapid.SampledFrom([]Delimiter{Comma, Semicolon, Tab, Blanks}).Draw(t, "delimiter")

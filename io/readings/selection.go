@@ -5,8 +5,8 @@ import (
 	"unicode/utf8"
 )
 
-// A Pattern is a shell pattern for the text of a role: * stands for any text, ?
-// for one character, [a-f] and [^a-f] for one of a range, and \ takes the next
+// A Pattern is a shell pattern for the text of a role: * stands for any text, ? for
+// one character, [a-f] and [^a-f] for one of a range, and \ takes the next
 // character as it is. The whole text must match; case matters. It is the pattern of
 // path.Match, but a slash is a character like any other.
 type Pattern struct {
@@ -45,10 +45,10 @@ func (p Pattern) check(option string) error {
 // ParsePattern takes.
 func (p Pattern) Match(text string) bool { return match(p.Text, text) }
 
-// A Selection says which readings to use. A reading is used if, for every role
-// that Only names, one of its patterns of that role matches, no pattern of
-// Without matches, Code gives no reason against it, and no row of Exclude leaves
-// it out; they are asked in this order.
+// A Selection says which readings to use. A reading is used if, for every role that
+// Only names, one of its patterns of that role matches, no pattern of Without
+// matches, Code gives no reason against it, and no row of Exclude leaves it out;
+// they are asked in this order.
 type Selection struct {
 	Only, Without []Pattern
 	// Code, if not nil, is told the code of each reading, empty if it has none, and
@@ -72,8 +72,7 @@ func (s *Selection) check() error {
 	return nil
 }
 
-// validPattern reports whether every bracket is closed and every escape
-// complete.
+// validPattern reports whether every bracket is closed and every escape complete.
 func validPattern(p string) bool {
 	if !utf8.ValidString(p) {
 		return false
@@ -98,9 +97,9 @@ func validPattern(p string) bool {
 	return true
 }
 
-// match reports whether the whole text fits a valid pattern. Only the last star
-// met is ever taken back, since an earlier one that reached it need not take
-// more: time is at most the product of the lengths.
+// match reports whether the whole text fits a valid pattern. Only the last star met
+// is ever taken back, since an earlier one that reached it need not take more: time
+// is at most the product of the lengths.
 func match(pattern, text string) bool {
 	star, starText := -1, 0 // pattern behind the last *, text where it now ends
 	p, t := 0, 0
@@ -146,8 +145,8 @@ func matchOne(p string, r rune) (rest string, ok bool) {
 	return p[n:], c == r
 }
 
-// matchRange matches one character against the brackets that p begins with.
-// valid is false if they are not closed or empty.
+// matchRange matches one character against the brackets that p begins with. valid
+// is false if they are not closed or empty.
 func matchRange(p string, r rune) (rest string, hit, valid bool) {
 	p = p[1:]
 	negated := strings.HasPrefix(p, "^")

@@ -16,8 +16,8 @@ func TestPatternsAgainstPathMatch(t *testing.T) {
 		p := rapid.StringOfN(rapid.RuneFrom([]rune(`ab*?[]^-\é`)), 0, 8, -1).Draw(t, "pattern")
 		text := rapid.StringOfN(rapid.RuneFrom([]rune(`ab-]é`)), 0, 8, -1).Draw(t, "text")
 		want, err := path.Match(p, text)
-		// path.Match finds a bad pattern only as far as it looks; on an empty
-		// text behind a star-free prefix it looks at all of it.
+		// path.Match finds a bad pattern only as far as it looks; on an empty text
+		// behind a star-free prefix it looks at all of it.
 		_, bad := path.Match(p, "")
 		if validPattern(p) != (bad == nil) {
 			t.Fatalf("%q: valid %v, but path.Match says %v", p, validPattern(p), bad)

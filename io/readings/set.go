@@ -6,15 +6,15 @@ import (
 	"github.com/paulmach/orb"
 )
 
-// A Set is what Read returns: the readings to be used, in columns, in the order
-// of the input, and an account of every other.
+// A Set is what Read returns: the readings to be used, in columns, in the order of
+// the input, and an account of every other.
 //
 // Used + merged + left out + refused = read.
 type Set struct {
-	// Points and Z are the places and values of the used readings; Lines the
-	// line numbers they were read from. Under SpotMean a value is the mean of
-	// its place, and id, code and line are those of the place's smallest reading
-	// by (x, y, z, id, code, ...).
+	// Points and Z are the places and values of the used readings; Lines the line
+	// numbers they were read from. Under SpotMean a value is the mean of its place,
+	// and id, code and line are those of the place's smallest reading by (x, y, z,
+	// id, code, ...).
 	Points []orb.Point
 	Z      []float64
 	Lines  []uint32
@@ -25,13 +25,13 @@ type Set struct {
 	// Refused are the bad lines of lenient reading.
 	Refused []*PositionError
 
-	// SpotCount is at how many places several readings were merged, SpotSpread
-	// the largest spread of z among them.
+	// SpotCount is at how many places several readings were merged, SpotSpread the
+	// largest spread of z among them.
 	SpotCount  int
 	SpotSpread float64
 
-	// DecimalsXY and DecimalsZ are the most decimals that a used or merged
-	// reading writes.
+	// DecimalsXY and DecimalsZ are the most decimals that a used or merged reading
+	// writes.
 	DecimalsXY, DecimalsZ int
 
 	// Layouts tell how each source was read.
@@ -46,9 +46,8 @@ type Set struct {
 type Counts struct {
 	Read, Used, Merged, LeftOut, Refused int
 
-	// Lines that hold no reading: Headers, lines that begin with the comment
-	// mark, lines without anything (or delimiters alone), and rows skipped at
-	// the top.
+	// Lines that hold no reading: Headers, lines that begin with the comment mark,
+	// lines without anything (or delimiters alone), and rows skipped at the top.
 	Headers, Comments, BlankLines, Skipped int
 }
 

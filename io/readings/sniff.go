@@ -10,7 +10,8 @@ import (
 //
 // What is not declared is read off the first lines of each file, and told in its
 // Layout. Where two readings of the same text are possible (decimal comma or
-// thousands, depth or elevation, two columns for one role) it is asked, not guessed.
+// thousands, depth or elevation, two columns for one role) it is asked, not
+// guessed.
 
 // sampleRows is how many records detection looks at.
 const sampleRows = 256
@@ -54,9 +55,9 @@ type row struct {
 	next   int   // where the row behind begins
 }
 
-// sniff makes a plan from b, the first bytes of a file behind what was passed
-// over already. It returns how many lines at the beginning of b hold no readings. A
-// nil plan without an error means that all lines of b are such and more is to come.
+// sniff makes a plan from b, the first bytes of a file behind what was passed over
+// already. It returns how many lines at the beginning of b hold no readings. A nil
+// plan without an error means that all lines of b are such and more is to come.
 func (s *sniffer) sniff(b []byte, atEnd bool) (p *plan, passed int, err *PositionError) {
 	whole := b
 	if !atEnd {
@@ -138,8 +139,8 @@ func (s *sniffer) at(b []byte, p int, e *PositionError) *PositionError {
 	return e
 }
 
-// atField fills in the place of an error about a field of a row, or about the
-// whole row if field is -1.
+// atField fills in the place of an error about a field of a row, or about the whole
+// row if field is -1.
 func (s *sniffer) atField(b []byte, r row, field int, e *PositionError) *PositionError {
 	if field < 0 {
 		s.at(b, r.at[0], e)
@@ -159,8 +160,8 @@ func (s *sniffer) nothing() *PositionError {
 	return &PositionError{File: s.layout.File, Kind: Empty, What: "no line to read", Expected: "readings"}
 }
 
-// passOver returns where the first line begins that is neither blank nor a
-// comment, and counts those before it.
+// passOver returns where the first line begins that is neither blank nor a comment,
+// and counts those before it.
 func (s *sniffer) passOver(b []byte) int {
 	p := 0
 	for p < len(b) {
@@ -227,8 +228,8 @@ func take(b []byte, start int, f format, most int) (rows []row) {
 }
 
 // delimiter returns the declared delimiter, or the first of tab, semicolon, bar,
-// comma, blanks that cuts most lines into the same number of fields, at least two of
-// them numbers. If none does (a header alone), it is the one that finds most
+// comma, blanks that cuts most lines into the same number of fields, at least two
+// of them numbers. If none does (a header alone), it is the one that finds most
 // known words in the first line.
 func (s *sniffer) delimiter(b []byte) byte {
 	if s.declared.Delimiter != DetectDelimiter {
@@ -312,8 +313,8 @@ func severalNumbers(text string) bool {
 }
 
 // hashIsData reports whether the first line, which begins with #, looks like the
-// readings behind it: as many fields, and numbers where they have numbers. Then # is
-// part of a name, and no line is passed over.
+// readings behind it: as many fields, and numbers where they have numbers. Then #
+// is part of a name, and no line is passed over.
 func (s *sniffer) hashIsData(b []byte, rows []row) bool {
 	plain := take(b, 0, format{delimiter: s.format.delimiter}, 1)
 	if len(plain) == 0 || len(rows) == 0 {

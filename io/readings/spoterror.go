@@ -8,8 +8,8 @@ import (
 	"github.com/paulmach/orb"
 )
 
-// SpotError says at which places several readings may not be merged. It shows
-// the first few places, in (x, y) order.
+// SpotError says at which places several readings may not be merged. It shows the
+// first few places, in (x, y) order.
 type SpotError struct {
 	First []Spot
 	Total int // places

@@ -12,8 +12,8 @@ import (
 	"isofacet/triangulate/exact"
 )
 
-// groups are the sets of two or more readings that stand at one place: the
-// numbers of each in rising order, group after group, and where each begins.
+// groups are the sets of two or more readings that stand at one place: the numbers
+// of each in rising order, group after group, and where each begins.
 type groups struct {
 	members []int32
 	start   []int32 // one more than there are groups
@@ -92,8 +92,8 @@ func (s *collected) spread(m []int32) float64 {
 
 // asWritten rounds a difference of numbers with a few decimals to that many, so
 // that 10.3 - 10.2 is 0.1 and not the 0.10000000000000142 of the doubles: limits
-// are compared with what the file says. Differences that have no such meaning
-// (too large, or of full doubles) stay as they are.
+// are compared with what the file says. Differences that have no such meaning (too
+// large, or of full doubles) stay as they are.
 func asWritten(d float64, decimals int) float64 {
 	if decimals >= len(powersOfTen) {
 		return d
@@ -127,9 +127,9 @@ func (s *collected) place(m []int32) orb.Point {
 	return p
 }
 
-// representative is the reading of a group that stays, with its id, code and
-// line. It does not depend on the order of the input, but under SpotFirst and
-// SpotLast: equal readings are settled by everything that is kept of them.
+// representative is the reading of a group that stays, with its id, code and line.
+// It does not depend on the order of the input, but under SpotFirst and SpotLast:
+// equal readings are settled by everything that is kept of them.
 func (s *collected) representative(m []int32, rule SpotRule) int32 {
 	switch rule {
 	case SpotFirst:
@@ -146,8 +146,8 @@ func (s *collected) representative(m []int32, rule SpotRule) int32 {
 	return best
 }
 
-// before orders readings by z if the rule looks at it, then by (x, y), z, texts.
-// A reading with a name goes before one without.
+// before orders readings by z if the rule looks at it, then by (x, y), z, texts. A
+// reading with a name goes before one without.
 func (s *collected) before(i, j int32, rule SpotRule) bool {
 	c := 0
 	switch rule {

@@ -5,9 +5,9 @@ import "unsafe"
 // texts are many short texts in one piece of memory: their bytes one behind the
 // other, and four bytes each for where they end.
 //
-// Ends are 32 bits wide, counted from the start of their page of 2^16 texts: a
-// text has at most maxText bytes, so a page has less than 2^32. The texts of a
-// block need no pages, since a chunk is shorter than that.
+// Ends are 32 bits wide, counted from the start of their page of 2^16 texts: a text
+// has at most maxText bytes, so a page has less than 2^32. The texts of a block
+// need no pages, since a chunk is shorter than that.
 type texts struct {
 	data  []byte
 	ends  []uint32
@@ -17,8 +17,8 @@ type texts struct {
 const (
 	pageBits = 16
 	pageMask = 1<<pageBits - 1
-	// maxText is the longest id, code and so on, in bytes. Nothing that is
-	// written beside a point comes near; a column of long remarks is skipped.
+	// maxText is the longest id, code and so on, in bytes. Nothing that is written
+	// beside a point comes near; a column of long remarks is skipped.
 	maxText = 1024
 )
 
@@ -73,9 +73,9 @@ func (t *texts) remove(gone []int32, base int) {
 	t.data, t.ends = t.data[:size], t.ends[:n]
 }
 
-// join puts the texts of blocks together: those of blocks[k] become the texts
-// from start[k] to start[k+1], empty ones if it has none. each runs a function for
-// every k, in any order. The blocks lose theirs.
+// join puts the texts of blocks together: those of blocks[k] become the texts from
+// start[k] to start[k+1], empty ones if it has none. each runs a function for every
+// k, in any order. The blocks lose theirs.
 func (t *texts) join(blocks []*texts, start []int, each func(f func(k int))) {
 	data := make([]int, len(blocks)) // where the bytes of each block begin
 	n, size := start[len(blocks)], 0

@@ -7,16 +7,15 @@ import (
 
 // Records and fields.
 //
-// A record is a line, or several if a line end stands inside quotes. Lines end
-// with LF, CRLF or CR, whichever comes. Quotes follow RFC 4180 with these
-// additions: blanks around a quoted field are passed over, a quote inside a field
-// that does not begin with one is a character like any other (a 6" pipe), and
-// a quoted field has to close within maxQuoted bytes. One that does not is bad, and
-// its line ends where its line ends: an open quote costs one line, not the
-// rest of the file.
+// A record is a line, or several if a line end stands inside quotes. Lines end with
+// LF, CRLF or CR, whichever comes. Quotes follow RFC 4180 with these additions:
+// blanks around a quoted field are passed over, a quote inside a field that does
+// not begin with one is a character like any other (a 6" pipe), and a quoted field
+// has to close within maxQuoted bytes. One that does not is bad, and its line ends
+// where its line ends: an open quote costs one line, not the rest of the file.
 //
-// Two readers of this grammar must agree: records, below, which takes a record apart,
-// and cut, which only finds where records end. They meet in opensQuote and
+// Two readers of this grammar must agree: tokens.record, which takes a record
+// apart, and cut, which only finds where records end. They meet in opensQuote and
 // closeQuote.
 
 const (
@@ -253,9 +252,9 @@ func (f *format) cut(b []byte, atEnd bool) int {
 	}
 }
 
-// lastLineEnd returns the position behind the last line end of b[from:], 0 if
-// there is none. If more is to follow b, a CR at its end may be half a line end
-// and does not count.
+// lastLineEnd returns the position behind the last line end of b[from:], 0 if there
+// is none. If more is to follow b, a CR at its end may be half a line end and does
+// not count.
 func lastLineEnd(b []byte, from int, more bool) int {
 	start := from + bytes.LastIndexByte(b[from:], '\n') + 1
 	// A CR behind it counts as well, in files that end lines so.

@@ -7,11 +7,11 @@ import (
 
 // Header words.
 //
-// A header name is compared without case, without what stands in brackets,
-// without a unit at its end, and without anything but letters and digits:
-// "Easting (m)", "EASTING_M" and "easting" are one word. A weak word counts only if
-// no other column has a strong word for the role: beside "Code", a column
-// "Description" is passed over.
+// A header name is compared without case, without what stands in brackets, without
+// a unit at its end, and without anything but letters and digits: "Easting (m)",
+// "EASTING_M" and "easting" are one word. A weak word counts only if no other
+// column has a strong word for the role: beside "Code", a column "Description" is
+// passed over.
 
 type headerWord struct {
 	role Role
@@ -19,8 +19,8 @@ type headerWord struct {
 	head bool // z is a head of groundwater
 }
 
-// headerWords is the table by role. Words that could be two things are missing
-// on purpose ("n" beside "e" is clear, "d" and "h" are not), or ask (levelWords).
+// headerWords is the table by role. Words that could be two things are missing on
+// purpose ("n" beside "e" is clear, "d" and "h" are not), or ask (levelWords).
 var headerWords = buildWords([]struct {
 	role   Role
 	strong string
@@ -55,8 +55,8 @@ var headerWords = buildWords([]struct {
 }, "head hydraulichead piezometrichead potentiometrichead groundwaterhead groundwaterelevation groundwaterelev gwelevation gwelev "+
 	"waterelevation waterelev waterlevelelevation waterlevelelev watertableelevation watertableelev headelevation")
 
-// levelWords name a level of water without saying whether it is counted up from
-// a datum or down from the casing.
+// levelWords name a level of water without saying whether it is counted up from a
+// datum or down from the casing.
 var levelWords = words("level waterlevel groundwaterlevel gwlevel staticwaterlevel swl gwl wl watertable staticlevel")
 
 func buildWords(table []struct {
