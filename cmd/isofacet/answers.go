@@ -77,6 +77,9 @@ func (q *queryCommand) answer(cmd *cobra.Command, list []*input, l *loaded, aske
 	}
 	outside := 0
 	for i := range samples {
+		if !l.contains(asked.points[i]) {
+			samples[i].Location = triangulate.Location{Place: triangulate.Outside, Triangle: triangulate.NoTriangle, Edge: triangulate.NoHalfEdge, Vertex: triangulate.NoVertex}
+		}
 		if samples[i].Location.Place == triangulate.Outside {
 			outside++
 		}
@@ -192,7 +195,7 @@ func (t *table) appendReasons(row []byte, i int) []byte {
 	corners, weights := t.l.surface.Weights(loc, t.asked.points[i])
 	for k, v := range corners {
 		at := t.l.surface.Mesh().Position(v)
-		row = append(appendField(row, t.l.set.ID(int(t.inputs[v]))), ',')
+		row = append(appendField(row, t.l.id(int(t.inputs[v]))), ',')
 		row = append(numtext.Append(row, at[0], t.xy), ',')
 		row = append(numtext.Append(row, at[1], t.xy), ',')
 		row = append(numtext.Append(row, t.l.surface.Z()[v], t.z), ',')

@@ -108,6 +108,9 @@ func (g *gridCommand) fill(ctx context.Context, l *loaded, spec grid.Spec, part 
 	if err != nil {
 		return nil, err
 	}
+	if l.drawn.region != nil {
+		raster.Mask(l.drawn.region)
+	}
 	raster.Labels = g.labels(part)
 	return raster, nil
 }

@@ -20,9 +20,17 @@ import (
 // loaded is what every command begins with: the readings and the surface through
 // them.
 type loaded struct {
-	set     *readings.Set
-	bound   orb.Bound
-	zRange  [2]float64
+	set    *readings.Set
+	bound  orb.Bound
+	zRange [2]float64
+	names  []string // of the inputs
+	drawn  *drawn   // what lines made of it
+
+	// The most decimals that readings and lines carry.
+	decimalsXY, decimalsZ int
+
+	// surface is whole where boundary and voids cut it: values are asked of it,
+	// where contains allows. shown is what is left.
 	surface *interp.Surface
 }
 
@@ -37,7 +45,10 @@ func (p *program) load(ctx context.Context, r *reading, list []*input) (*loaded,
 	if err != nil {
 		return nil, err
 	}
-	l := &loaded{set: set}
+	l := &loaded{set: set, decimalsXY: set.DecimalsXY, decimalsZ: set.DecimalsZ}
+	for _, in := range list {
+		l.names = append(l.names, in.Name)
+	}
 	l.measure()
 	p.tellReadings(list, set)
 	if set.Len() == 0 {
@@ -49,12 +60,9 @@ func (p *program) load(ctx context.Context, r *reading, list []*input) (*loaded,
 		return nil, err
 	}
 	report, finish := p.display.Stage("triangulating")
-	m, err := triangulate.Delaunay(ctx, set.Points, triangulate.Options{Workers: p.workers(), Progress: report})
+	err = p.draw(ctx, r, l, triangulate.Options{Workers: p.workers(), Progress: report})
 	finish()
 	if err != nil {
-		return nil, l.whichReading(list, err)
-	}
-	if l.surface, err = interp.FromInputs(m, set.Z); err != nil {
 		return nil, l.whichReading(list, err)
 	}
 	return l, nil
@@ -76,6 +84,9 @@ func (p *program) read(ctx context.Context, r *reading, list []*input) (*reading
 		}
 		opt.Select.Exclude = x
 	}
+	if err := p.readCodes(ctx, &r.edges, &opt.Select); err != nil {
+		return nil, err
+	}
 	report, finish := p.display.Stage("reading")
 	defer finish()
 	if report != nil {
@@ -85,7 +96,11 @@ func (p *program) read(ctx context.Context, r *reading, list []*input) (*reading
 	for _, in := range list {
 		sources = append(sources, in.Source)
 	}
-	return readings.Read(ctx, sources, opt)
+	set, err := readings.Read(ctx, sources, opt)
+	if err != nil {
+		return nil, err
+	}
+	return set, p.codesKnown(&r.edges)
 }
 
 // readExclusions reads the file of readings to leave out, and says what in it does
@@ -129,7 +144,7 @@ func (l *loaded) whichReading(list []*input, err error) error {
 	if e, ok := errors.AsType[*interp.ValueError](err); ok {
 		index = e.Index
 	}
-	if index < 0 {
+	if index < 0 || index >= l.set.Len() {
 		return err
 	}
 	return status.With(status.WrongData, fmt.Errorf("%s:%d: %w", list[l.set.Source(index)].Name, l.set.Lines[index], err))
@@ -216,7 +231,7 @@ func (p *program) notUsed(list []*input, set *readings.Set) []record.NotUsed {
 
 // digits returns the digits after the point for coordinates and for values.
 func (l *loaded) digits(d option.Decimals) (xy, z int) {
-	return d.Resolve(l.set.DecimalsXY + 2), d.Resolve(l.set.DecimalsZ + 2)
+	return d.Resolve(l.decimalsXY + 2), d.Resolve(l.decimalsZ + 2)
 }
 
 // extents returns the extents as they are written.
@@ -231,13 +246,14 @@ func (l *loaded) extents(d option.Decimals) extents {
 // surfaceCounts returns the surface's counts and sums as they are written.
 func (l *loaded) surfaceCounts(d option.Decimals) surfaceCounts {
 	xy, z := l.digits(d)
-	m := l.surface.Mesh()
+	s := l.shown()
+	m := s.Mesh()
 	c := surfaceCounts{
 		Vertices: m.NumVertices(), Triangles: m.NumTriangles(),
-		Area: number{l.surface.Area(), xy}, VolumeAboveZero: number{l.surface.VolumeAboveZero(), z},
+		Area: number{s.Area(), xy}, VolumeAboveZero: number{s.VolumeAboveZero(), z},
 	}
-	if m.NumTriangles() > 0 {
-		c.OutlineVertices = len(m.Hull())
+	for _, ring := range m.Outline() {
+		c.OutlineVertices += len(ring)
 	}
 	return c
 }
@@ -251,7 +267,7 @@ const (
 
 // tellSurface says what the surface is.
 func (p *program) tellSurface(l *loaded) {
-	m := l.surface.Mesh()
+	m := l.shown().Mesh()
 	p.report.Note(fmt.Sprintf("surface: %s, %s", countedVertices(m.NumVertices()), counted(m.NumTriangles(), "triangle")),
 		"vertices", m.NumVertices(), "triangles", m.NumTriangles())
 }

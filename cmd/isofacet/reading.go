@@ -1,6 +1,8 @@
 package main
 
 import (
+	"slices"
+
 	"isofacet/cmd/internal/manual"
 	"isofacet/cmd/internal/option"
 	"isofacet/grid/decimal"
@@ -25,6 +27,8 @@ type reading struct {
 	without    parsedList[readings.Pattern]
 	exclude    typed
 
+	edges
+
 	crs             option.System
 	horizontalDatum option.Label
 	verticalDatum   option.Label
@@ -46,7 +50,7 @@ func (r *reading) readingOptions() []manual.Option {
 	r.without = parsedList[readings.Pattern]{form: "ROLE=PATTERN", parse: pattern("without")}
 
 	const text, which, labels = "Text of the readings", "Which readings", groupLabels
-	return []manual.Option{
+	return slices.Concat([]manual.Option{
 		{Group: text, Name: "columns", Value: &r.columns, Default: "the header's words",
 			Text: "what the columns hold: in order, as in id,northing,easting,elevation,code (- skips one), or by header name or number, as in x=East,y=North,z=4"},
 		{Group: text, Name: "delimiter", Value: &r.delimiter, Default: "detected",
@@ -72,11 +76,11 @@ func (r *reading) readingOptions() []manual.Option {
 			Text: "leave out readings whose text matches a shell pattern"},
 		{Group: which, Name: "exclude", Value: &r.exclude,
 			Text: "file of readings to leave out: columns id (or x and y), decision and reason; a row counts if its decision is \"leave out\" and it has a reason"},
-
+	}, r.edges.edgeOptions(), []manual.Option{
 		{Group: labels, Name: "crs", Value: &r.crs, Text: "coordinate system of x and y"},
 		{Group: labels, Name: "horizontal-datum", Value: &r.horizontalDatum, Text: "what x and y refer to"},
 		{Group: labels, Name: "vertical-datum", Value: &r.verticalDatum, Text: "what z refers to"},
-	}
+	})
 }
 
 func pattern(name string) func(string) (readings.Pattern, error) {

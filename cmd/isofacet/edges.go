@@ -1,0 +1,500 @@
+package main
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"math"
+	"slices"
+
+	"github.com/paulmach/orb"
+
+	"isofacet/cmd/internal/manual"
+	"isofacet/cmd/internal/option"
+	"isofacet/cmd/internal/status"
+	"isofacet/grid/decimal"
+	"isofacet/interp"
+	"isofacet/io/lines"
+	"isofacet/io/readings"
+	"isofacet/triangulate"
+)
+
+// edges is what the command line says of the lines that people draw: breaklines,
+// boundary and voids, and how far the surface reaches.
+type edges struct {
+	breaklines  parsedList[string]
+	boundary    parsedList[string]
+	voids       parsedList[string]
+	crossing    option.Choice
+	touchWithin option.Number
+	maxEdge     option.Number
+	codeTable   typed
+	linesZ      parsed[lines.Zeros]
+
+	table *lines.CodeTable // once it is read
+	codes *lines.Codes
+}
+
+// edgeOptions returns the options of every command that makes a surface.
+func (e *edges) edgeOptions() []manual.Option {
+	zero := decimal.FromInt(0)
+	name := func(text string) (string, error) { return text, nil }
+	e.breaklines = parsedList[string]{form: "FILE", parse: name}
+	e.boundary = parsedList[string]{form: "FILE", parse: name}
+	e.voids = parsedList[string]{form: "FILE", parse: name}
+	e.crossing = option.NewChoice("refuse", "split")
+	e.touchWithin, e.maxEdge = option.Number{Least: &zero}, option.Number{Least: &zero}
+	e.codeTable = typed{form: "FILE"}
+	e.linesZ = parsed[lines.Zeros]{form: "use", parse: lines.ParseZeros}
+	const group = "Lines and limits"
+	return []manual.Option{
+		{Group: group, Name: "breaklines", Value: &e.breaklines, Repeatable: true,
+			Text: "lines along which the slope may change, with heights: GeoJSON, or text with the columns line, x, y and z"},
+		{Group: group, Name: "boundary", Value: &e.boundary, Repeatable: true,
+			Text: "closed lines outside which there is no surface; with heights they are breaklines as well"},
+		{Group: group, Name: "voids", Value: &e.voids, Repeatable: true,
+			Text: "closed lines inside which there is no surface; with heights they are breaklines as well"},
+		{Group: group, Name: "crossing", Value: &e.crossing,
+			Text: "what becomes of breaklines that cross between their vertices: split makes a vertex there if their heights agree within --same-spot-spread"},
+		{Group: group, Name: "touch-within", Value: &e.touchWithin, Default: "0",
+			Text: "distance within which a reading or a vertex counts as lying on a breakline"},
+		{Group: group, Name: "max-edge", Value: &e.maxEdge, Default: "no limit",
+			Text: "leave out triangles with a longer edge, as far as they reach in from the outside"},
+		{Group: group, Name: "code-table", Value: &e.codeTable,
+			Text: "which codes are ground, which string lines and with what marks, which are left out"},
+		{Group: group, Name: "lines-z", Value: &e.linesZ, Default: "heights that are all 0 are refused",
+			Text: "take heights of lines that are all 0 for heights"},
+	}
+}
+
+// drawn is what the lines made of the surface, for reports.
+type drawn struct {
+	lines    []lines.Line
+	report   *interp.BreaklineReport
+	trimmed  int // triangles
+	trimArea float64
+	alone    []triangulate.Vertex // readings used that no triangle has
+	region   *triangulate.Region
+	cut      *interp.Clip // the surface within the region
+	rings    ringReport
+}
+
+// ringReport compares what rings enclose with what of the surface is there.
+type ringReport struct {
+	boundaries, voids           int
+	boundaryArea, voidArea      float64
+	inBoundary, taken, keptArea float64
+}
+
+// readCodes reads the table of codes, which decides which readings are used.
+func (p *program) readCodes(ctx context.Context, e *edges, sel *readings.Selection) error {
+	if !e.codeTable.set {
+		return nil
+	}
+	in, err := p.input(e.codeTable.text)
+	if err != nil {
+		return err
+	}
+	if e.table, err = lines.ReadCodeTable(ctx, in.Source); err != nil {
+		return err
+	}
+	e.codes = lines.NewCodes(e.table)
+	sel.Code = e.codes.Choose
+	return nil
+}
+
+// codesKnown refuses codes that the table says nothing about, and counts the rest.
+func (p *program) codesKnown(e *edges) error {
+	if e.codes == nil {
+		return nil
+	}
+	if err := e.codes.Unknown(); err != nil {
+		return err
+	}
+	for _, c := range e.codes.Histogram() {
+		p.report.Note(fmt.Sprintf("code: %s: %s, %s", c.Code, c.Use, counted(c.Readings, "reading")), "code", c.Code, "use", c.Use.String(), "readings", c.Readings)
+	}
+	return nil
+}
+
+// draw makes the surface of the readings and of what lines there are.
+func (p *program) draw(ctx context.Context, r *reading, l *loaded, opt triangulate.Options) error {
+	e := &r.edges
+	d := &drawn{}
+	strung, err := lines.Strung(l.set, e.table)
+	if err != nil {
+		return err
+	}
+	d.lines = append(d.lines, strung.Lines...)
+	p.tellLines("strings of readings", strung)
+	files, err := p.readLines(ctx, e.breaklines.values, e, lines.Breaklines)
+	if err != nil {
+		return err
+	}
+	d.lines = append(d.lines, files.Lines...)
+	boundary, err := p.readLines(ctx, e.boundary.values, e, lines.Rings)
+	if err != nil {
+		return err
+	}
+	voids, err := p.readLines(ctx, e.voids.values, e, lines.Rings)
+	if err != nil {
+		return err
+	}
+	for _, ring := range slices.Concat(boundary.Lines, voids.Lines) {
+		if ring.Z != nil {
+			d.lines = append(d.lines, ring)
+		}
+	}
+	for _, s := range []*lines.Set{files, boundary, voids} {
+		l.decimalsXY, l.decimalsZ = max(l.decimalsXY, s.DecimalsXY), max(l.decimalsZ, s.DecimalsZ)
+	}
+	l.drawn = d
+	if err := p.join(ctx, r, l, opt); err != nil {
+		return err
+	}
+	if e.maxEdge.IsSet() {
+		if err := p.trim(l, e.maxEdge.Value); err != nil {
+			return err
+		}
+	}
+	return p.limit(ctx, l, boundary, voids, opt)
+}
+
+// readLines reads the files of one option.
+func (p *program) readLines(ctx context.Context, names []string, e *edges, read func(context.Context, []readings.Source, lines.Options) (*lines.Set, error)) (*lines.Set, error) {
+	if len(names) == 0 {
+		return &lines.Set{}, nil
+	}
+	var sources []readings.Source
+	for _, name := range names {
+		in, err := p.input(name)
+		if err != nil {
+			return nil, err
+		}
+		sources = append(sources, in.Source)
+	}
+	set, err := read(ctx, sources, lines.Options{Zeros: e.linesZ.value, Workers: p.workers()})
+	if err != nil {
+		return nil, err
+	}
+	what := "lines"
+	if len(names) == 1 {
+		what = names[0]
+	}
+	p.tellLines(what, set)
+	return set, nil
+}
+
+// tellLines says what was read, and passes warnings on.
+func (p *program) tellLines(what string, set *lines.Set) {
+	for _, layout := range set.Layouts {
+		p.report.Note("text: "+layout.File+": "+layout.String(), "file", layout.File, "layout", layout.String())
+	}
+	for _, w := range set.Warnings {
+		p.report.Warn("lines", w.String(), "file", w.File, "line", w.Line)
+	}
+	if len(set.Lines) > 0 {
+		text := fmt.Sprintf("%s: %s, %s", what, counted(len(set.Lines), "line"), countedVertices(set.Vertices))
+		if set.Repeated > 0 {
+			text += fmt.Sprintf(", %d of them repeats of the one before", set.Repeated)
+		}
+		p.report.Note(text, "lines", len(set.Lines), "vertices", set.Vertices, "repeated", set.Repeated)
+	}
+}
+
+// join triangulates readings and breaklines.
+func (p *program) join(ctx context.Context, r *reading, l *loaded, opt triangulate.Options) error {
+	d := l.drawn
+	breaklines := make([]interp.Breakline, len(d.lines))
+	for i, line := range d.lines {
+		breaklines[i] = interp.Breakline{Name: line.Name, Points: line.Points, Z: line.Z}
+	}
+	spread := r.spotSpread.Value.Float64()
+	o := interp.BreaklineOptions{
+		CrossingSpreadMax: spread, SpotSpreadMax: spread,
+		TouchWithin: r.edges.touchWithin.Value.Float64(), Mesh: opt,
+	}
+	if r.edges.crossing.Word() == "split" {
+		o.Crossing = interp.SplitCrossings
+	}
+	if merge := mergeRule(r.spotRule.value); merge != nil {
+		o.Merge = merge
+		if !r.spotSpread.IsSet() {
+			o.SpotSpreadMax = math.Inf(1)
+		}
+	}
+	s, report, err := interp.WithBreaklines(ctx, l.set.Points, l.set.Z, breaklines, o)
+	if err != nil {
+		return p.linesError(l, err)
+	}
+	l.surface, d.report = s, report
+	if len(d.lines) == 0 {
+		return nil
+	}
+	p.report.Note(fmt.Sprintf("breaklines: %s, %s, %d of them at the place of a reading or of another; %s",
+		counted(len(d.lines), "line"), countedVertices(report.Vertices), report.Merged, counted(report.Segments, "segment")),
+		"lines", len(d.lines), "vertices", report.Vertices, "merged", report.Merged, "segments", report.Segments)
+	p.listSome(len(report.Made), func(i int) string {
+		m := report.Made[i]
+		return fmt.Sprintf("crossing: %s at (%v, %v): heights %v, vertex made at %v", d.names(m.Lines), m.At[0], m.At[1], m.Heights, m.Z)
+	})
+	p.listSome(len(report.Touched), func(i int) string {
+		t := report.Touched[i]
+		return fmt.Sprintf("touching: line %q led through (%v, %v), %.3g from it", d.lines[t.Line].Name, t.At[0], t.At[1], t.Distance)
+	})
+	return nil
+}
+
+// mergeRule returns the height of a place from the heights there, nil for the mean.
+func mergeRule(rule readings.SpotRule) func([]float64) float64 {
+	switch rule {
+	case readings.SpotFirst:
+		return func(z []float64) float64 { return z[0] }
+	case readings.SpotLast:
+		return func(z []float64) float64 { return z[len(z)-1] }
+	case readings.SpotLowest:
+		return slices.Min[[]float64]
+	case readings.SpotHighest:
+		return slices.Max[[]float64]
+	}
+	return nil
+}
+
+// listSome says the first few of n things, and how many more there are.
+func (p *program) listSome(n int, text func(i int) string) {
+	for i := range n {
+		if i == p.listMost {
+			p.report.Note(fmt.Sprintf("and %d more; inspect lists all", n-i))
+			return
+		}
+		p.report.Note(text(i))
+	}
+}
+
+func (d *drawn) names(is []int) string {
+	text := ""
+	for k, i := range is {
+		switch {
+		case k == 0:
+		case k == len(is)-1:
+			text += " and "
+		default:
+			text += ", "
+		}
+		text += fmt.Sprintf("%q", d.lines[i].Name)
+	}
+	return text
+}
+
+// linesError names readings and lines by their files.
+func (p *program) linesError(l *loaded, err error) error {
+	var spot *interp.SpotError
+	if errors.As(err, &spot) {
+		text := ""
+		for k, v := range spot.Of {
+			if k > 0 {
+				text += ", "
+			}
+			text += fmt.Sprintf("%s: height %v", l.vertexPlace(v), spot.Heights[k])
+		}
+		return status.With(status.WrongData, fmt.Errorf("%s: one place (%v, %v), heights %v apart: expected heights that agree", text, spot.At[0], spot.At[1], spot.Spread),
+			"--same-spot-spread says how far apart still agrees (their mean is taken); --same-spot names another rule")
+	}
+	var crossing *interp.CrossingError
+	if errors.As(err, &crossing) {
+		hint := "add a vertex where they meet, or say --crossing split"
+		if crossing.Crossings[0].SpreadTooLarge {
+			hint = "mend the heights, or say with --same-spot-spread how far apart still agrees"
+		}
+		return status.With(status.WrongData, err, hint)
+	}
+	return err
+}
+
+// vertexPlace tells where a reading or a vertex of a line was read.
+func (l *loaded) vertexPlace(v interp.LineVertex) string {
+	if v.Line < 0 {
+		return fmt.Sprintf("%s:%d", l.names[l.set.Source(v.Vertex)], l.set.Lines[v.Vertex])
+	}
+	line := &l.drawn.lines[v.Line]
+	return fmt.Sprintf("%s: line %q", line.At(v.Vertex), line.Name)
+}
+
+// trim leaves out what reaches in from the outside over edges that are too long.
+func (p *program) trim(l *loaded, most decimal.Number) error {
+	before, area := l.surface.Mesh().NumTriangles(), l.surface.Area()
+	s, err := interp.New(l.surface.Mesh().Trim(most.Float64()), l.surface.Z())
+	if err != nil {
+		return err
+	}
+	l.surface = s
+	l.drawn.trimmed = before - s.Mesh().NumTriangles()
+	l.drawn.trimArea = area - s.Area()
+	l.drawn.alone = s.WithoutTriangle()
+	xy, _ := l.digits(option.Decimals{})
+	p.report.Note(fmt.Sprintf("max edge %s: %s left out, %v of area", most, counted(l.drawn.trimmed, "triangle"), number{l.drawn.trimArea, xy}),
+		"triangles", l.drawn.trimmed, "area", l.drawn.trimArea)
+	inputs := s.Mesh().Inputs()
+	if len(l.drawn.alone) > 0 {
+		p.report.Note(fmt.Sprintf("without a triangle: %s", countedVertices(len(l.drawn.alone))), "vertices", len(l.drawn.alone))
+	}
+	p.listSome(len(l.drawn.alone), func(i int) string {
+		at := s.Mesh().Position(l.drawn.alone[i])
+		return fmt.Sprintf("without a triangle: %s at (%v, %v)", l.inputPlace(int(inputs[l.drawn.alone[i]])), at[0], at[1])
+	})
+	return nil
+}
+
+// inputPlace tells where an input of the mesh was read.
+func (l *loaded) inputPlace(i int) string {
+	if i < l.set.Len() {
+		return l.vertexPlace(interp.LineVertex{Line: -1, Vertex: i})
+	}
+	i -= l.set.Len()
+	for k := range l.drawn.lines {
+		if n := len(l.drawn.lines[k].Points); i >= n {
+			i -= n
+			continue
+		}
+		return l.vertexPlace(interp.LineVertex{Line: k, Vertex: i})
+	}
+	return "a vertex made where lines cross"
+}
+
+// id returns the id of an input of the mesh, empty if it has none.
+func (l *loaded) id(i int) string {
+	if i < l.set.Len() {
+		return l.set.ID(i)
+	}
+	return ""
+}
+
+// limit cuts the surface at boundary and voids.
+func (p *program) limit(ctx context.Context, l *loaded, boundary, voids *lines.Set, opt triangulate.Options) error {
+	if len(boundary.Lines)+len(voids.Lines) == 0 {
+		return nil
+	}
+	d := l.drawn
+	region, err := triangulate.NewRegion(boundary.Rings(), voids.Rings())
+	if err != nil {
+		return ringError(boundary, voids, err)
+	}
+	opt.Progress = nil
+	if d.cut, err = l.surface.Clip(ctx, region, opt); err != nil {
+		return err
+	}
+	d.region = region
+	d.rings = ringReport{
+		boundaries: len(boundary.Lines), voids: len(voids.Lines),
+		boundaryArea: enclosed(boundary.Rings()), voidArea: enclosed(voids.Rings()),
+		keptArea: d.cut.Surface.Area(),
+	}
+	d.rings.inBoundary = l.surface.Area()
+	if len(boundary.Lines) > 0 {
+		d.rings.inBoundary = d.rings.keptArea
+		if len(voids.Lines) > 0 {
+			only, err := triangulate.NewRegion(boundary.Rings(), nil)
+			if err != nil {
+				return ringError(boundary, voids, err)
+			}
+			within, err := l.surface.Clip(ctx, only, opt)
+			if err != nil {
+				return err
+			}
+			d.rings.inBoundary = within.Surface.Area()
+		}
+	}
+	d.rings.taken = d.rings.inBoundary - d.rings.keptArea
+	return p.tellRings(l)
+}
+
+// tellRings says what boundary and voids left of the surface.
+func (p *program) tellRings(l *loaded) error {
+	g := l.drawn.rings
+	xy, _ := l.digits(option.Decimals{})
+	area := func(a float64) number { return number{max(a, 0), xy} }
+	// What the areas of two ways of adding up may differ by says nothing.
+	beyond := func(a, of float64) bool { return a > 1e-9*of }
+	if g.boundaries > 0 {
+		text := fmt.Sprintf("boundary: %s, enclosing %v", counted(g.boundaries, "ring"), area(g.boundaryArea))
+		if rest := g.boundaryArea - g.inBoundary; beyond(rest, g.boundaryArea) {
+			text += fmt.Sprintf("; %v of that has no surface", area(rest))
+		}
+		p.report.Note(text, "rings", g.boundaries, "area", g.boundaryArea, "with_surface", g.inBoundary)
+	}
+	if g.voids > 0 {
+		text := fmt.Sprintf("voids: %s, enclosing %v", counted(g.voids, "ring"), area(g.voidArea))
+		if rest := g.voidArea - g.taken; beyond(rest, g.voidArea) {
+			text += fmt.Sprintf("; %v of that lies beyond the boundary or the surface", area(rest))
+		}
+		p.report.Note(text, "rings", g.voids, "area", g.voidArea, "taken", g.taken)
+		if g.taken <= 0 {
+			p.report.Warn("voids-outside", "the voids take nothing away: they lie beyond the boundary or the surface")
+		}
+	}
+	if l.drawn.cut.Surface.Mesh().NumTriangles() == 0 {
+		return status.With(status.WrongData, fmt.Errorf("boundary and voids enclose %v and %v: nothing of the surface is left: expected rings around readings", area(g.boundaryArea), area(g.voidArea)),
+			"are x and y of the rings in the same system and order as those of the readings?")
+	}
+	return nil
+}
+
+// enclosed is the area inside an odd number of rings that do not cross each other.
+func enclosed(rings []orb.Ring) float64 {
+	total := 0.0
+	for i, r := range rings {
+		outer := true
+		for k, s := range rings {
+			if k == i {
+				continue
+			}
+			if in, err := triangulate.NewRegion([]orb.Ring{s}, nil); err == nil && in.Contains(r[0]) {
+				outer = !outer
+			}
+		}
+		twice := 0.0
+		for k := 1; k < len(r); k++ {
+			a, b := r[k-1], r[k]
+			twice += float64((a[0]-r[0][0])*(b[1]-r[0][1])) - float64((a[1]-r[0][1])*(b[0]-r[0][0]))
+		}
+		if outer {
+			total += math.Abs(twice) / 2
+		} else {
+			total -= math.Abs(twice) / 2
+		}
+	}
+	return total
+}
+
+// ringError names the ring of an error by its file.
+func ringError(boundary, voids *lines.Set, err error) error {
+	e, ok := errors.AsType[*triangulate.RingError](err)
+	if !ok {
+		return err
+	}
+	set := boundary
+	if e.Void {
+		set = voids
+	}
+	ring := &set.Lines[e.Index]
+	place := ring.At(max(e.Vertex, 0))
+	text := fmt.Sprintf("%s: ring %q: %s", place, ring.Name, e.Reason)
+	if e.Vertex >= 0 {
+		text = fmt.Sprintf("%s: ring %q near (%v, %v): %s", place, ring.Name, e.At[0], e.At[1], e.Reason)
+	}
+	return status.With(status.WrongData, errors.New(text), "mend the ring there; two rings may touch or lie inside each other")
+}
+
+// shown is the surface whose triangles are drawn, measured and written: that
+// within boundary and voids.
+func (l *loaded) shown() *interp.Surface {
+	if l.drawn.cut != nil {
+		return l.drawn.cut.Surface
+	}
+	return l.surface
+}
+
+// contains tells whether boundary and voids leave a place in.
+func (l *loaded) contains(p orb.Point) bool {
+	return l.drawn.region == nil || l.drawn.region.Contains(p)
+}
