@@ -53,6 +53,7 @@ func TestBadInput(t *testing.T) {
 			"a.csv:3:11: z \"12.4\": expected a number such as 12,4\n1 line bad, 1 good", DecimalMark},
 		{"decimal comma with a comma delimiter declared", head + "A,\"4512233,10\",2,3,G\n", "", Declared{Decimal: DecimalPoint},
 			"a.csv:2:3: x \"4512233,10\": expected a number such as 12.4\n1 line bad, 0 good", DecimalMark},
+		{"a comma for both, without quotes", "x,y,z\n0,00,0,,0\n", "", Declared{Decimal: DecimalComma}, "a.csv:2: 5 fields: expected 3, as in the header\n1 line bad, 0 good", FieldCount},
 		{"thousands, English", "id;x;y;z\nA;500,000.5;2.5;3.5\n", "", Declared{},
 			"a.csv:2:3: x \"500,000.5\": expected a number without marks between thousands, such as 12.4\n1 line bad, 0 good", Thousands},
 		{"thousands, continental", "id;x;y;z\nA;500.000,5;2,5;3,5\n", "", Declared{},

@@ -55,7 +55,8 @@ func newWorker(p *plan, o *Options, hit []atomic.Bool) *worker {
 	}
 	w.byCode = o.Select.Code
 	w.choosing = len(w.only)+len(w.without) > 0 || w.byCode != nil || w.exclude != nil
-	w.careful = p.raw || o.careful
+	// With one comma for both, numbers stand in quotes, which quick does not read.
+	w.careful = p.raw || o.careful || p.delimiter == p.decimal
 	return w
 }
 

@@ -56,7 +56,8 @@ func TestEveryWayReadsAlike(t *testing.T) {
 		}
 		text := strings.TrimSuffix(b.String(), rapid.SampledFrom([]string{"", "\n", "\r\n"}).Draw(t, "trim"))
 		o := Options{Lenient: rapid.Bool().Draw(t, "lenient"), Spots: Spots{Rule: SpotFirst}}
-		o.Declared = Declared{Columns: columns(t, "id,x,y,z,code"), Delimiter: d, Decimal: DecimalPoint,
+		o.Declared = Declared{Columns: columns(t, "id,x,y,z,code"), Delimiter: d,
+			Decimal: rapid.SampledFrom([]Decimal{DecimalPoint, DecimalPoint, DecimalComma}).Draw(t, "decimal"),
 			Comment: rapid.SampledFrom([]string{"none", "#", "-"}).Draw(t, "comment"), Missing: []string{"NM", "-9999", "blank"}}
 		if rapid.Bool().Draw(t, "choosing") {
 			o.Select.Without = []Pattern{{ID, "B*"}, {Code, "?"}}
