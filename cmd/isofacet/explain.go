@@ -44,6 +44,8 @@ var explanations = []func(error) (code status.Code, hint string, ok bool){
 	explainTooBig,
 	explainReadings,
 	explainGrid,
+	explainRaster,
+	explainContour,
 	explainFiles,
 }
 

@@ -26,7 +26,9 @@ func (p *program) commands() []*cobra.Command {
 	return []*cobra.Command{
 		newInspect(p),
 		newGrid(p),
+		newContour(p),
 		newQuery(p),
+		newTriangles(p),
 		newSamples(p),
 		newCompletion(p),
 		newVersion(p),

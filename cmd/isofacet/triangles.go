@@ -1,0 +1,174 @@
+package main
+
+import (
+	"slices"
+
+	"github.com/spf13/cobra"
+
+	"isofacet/cmd/internal/advice"
+	"isofacet/cmd/internal/manual"
+	"isofacet/triangulate"
+)
+
+const trianglesLong = `Writes the triangulated surface itself: what every other product is read off.
+
+Triangles come in the order of their corners, each with its smallest corner in x,
+then y, first and the others counter-clockwise. The order does not depend on that
+of the readings.
+
+Formats by extension: .geojson and .csv. In GeoJSON a triangle is a polygon whose
+positions carry the heights, with the properties triangle (its number from 1),
+id_1, id_2 and id_3 (its corners' readings), slope and downhill_azimuth. In CSV
+there are two tables: --out vertices=FILE has the number of each vertex, its
+reading, x, y and z, and --out triangles=FILE the numbers of three vertices, slope
+and azimuth. The vertices can be written as GeoJSON points too.
+
+Slope is rise over run. The downhill azimuth is where water would run, in degrees
+clockwise from grid north; a flat has none.`
+
+const trianglesExample = `isofacet triangles sample:gravel-pit/shots.csv --exclude sample:gravel-pit/decisions.csv --out pit.geojson
+isofacet triangles sample:landfill/heads-2024-q1.csv --out vertices=vertices.csv --out triangles=triangles.csv
+isofacet triangles sample:landfill/heads-2024-q1.csv --format csv`
+
+// newTriangles is "isofacet triangles".
+func newTriangles(p *program) *cobra.Command {
+	c := &trianglesCommand{program: p}
+	cmd := &cobra.Command{
+		Use:     "triangles [options] [FILE...]",
+		Short:   "the triangulated surface itself",
+		Long:    trianglesLong,
+		Example: trianglesExample,
+		RunE:    c.run,
+	}
+	fs := cmd.Flags()
+	manual.Add(fs, c.reading.readingOptions()...)
+	manual.Add(fs, c.writing.writingOptions([]string{partTriangles, partVertices}, []string{formatGeoJSON, formatCSV})...)
+	manual.Add(fs, p.runningOptions()...)
+	return cmd
+}
+
+// The parts of a triangulated surface.
+const (
+	partTriangles = "triangles"
+	partVertices  = "vertices"
+)
+
+type trianglesCommand struct {
+	*program
+	reading
+	writing
+}
+
+func (c *trianglesCommand) run(cmd *cobra.Command, files []string) error {
+	c.begin(cmd, &c.writing)
+	list, err := c.inputs(files)
+	if err != nil {
+		return err
+	}
+	named := byExtensions(map[string]string{".geojson": formatGeoJSON, ".csv": formatCSV})
+	dests, err := c.destinations(partTriangles, files, named, formatGeoJSON)
+	if err != nil {
+		return err
+	}
+	out, err := c.open(cmd.Context(), &c.writing, dests, c.paths())
+	if err != nil {
+		return err
+	}
+	defer out.abort()
+	l, err := c.load(cmd.Context(), &c.reading, list)
+	if err != nil {
+		return err
+	}
+	if err := l.needsTriangles(); err != nil {
+		return err
+	}
+	c.tellSurface(l)
+	c.warnOfLongOutline(l, advice.MaxEdge(advice.Spacing(l.surface.Mesh(), c.workers())))
+	return c.make(list, l, out)
+}
+
+// trianglesResult is what the run record says of the surface.
+type trianglesResult struct {
+	Extent  extents       `json:"extent"`
+	Surface surfaceCounts `json:"surface"`
+}
+
+// What ordering triangles takes in memory for each of them (a key and its place),
+// and what vertices take beside what they have.
+const (
+	bytesTriangleOrder = 20
+	bytesVertexOrder   = 12
+)
+
+// make orders the surface and writes it.
+func (c *trianglesCommand) make(list []*input, l *loaded, out *outputs) error {
+	m := l.surface.Mesh()
+	need := uint64(l.set.Len())*bytesVertex + uint64(m.NumTriangles())*bytesTriangleOrder + uint64(m.NumVertices())*bytesVertexOrder
+	if err := c.announce("ordering "+counted(m.NumTriangles(), "triangle"), need); err != nil {
+		return err
+	}
+	if err := c.settleWarnings(); err != nil {
+		return err
+	}
+	s := c.ordered(l, out)
+	slices.SortStableFunc(out.list, func(a, b *destination) int { return boolCompare(a.path == "-", b.path == "-") })
+	for _, d := range out.list {
+		if err := out.write(d, func(d *destination) error { return s.write(d) }); err != nil {
+			return err
+		}
+	}
+	if err := c.settleWarnings(); err != nil {
+		return err
+	}
+	if c.rec != nil {
+		c.recordReadings(list, l)
+		c.rec.Stable.Result = &trianglesResult{l.extents(c.decimals), l.surfaceCounts(c.decimals)}
+	}
+	return out.commit()
+}
+
+// ordered is a surface in the order in which it is written.
+type ordered struct {
+	*trianglesCommand
+	l         *loaded
+	mesh      *triangulate.Mesh
+	rank      []int32                // of every vertex, from 0
+	inputs    []int32                // of every vertex its reading
+	vertices  []triangulate.Vertex   // in order
+	triangles []triangulate.Triangle // in order
+	xy, z     int                    // digits after the point
+	slope     int
+	azimuth   int
+}
+
+func (c *trianglesCommand) ordered(l *loaded, out *outputs) *ordered {
+	s := &ordered{trianglesCommand: c, l: l, mesh: l.surface.Mesh()}
+	s.xy, s.z = l.digits(c.decimals)
+	s.slope, s.azimuth = c.decimals.Resolve(slopeDigits), c.decimals.Resolve(azimuthDigits)
+	s.inputs = s.mesh.Inputs()
+	s.vertices = s.mesh.Ordered()
+	s.rank = make([]int32, len(s.vertices))
+	for i, v := range s.vertices {
+		s.rank[v] = int32(i)
+	}
+	if slices.ContainsFunc(out.list, func(d *destination) bool { return d.part == partTriangles }) {
+		s.triangles = make([]triangulate.Triangle, 0, s.mesh.NumTriangles())
+		for t := range s.mesh.CanonicalTriangles(s.rank) {
+			s.triangles = append(s.triangles, t)
+		}
+	}
+	return s
+}
+
+// write writes one output.
+func (s *ordered) write(d *destination) error {
+	switch {
+	case d.format == formatCSV && d.part == partVertices:
+		return s.vertexTable(d.w)
+	case d.format == formatCSV:
+		return s.triangleTable(d.w)
+	case d.part == partVertices:
+		return s.writeFeatures(d, s.featureOptions(s.labels(""), s.xy, s.z), s.vertexFeatures)
+	}
+	return s.writeFeatures(d, s.featureOptions(s.labels(""), s.xy, s.z), s.triangleFeatures)
+}
