@@ -9,6 +9,8 @@
 //	volumes_test.go      solids with closed formulas, curved surfaces
 //	surveying_test.go    single triangles
 //	vectors_test.go      small cases with known answers
+//	isolines_test.go     lengths and counts of lines, through triangles and squares
+//	bands_test.go        areas between levels
 //
 // The figures stand in testdata, whose README.md names their sources, and in the
 // folder that ISOFACET_REFERENCE names: data that may not be kept here. Without
