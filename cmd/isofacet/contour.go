@@ -81,14 +81,14 @@ type contourCommand struct {
 	*program
 	reading
 	writing
-	interval     parsed[decimal.Number]
-	countFrom    option.Number
-	levels       parsed[[]decimal.Number]
-	indexEvery   parsed[int]
-	bands        manual.Switch
-	shortest     option.Number
-	fromRaster   typed
-	noData       option.Number
+	interval   parsed[decimal.Number]
+	countFrom  option.Number
+	levels     parsed[[]decimal.Number]
+	indexEvery parsed[int]
+	bands      manual.Switch
+	shortest   option.Number
+	fromRaster typed
+	noData     option.Number
 }
 
 func (c *contourCommand) options() []manual.Option {

@@ -27,10 +27,10 @@ type ground struct {
 }
 
 func (c *contourCommand) surfaceGround(list []*input, l *loaded) *ground {
-	g := &ground{surface: l.surface, l: l, list: list, xy: l.set.DecimalsXY + 2, labels: c.labels("")}
+	g := &ground{surface: l.shown(), l: l, list: list, xy: l.decimalsXY + 2, labels: c.labels("")}
 	// What is asked is the range of the triangles: a vertex may be in none.
 	g.low, g.high = math.Inf(1), math.Inf(-1)
-	m, z := l.surface.Mesh(), l.surface.Z()
+	m, z := g.surface.Mesh(), g.surface.Z()
 	for t := range m.Triangles() {
 		for _, v := range m.Corners(t) {
 			g.low, g.high = min(g.low, z[v]), max(g.high, z[v])
@@ -118,5 +118,5 @@ func (g *ground) taken() uint64 {
 	if g.raster != nil {
 		return uint64(g.raster.Spec.Bytes())
 	}
-	return uint64(g.l.set.Len()) * bytesVertex
+	return uint64(g.l.surface.Mesh().NumVertices()) * bytesVertex
 }

@@ -97,7 +97,7 @@ func (d *drawing) fits() error {
 	if d.g.raster != nil {
 		need += need / 2 // the ranks of its nodes
 	} else {
-		need += 4 * uint64(d.g.l.set.Len())
+		need += 4 * uint64(d.g.surface.Mesh().NumVertices())
 	}
 	return d.announce("isolines", need)
 }

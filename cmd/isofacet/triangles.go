@@ -7,6 +7,7 @@ import (
 
 	"isofacet/cmd/internal/advice"
 	"isofacet/cmd/internal/manual"
+	"isofacet/interp"
 	"isofacet/triangulate"
 )
 
@@ -97,13 +98,13 @@ type trianglesResult struct {
 // and what vertices take beside what they have.
 const (
 	bytesTriangleOrder = 20
-	bytesVertexOrder   = 12
+	bytesVertexOrder   = 20
 )
 
 // make orders the surface and writes it.
 func (c *trianglesCommand) make(list []*input, l *loaded, out *outputs) error {
-	m := l.surface.Mesh()
-	need := uint64(l.set.Len())*bytesVertex + uint64(m.NumTriangles())*bytesTriangleOrder + uint64(m.NumVertices())*bytesVertexOrder
+	m := l.shown().Mesh()
+	need := uint64(m.NumVertices())*bytesVertex + uint64(m.NumTriangles())*bytesTriangleOrder + uint64(m.NumVertices())*bytesVertexOrder
 	if err := c.announce("ordering "+counted(m.NumTriangles(), "triangle"), need); err != nil {
 		return err
 	}
@@ -131,25 +132,33 @@ func (c *trianglesCommand) make(list []*input, l *loaded, out *outputs) error {
 type ordered struct {
 	*trianglesCommand
 	l         *loaded
+	surface   *interp.Surface // what boundary and voids leave
 	mesh      *triangulate.Mesh
-	rank      []int32                // of every vertex, from 0
-	inputs    []int32                // of every vertex its reading
-	vertices  []triangulate.Vertex   // in order
+	rank      []int32                // of every vertex, its place in (x, y) order
+	vertices  []triangulate.Vertex   // in order: those that some triangle has
+	numbers   []int32                // of every vertex, its row in the table of vertices, from 1
 	triangles []triangulate.Triangle // in order
+	readings  []int32                // of every vertex, the input that it came from; -1 for none
 	xy, z     int                    // digits after the point
 	slope     int
 	azimuth   int
 }
 
 func (c *trianglesCommand) ordered(l *loaded, out *outputs) *ordered {
-	s := &ordered{trianglesCommand: c, l: l, mesh: l.surface.Mesh()}
+	s := &ordered{trianglesCommand: c, l: l, surface: l.shown(), mesh: l.shown().Mesh()}
 	s.xy, s.z = l.digits(c.decimals)
 	s.slope, s.azimuth = c.decimals.Resolve(slopeDigits), c.decimals.Resolve(azimuthDigits)
-	s.inputs = s.mesh.Inputs()
-	s.vertices = s.mesh.Ordered()
-	s.rank = make([]int32, len(s.vertices))
-	for i, v := range s.vertices {
-		s.rank[v] = int32(i)
+	s.number()
+	s.readings = s.mesh.Inputs()
+	if l.drawn.cut != nil {
+		// The inputs of a surface that was cut are the vertices of the whole one, and new ones.
+		whole := l.surface.Mesh().Inputs()
+		for v, i := range s.readings {
+			s.readings[v] = -1
+			if int(i) < len(whole) {
+				s.readings[v] = whole[i]
+			}
+		}
 	}
 	if slices.ContainsFunc(out.list, func(d *destination) bool { return d.part == partTriangles }) {
 		s.triangles = make([]triangulate.Triangle, 0, s.mesh.NumTriangles())
@@ -158,6 +167,24 @@ func (c *trianglesCommand) ordered(l *loaded, out *outputs) *ordered {
 		}
 	}
 	return s
+}
+
+// number orders the vertices and numbers those that some triangle has: limits may
+// leave others.
+func (s *ordered) number() {
+	s.rank, s.numbers = make([]int32, s.mesh.NumVertices()), make([]int32, s.mesh.NumVertices())
+	for t := range s.mesh.Triangles() {
+		for _, v := range s.mesh.Corners(t) {
+			s.numbers[v] = 1
+		}
+	}
+	for i, v := range s.mesh.Ordered() {
+		s.rank[v] = int32(i)
+		if s.numbers[v] > 0 {
+			s.vertices = append(s.vertices, v)
+			s.numbers[v] = int32(len(s.vertices))
+		}
+	}
 }
 
 // write writes one output.

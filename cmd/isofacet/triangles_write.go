@@ -12,8 +12,14 @@ import (
 	"isofacet/triangulate"
 )
 
-// id returns the name of the reading at a vertex.
-func (s *ordered) id(v triangulate.Vertex) string { return s.l.set.ID(int(s.inputs[v])) }
+// id returns the name of the reading at a vertex, empty for one that has none or came
+// from a line.
+func (s *ordered) id(v triangulate.Vertex) string {
+	if s.readings[v] < 0 {
+		return ""
+	}
+	return s.l.id(int(s.readings[v]))
+}
 
 // idValue is the id in GeoJSON: null where readings have none.
 func (s *ordered) idValue(v triangulate.Vertex) geojson.Value {
@@ -27,7 +33,7 @@ func (s *ordered) vertexTable(w io.Writer) error {
 	t := linecsv.NewVertices(w, s.tables())
 	err := inBatches(len(s.vertices), s.workers(), make([]linecsv.Vertex, min(len(s.vertices), rowsAtOnce)), t.WriteBatch, func(row *linecsv.Vertex, i int) {
 		v := s.vertices[i]
-		*row = linecsv.Vertex{Reading: s.id(v), XY: s.mesh.Position(v), Z: s.l.surface.Z()[v]}
+		*row = linecsv.Vertex{Reading: s.id(v), XY: s.mesh.Position(v), Z: s.surface.Z()[v]}
 	})
 	if err != nil {
 		return err
@@ -36,18 +42,39 @@ func (s *ordered) vertexTable(w io.Writer) error {
 }
 
 func (s *ordered) triangleTable(w io.Writer) error {
-	t := linecsv.NewTriangles(w, s.tables())
+	start := linecsv.NewTriangles
+	if s.l.hasLines() {
+		start = linecsv.NewTrianglesWithLines
+	}
+	t := start(w, s.tables())
 	err := inBatches(len(s.triangles), s.workers(), make([]linecsv.Triangle, min(len(s.triangles), rowsAtOnce)), t.WriteBatch, func(row *linecsv.Triangle, i int) {
 		for k, v := range s.mesh.Canonical(s.triangles[i], s.rank) {
-			row.Corners[k] = int(s.rank[v]) + 1
+			row.Corners[k] = int(s.numbers[v])
 		}
-		dzdx, dzdy := s.l.surface.Gradient(s.triangles[i])
+		dzdx, dzdy := s.surface.Gradient(s.triangles[i])
 		row.Slope, row.DownhillAzimuth = interp.Slope(dzdx, dzdy), interp.DownhillAzimuth(dzdx, dzdy)
+		if s.l.hasLines() {
+			row.Lines = s.lines(s.triangles[i])
+		}
 	})
 	if err != nil {
 		return err
 	}
 	return t.Close()
+}
+
+// lines names the lines that the edges of a triangle came from, beginning with the
+// edge from the corner that is written first.
+func (s *ordered) lines(t triangulate.Triangle) (names [3]string) {
+	first := s.mesh.Canonical(t, s.rank)[0]
+	for k, v := range s.mesh.Corners(t) {
+		if v == first {
+			for i := range names {
+				names[i] = s.l.lineAlong(t.HalfEdge((k + i) % 3))
+			}
+		}
+	}
+	return names
 }
 
 func (s *ordered) tables() linecsv.Options {
@@ -102,7 +129,7 @@ func (s *ordered) vertexFeatures(w *geojson.Writer) error {
 	return inBatches(n, s.workers(), blanks(n, blank), w.WriteBatch, func(f *geojson.Feature, i int) {
 		v := s.vertices[i]
 		f.Geometry.Shape = s.mesh.Position(v)
-		f.Geometry.Z[0] = s.l.surface.Z()[v]
+		f.Geometry.Z[0] = s.surface.Z()[v]
 		f.Properties[0].Value = geojson.Int(int64(i) + 1)
 		f.Properties[1].Value = s.idValue(v)
 	})
@@ -110,25 +137,37 @@ func (s *ordered) vertexFeatures(w *geojson.Writer) error {
 
 func (s *ordered) triangleFeatures(w *geojson.Writer) error {
 	blank := func() geojson.Feature {
-		return geojson.Feature{
+		f := geojson.Feature{
 			Geometry: geojson.Geometry{Shape: make(orb.Ring, 4), Z: make([]float64, 4)},
 			Properties: []geojson.Property{
 				{Name: "triangle"}, {Name: "id_1"}, {Name: "id_2"}, {Name: "id_3"}, {Name: "slope"}, {Name: "downhill_azimuth"},
 			},
 		}
+		if s.l.hasLines() {
+			f.Properties = append(f.Properties, geojson.Property{Name: "line_1"}, geojson.Property{Name: "line_2"}, geojson.Property{Name: "line_3"})
+		}
+		return f
 	}
 	n := len(s.triangles)
 	return inBatches(n, s.workers(), blanks(n, blank), w.WriteBatch, func(f *geojson.Feature, i int) {
 		t := s.triangles[i]
 		ring := f.Geometry.Shape.(orb.Ring)
 		for k, v := range s.mesh.Canonical(t, s.rank) {
-			ring[k], f.Geometry.Z[k] = s.mesh.Position(v), s.l.surface.Z()[v]
+			ring[k], f.Geometry.Z[k] = s.mesh.Position(v), s.surface.Z()[v]
 			f.Properties[1+k].Value = s.idValue(v)
 		}
 		ring[3], f.Geometry.Z[3] = ring[0], f.Geometry.Z[0]
-		dzdx, dzdy := s.l.surface.Gradient(t)
+		dzdx, dzdy := s.surface.Gradient(t)
 		f.Properties[0].Value = geojson.Int(int64(i) + 1)
 		f.Properties[4].Value = geojson.Fixed(interp.Slope(dzdx, dzdy), s.slope)
 		f.Properties[5].Value = geojson.Fixed(interp.DownhillAzimuth(dzdx, dzdy), s.azimuth)
+		if s.l.hasLines() {
+			for k, name := range s.lines(t) {
+				f.Properties[6+k].Value = geojson.Null()
+				if name != "" {
+					f.Properties[6+k].Value = geojson.String(name)
+				}
+			}
+		}
 	})
 }
