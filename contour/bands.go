@@ -71,7 +71,7 @@ func bands(ctx context.Context, src source, levels Levels, opt Options) ([]Band,
 	if err := src.outline(j.zs, n.addSide); err != nil {
 		return nil, err
 	}
-	polygons, err := n.polygons(ctx)
+	polygons, err := n.polygons(ctx, opt.workers())
 	if err != nil {
 		return nil, err
 	}
@@ -89,18 +89,16 @@ func bands(ctx context.Context, src source, levels Levels, opt Options) ([]Band,
 }
 
 // polygons returns the polygons of the bands between the paths.
-func (n *net) polygons(ctx context.Context) ([]bandPolygon, error) {
+func (n *net) polygons(ctx context.Context, workers int) ([]bandPolygon, error) {
 	if len(n.paths) == 0 {
 		return nil, nil
 	}
-	if _, err := n.splitAll(); err != nil {
-		return nil, err
-	}
-	if err := ctx.Err(); err != nil {
+	tree, _, err := n.splitAll(ctx, workers)
+	if err != nil {
 		return nil, err
 	}
 	chains, nodes := n.chains()
-	f, err := newFaces(n, chains, nodes)
+	f, err := newFaces(n, tree, chains, nodes)
 	if err != nil {
 		return nil, err
 	}

@@ -127,41 +127,60 @@ func meet(a, b *orb.Bound) bool {
 }
 
 // pairs calls use for pairs of runs whose boxes meet, of which at least one is fresh, each pair once and each fresh run
-// with itself.
-func (b *boxes) pairs(use func(p, q *run)) {
-	if len(b.nodes) > 0 {
-		b.within(int32(len(b.nodes)-1), use)
-	}
-}
-
-func (b *boxes) within(i int32, use func(p, q *run)) {
-	n := &b.nodes[i]
-	if !n.fresh {
+// with itself; w tells the calls of one goroutine from those of others.
+func (b *boxes) pairs(workers int, use func(w int, p, q *run)) {
+	if len(b.nodes) == 0 {
 		return
 	}
-	if n.below[1] < 0 {
-		use(&b.leaves[n.below[0]], &b.leaves[n.below[0]])
-		return
+	// Divide the work until there are some hundred tasks: within one box (twice the same), or between two.
+	tasks := [][2]int32{{int32(len(b.nodes) - 1), int32(len(b.nodes) - 1)}}
+	for workers > 1 && len(tasks) < 256 {
+		var finer [][2]int32
+		for _, t := range tasks {
+			b.divide(t[0], t[1], func(i, j int32) { finer = append(finer, [2]int32{i, j}) })
+		}
+		if len(finer) <= len(tasks) {
+			break // small
+		}
+		tasks = finer
 	}
-	b.within(n.below[0], use)
-	b.within(n.below[1], use)
-	b.between(n.below[0], n.below[1], use)
+	_ = inTasks(len(tasks), workers, func(w, k int) error {
+		b.pairsOf(tasks[k][0], tasks[k][1], func(p, q *run) { use(w, p, q) })
+		return nil
+	})
 }
 
-func (b *boxes) between(i, j int32, use func(p, q *run)) {
+// pairsOf calls use for the pairs of runs within box i = j or between boxes i and j.
+func (b *boxes) pairsOf(i, j int32, use func(p, q *run)) {
 	m, n := &b.nodes[i], &b.nodes[j]
-	if !m.fresh && !n.fresh || !meet(&m.bound, &n.bound) {
+	if m.below[1] < 0 && n.below[1] < 0 {
+		if (m.fresh || n.fresh) && meet(&m.bound, &n.bound) {
+			use(&b.leaves[m.below[0]], &b.leaves[n.below[0]])
+		}
 		return
 	}
+	b.divide(i, j, func(i, j int32) { b.pairsOf(i, j, use) })
+}
+
+// divide gives use the boxes that have to be compared in place of i and j; i = j for within one box. What is a leaf on
+// both sides stays.
+func (b *boxes) divide(i, j int32, use func(i, j int32)) {
+	m, n := &b.nodes[i], &b.nodes[j]
+	leafM, leafN := m.below[1] < 0, n.below[1] < 0
 	switch {
-	case m.below[1] < 0 && n.below[1] < 0:
-		use(&b.leaves[m.below[0]], &b.leaves[n.below[0]])
-	case n.below[1] < 0 || m.below[1] >= 0 && size(&m.bound) >= size(&n.bound):
-		b.between(m.below[0], j, use)
-		b.between(m.below[1], j, use)
+	case !m.fresh && !n.fresh || !meet(&m.bound, &n.bound):
+	case leafM && leafN:
+		use(i, j)
+	case i == j:
+		use(m.below[0], m.below[0])
+		use(m.below[1], m.below[1])
+		use(m.below[0], m.below[1])
+	case leafN || !leafM && size(&m.bound) >= size(&n.bound):
+		use(m.below[0], j)
+		use(m.below[1], j)
 	default:
-		b.between(i, n.below[0], use)
-		b.between(i, n.below[1], use)
+		use(i, n.below[0])
+		use(i, n.below[1])
 	}
 }
 

@@ -45,7 +45,7 @@ func (f *faces) origin(h int32) int32 {
 }
 
 // newFaces finds the faces between chains and their bands.
-func newFaces(n *net, chains []chain, nodes int) (*faces, error) {
+func newFaces(n *net, tree *boxes, chains []chain, nodes int) (*faces, error) {
 	f := &faces{net: n, chains: chains, around: make([][]int32, nodes)}
 	halves := int32(2 * len(chains))
 	for h := range halves {
@@ -57,7 +57,7 @@ func newFaces(n *net, chains []chain, nodes int) (*faces, error) {
 	}
 	f.link(func(int32) bool { return true })
 	f.goRound()
-	return f, f.nest()
+	return f, f.nest(tree)
 }
 
 // compareDirections orders halves that start at one node counter-clockwise, from the south (exclusive) on.
@@ -170,8 +170,7 @@ func (f *faces) westHalf(i, k int32) int32 {
 }
 
 // nest puts the edges of each face together, and finds which band each face has.
-func (f *faces) nest() error {
-	tree := newBoxes(f.net, nil)
+func (f *faces) nest(tree *boxes) error {
 	known := make([]bool, len(f.starts))
 	for _, g := range f.groups() {
 		outer := f.edge[g.half]

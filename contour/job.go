@@ -51,7 +51,10 @@ const unitPiecesLeast = 1 << 15
 func newJob(ctx context.Context, src source, levels Levels, opt Options) (*job, error) {
 	j := &job{src: src, levels: levels, zs: levels.values(), opt: opt}
 	// Marking passages takes a bit a slot: a unit is large enough to be worth it.
-	j.unitPieces = max(unitPiecesLeast, src.slots()>>8)
+	j.unitPieces = opt.unitPieces
+	if j.unitPieces <= 0 {
+		j.unitPieces = max(unitPiecesLeast, src.slots()>>8)
+	}
 	src.rank(j.zs, opt.workers())
 	if err := ctx.Err(); err != nil {
 		return nil, err
@@ -65,19 +68,27 @@ func newJob(ctx context.Context, src source, levels Levels, opt Options) (*job, 
 	return j, nil
 }
 
+// crossed is a cell that the levels of a span cross.
+type crossed struct {
+	cell int32
+	span
+}
+
 // list fills seeds, and returns the passages on the outline at which lines begin.
 func (j *job) list(ctx context.Context) ([]passage, error) {
 	n, levels := j.src.cells(), len(j.levels)
 	workers := max(1, min(j.opt.workers(), n/parallelLeast))
 	count := make([][]int64, workers) // of every level, by range of cells
+	found := make([][]crossed, workers)
 	outline := make([][]passage, workers)
 	used := inRanges(n, workers, func(w, from, to int) {
+		found[w] = j.findCrossed(from, to, &outline[w])
 		c := make([]int64, levels+1)
-		j.eachBlock(from, to, &outline[w], func(_ int, s span) {
-			c[s.lo]++
-			c[s.hi]--
-		})
-		for k := 1; k <= levels; k++ { // from where spans begin and end to how many cover
+		for _, f := range found[w] { // where spans begin and end
+			c[f.lo]++
+			c[f.hi]--
+		}
+		for k := 1; k <= levels; k++ { // how many cover
 			c[k] += c[k-1]
 		}
 		count[w] = c
@@ -100,30 +111,33 @@ func (j *job) list(ctx context.Context) ([]passage, error) {
 		return nil, &PiecesError{total, most}
 	}
 	j.seeds = make([]int32, total)
-	inRanges(n, workers, func(w, from, to int) {
+	err := inTasks(used, used, func(_, w int) error {
 		at := count[w]
-		j.eachBlock(from, to, nil, func(cell int, s span) {
-			for k := s.lo; k < s.hi; k++ {
-				j.seeds[at[k]] = int32(cell)
+		for _, f := range found[w] {
+			for k := f.lo; k < f.hi; k++ {
+				j.seeds[at[k]] = f.cell
 				at[k]++
 			}
-		})
+		}
+		return ctx.Err()
 	})
-	return slices.Concat(outline...), ctx.Err()
+	return slices.Concat(outline...), err
 }
 
-// eachBlock calls use for the cells from..to that some level crosses.
-func (j *job) eachBlock(from, to int, outline *[]passage, use func(cell int, s span)) {
+// findCrossed returns the cells from..to that some level crosses, in order.
+func (j *job) findCrossed(from, to int, outline *[]passage) []crossed {
+	var found []crossed
 	var block [512]span
 	for ; from < to; from += len(block) {
 		b := block[:min(len(block), to-from)]
 		j.src.spans(b, from, outline)
 		for i, s := range b {
 			if s.lo < s.hi {
-				use(from+i, s)
+				found = append(found, crossed{int32(from + i), s})
 			}
 		}
 	}
+	return found
 }
 
 // listStarts sorts the passages on the outline by level.

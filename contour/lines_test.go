@@ -2,6 +2,8 @@ package contour
 
 import (
 	"context"
+	"errors"
+	"fmt"
 	"slices"
 	"testing"
 
@@ -11,6 +13,7 @@ import (
 	"isofacet/grid/decimal"
 	"isofacet/interp"
 	"isofacet/triangulate"
+	"isofacet/triangulate/pointsets"
 )
 
 func levelAt(z float64) Level {
@@ -22,29 +25,34 @@ func levelAt(z float64) Level {
 }
 
 // eachSample runs check on many samples of every kind.
-func eachSample(t *testing.T, check func(t *rapid.T, s *interp.Surface, levels Levels)) {
-	for name, draw := range samples {
-		t.Run(name, func(t *testing.T) {
-			rapid.Check(t, func(rt *rapid.T) {
-				in := draw(rt).oneValue()
-				m, err := triangulate.Delaunay(context.Background(), in.pts, triangulate.Options{Workers: 1})
-				if err != nil {
-					rt.Fatal(err)
-				}
-				s, err := interp.FromInputs(m, in.z)
-				if err != nil {
-					rt.Fatal(err)
-				}
-				check(rt, s, in.levelSet())
-			})
-		})
+func eachSample(t *testing.T, check func(s *interp.Surface, levels Levels) error) {
+	for name := range samples {
+		t.Run(name, func(t *testing.T) { eachOf(t, name, check) })
 	}
+}
+
+// eachOf runs check on many samples of one kind.
+func eachOf(t *testing.T, name string, check func(s *interp.Surface, levels Levels) error) {
+	rapid.Check(t, func(rt *rapid.T) {
+		in := samples[name](rt).oneValue()
+		m, err := triangulate.Delaunay(context.Background(), in.pts, triangulate.Options{Workers: 1})
+		if err != nil {
+			rt.Fatal(err)
+		}
+		s, err := interp.FromInputs(m, in.z)
+		if err != nil {
+			rt.Fatal(err)
+		}
+		if err := check(s, in.levelSet()); err != nil {
+			rt.Fatal(err)
+		}
+	})
 }
 
 // TestLinesAreValidP5 checks the form of lines on hard surfaces: against the oracle, and by the half-edges that the
 // following itself passed.
 func TestLinesAreValidP5(t *testing.T) {
-	eachSample(t, func(t *rapid.T, s *interp.Surface, levels Levels) {
+	eachSample(t, func(s *interp.Surface, levels Levels) error {
 		passed := make([][]triangulate.HalfEdge, len(levels))
 		src := newTriangles(s)
 		src.probe = &probe{
@@ -54,23 +62,21 @@ func TestLinesAreValidP5(t *testing.T) {
 		}
 		probed, _, err := collect(context.Background(), src, levels, Options{Workers: 1})
 		if err != nil {
-			t.Fatal(err)
+			return err
 		}
 		for k, l := range levels {
 			if err := checkPassing(s, l.Z, passed[k]); err != nil {
-				t.Fatalf("level %v: %v", l.Z, err)
+				return fmt.Errorf("level %v: %w", l.Z, err)
 			}
 		}
 		lines, r, err := Lines(context.Background(), s, levels, Options{})
 		if err != nil {
-			t.Fatal(err)
-		}
-		if err := checkLines(s, levels, lines, r); err != nil {
-			t.Fatal(err)
+			return err
 		}
 		if !sameLines(lines, probed) {
-			t.Fatal("lines differ when looked into")
+			return errors.New("lines differ when looked into")
 		}
+		return checkLines(s, levels, lines, r)
 	})
 }
 
@@ -141,55 +147,54 @@ func TestMutationsAreNoticed(t *testing.T) {
 
 // TestOneAnswerP2 compares lines and bands of shuffled readings and of several numbers of workers, bit for bit.
 func TestOneAnswerP2(t *testing.T) {
-	eachSample(t, func(t *rapid.T, s *interp.Surface, levels Levels) {
+	seed := uint64(0)
+	eachSample(t, func(s *interp.Surface, levels Levels) error {
 		m := s.Mesh()
-		n := m.NumVertices()
-		order := rapid.Permutation(indices(n)).Draw(t, "order")
-		pts, z := make([]orb.Point, n), make([]float64, n)
-		for i, v := range order {
-			pts[i], z[i] = m.Position(triangulate.Vertex(v)), s.Z()[v]
+		order := make([]orb.Point, m.NumVertices()) // numbers in x, to be shuffled
+		for i := range order {
+			order[i][0] = float64(i)
+		}
+		seed++
+		pointsets.Shuffle(order, seed)
+		pts, z := make([]orb.Point, len(order)), make([]float64, len(order))
+		for i, o := range order {
+			pts[i], z[i] = m.Position(triangulate.Vertex(o[0])), s.Z()[int(o[0])]
 		}
 		m2, err := triangulate.Delaunay(context.Background(), pts, triangulate.Options{})
 		if err != nil {
-			t.Fatal(err)
+			return err
 		}
 		s2, err := interp.FromInputs(m2, z)
 		if err != nil {
-			t.Fatal(err)
+			return err
 		}
 		want, wantReport, err := Lines(context.Background(), s, levels, Options{Workers: 1})
 		if err != nil {
-			t.Fatal(err)
+			return err
 		}
 		wantBands, err := Bands(context.Background(), s, levels, Options{Workers: 1})
 		if err != nil {
-			t.Fatal(err)
+			return err
 		}
 		for _, workers := range []int{1, 2, 3, 8} {
-			got, r, err := Lines(context.Background(), s2, levels, Options{Workers: workers})
+			opt := Options{Workers: workers, unitPieces: int64(workers)} // many units, so that lines are joined
+			got, r, err := Lines(context.Background(), s2, levels, opt)
 			if err != nil {
-				t.Fatal(err)
+				return err
 			}
 			if !sameLines(got, want) || r.WithoutLength != wantReport.WithoutLength {
-				t.Fatalf("%d workers, shuffled: other lines", workers)
+				return fmt.Errorf("%d workers, shuffled: other lines", workers)
 			}
-			bands, err := Bands(context.Background(), s2, levels, Options{Workers: workers})
+			bands, err := Bands(context.Background(), s2, levels, opt)
 			if err != nil {
-				t.Fatal(err)
+				return err
 			}
 			if !sameBands(bands, wantBands) {
-				t.Fatalf("%d workers, shuffled: other bands", workers)
+				return fmt.Errorf("%d workers, shuffled: other bands", workers)
 			}
 		}
+		return nil
 	})
-}
-
-func indices(n int) []int {
-	out := make([]int, n)
-	for i := range out {
-		out[i] = i
-	}
-	return out
 }
 
 func sameBands(a, b []Band) bool {

@@ -2,6 +2,7 @@ package contour
 
 import (
 	"cmp"
+	"context"
 	"fmt"
 	"math"
 	"slices"
@@ -38,29 +39,33 @@ type split struct {
 	at      orb.Point
 }
 
-// splitAll splits segments until any two have at most ends in common or are the same. It returns how many splits
-// that took.
-func (n *net) splitAll() (int, error) {
-	count := 0
+// splitAll splits segments until any two have at most ends in common or are the same. It returns the boxes of the
+// segments as they are then, and how many splits it took.
+func (n *net) splitAll(ctx context.Context, workers int) (tree *boxes, count int, err error) {
 	var fresh func(int) bool
+	var splits []split
 	for range roundsMost {
-		splits := n.findSplits(fresh)
+		tree = newBoxes(n, fresh)
+		splits = n.findSplits(tree, workers)
+		if err := ctx.Err(); err != nil {
+			return nil, count, err
+		}
 		if len(splits) == 0 {
-			return count, nil
+			return tree, count, nil
 		}
 		count += len(splits)
 		changed := n.insert(splits)
 		fresh = func(path int) bool { return changed[path] }
 	}
-	at := n.findSplits(fresh)[0].at
-	return count, fmt.Errorf("bands near (%v, %v): lines still cross after %d rounds", at[0], at[1], roundsMost)
+	at := splits[0].at
+	return nil, count, fmt.Errorf("bands near (%v, %v): lines still cross after %d rounds", at[0], at[1], roundsMost)
 }
 
-// findSplits compares the segments of fresh paths with all. The splits come ordered by segment and along it, without
-// repeats.
-func (n *net) findSplits(fresh func(path int) bool) []split {
-	var found []split
-	newBoxes(n, fresh).pairs(func(p, q *run) {
+// findSplits compares fresh segments with all. The splits come ordered by segment and along it, without repeats.
+func (n *net) findSplits(tree *boxes, workers int) []split {
+	parts := make([][]split, workers)
+	tree.pairs(workers, func(w int, p, q *run) {
+		found := parts[w]
 		for i := p.first; i < p.last; i++ {
 			j := q.first
 			if p == q {
@@ -70,7 +75,9 @@ func (n *net) findSplits(fresh func(path int) bool) []split {
 				found = n.compare(found, i, j)
 			}
 		}
+		parts[w] = found
 	})
+	found := slices.Concat(parts...)
 	slices.SortFunc(found, n.compareSplits)
 	return slices.Compact(found)
 }

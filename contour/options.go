@@ -19,6 +19,8 @@ type Options struct {
 	Workers int
 	// Progress, when not nil, is told now and then, from one goroutine at a time, how many pieces are done.
 	Progress func(done, total int64)
+
+	unitPieces int64 // for tests: pieces to a unit of work; 0 means as many as are worth it
 }
 
 func (o Options) workers() int {

@@ -92,9 +92,9 @@ func oracleLines(s *interp.Surface, level Level) (lines []Line, withoutLength in
 				continue
 			}
 			points, closed := follow(h)
-			points = slowReduce(points, false)
-			if !closed && len(points) > 1 && points[0] == points[len(points)-1] {
-				closed = true
+			if !closed {
+				points = slowReduce(points, false)
+				closed = len(points) > 1 && points[0] == points[len(points)-1]
 			}
 			if closed {
 				points = slowReduce(points, true)

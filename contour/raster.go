@@ -97,9 +97,6 @@ func (s *raster) spans(dst []span, first int, outline *[]passage) {
 			continue
 		}
 		dst[i] = span{min(r[0], r[1], r[2], r[3]), max(r[0], r[1], r[2], r[3])}
-		if outline == nil {
-			continue
-		}
 		for side := range 4 {
 			if p := passage(4*(first+i) + side); r[side] > r[(side+1)%4] && s.begins(p) {
 				*outline = append(*outline, p)

@@ -98,8 +98,8 @@ type source interface {
 	slots() int64
 	// rank tells, with the levels' values rising, which of them every vertex or node is above.
 	rank(zs []float64, workers int)
-	// spans stores the spans of the cells from number first on; with outline not nil it appends the passages on
-	// the outline at which some level's line begins.
+	// spans stores the spans of the cells from number first on, and appends to outline the passages on the outline at
+	// which some level's line begins.
 	spans(dst []span, first int, outline *[]passage)
 	// side returns the levels whose lines enter at p.
 	side(p passage) span

@@ -52,7 +52,7 @@ func (s *triangles) spans(dst []span, first int, outline *[]passage) {
 		h := triangulate.Triangle(first + i).HalfEdge(0)
 		a, b, c := s.ranks[s.mesh.Origin(h)], s.ranks[s.mesh.Origin(h+1)], s.ranks[s.mesh.Origin(h+2)]
 		dst[i] = span{min(a, b, c), max(a, b, c)}
-		if outline != nil && a|b|c != 0 { // all below every level: no line begins
+		if a|b|c != 0 { // all below every level: no line begins
 			for e := h; e < h+3; e++ {
 				if s.mesh.Twin(e) == triangulate.NoHalfEdge {
 					if sp := s.side(passage(e)); sp.lo < sp.hi {

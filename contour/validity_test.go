@@ -215,8 +215,7 @@ func checkBands(s *interp.Surface, levels Levels, bands []Band) error {
 	if off, most := math.Abs(total.Value()/2-area), 1e-12*area+perimeter*ulp(largest); off > most {
 		return fmt.Errorf("areas add up to %v, the surface has %v: off by %v, allowed %v", total.Value()/2, area, off, most)
 	}
-	_, err := checkReadings(s, levels, bands, numbers, largest)
-	return err
+	return checkReadings(s, levels, bands, numbers, largest)
 }
 
 // exactArea returns the area of s, accumulated exactly, the length of its outline, and its largest coordinate.
@@ -237,19 +236,21 @@ func exactArea(s *interp.Surface) (area, perimeter, largest float64) {
 	return sum.Value() / 2, perimeter, largest
 }
 
-// checkReadings looks for the polygon that holds each reading's place, or comes within three steps between doubles of it:
-// one of the reading's own band, or of the band below for a value equal to a level (where the level is only just reached,
-// the band above has no area). Failing that, bands are narrower at the reading than coordinates can show: one of a
-// band that the surface has within that distance. If there is no polygon at all, the surface itself must be that thin there.
-func checkReadings(s *interp.Surface, levels Levels, bands []Band, numbers []int, largest float64) (narrow int, err error) {
+// checkReadings looks for the polygon that holds each reading's place, or comes within a few steps between doubles of it:
+// three, and more in a corner of the outline that is thinner than two steps at first. It is one of the reading's own band, or
+// of the band below for a value equal to a level (where the level is only just reached, the band above has no area).
+// Failing that, bands are narrower at the reading than coordinates can show: one of a band that the surface has
+// within that distance, give or take what the borders of bands are rounded by. Where all triangles at the reading are thinner
+// than three steps, there need be none.
+func checkReadings(s *interp.Surface, levels Levels, bands []Band, numbers []int, largest float64) error {
 	m := s.Mesh()
-	within := 3 * ulp(largest)
 	zs := levels.values()
 	for v := range m.Vertices() {
 		p, z := m.Position(v), s.Z()[v]
 		if m.NumTriangles() == 0 {
-			return 0, nil
+			return nil
 		}
+		within := ulp(largest) * (3 + 2/math.Sin(min(angleAt(m, v), math.Pi/2)))
 		want := below(zs, z, 0)
 		equal := want > 0 && zs[want-1] == z
 		found, others := false, []int(nil)
@@ -266,51 +267,64 @@ func checkReadings(s *interp.Surface, levels Levels, bands []Band, numbers []int
 		if found {
 			continue
 		}
-		narrow++
-		low, high, thick := around(s, p, within)
-		ok := !thick && len(others) == 0
+		found = len(others) == 0 && thin(m, v, 3*ulp(largest))
+		low, high := around(s, p, within+2*ulp(largest))
 		for _, n := range others {
-			ok = ok || below(zs, low, 0) <= n && n <= below(zs, high, 0)
+			found = found || below(zs, low, 0) <= n && n <= below(zs, high, 0)
 		}
-		if !ok {
-			return 0, fmt.Errorf("reading %v at (%v, %v), band %d: in polygons of bands %v", z, p[0], p[1], want, others)
+		if !found {
+			return fmt.Errorf("reading %v at (%v, %v), band %d: in polygons of bands %v", z, p[0], p[1], want, others)
 		}
 	}
-	return narrow, nil
+	return nil
 }
 
-// around returns the range of values of s within some distance of p, and whether a triangle that comes so near is higher
-// than the distance over its longest side.
-func around(s *interp.Surface, p orb.Point, within float64) (low, high float64, thick bool) {
-	m := s.Mesh()
-	low, high = math.Inf(1), math.Inf(-1)
-	add := func(z float64) { low, high = min(low, z), max(high, z) }
-	for t := range m.Triangles() {
-		c := m.Corners(t)
-		longest, meets := 0.0, false
-		for i := range c {
-			a, b := m.Position(c[i]), m.Position(c[(i+1)%3])
-			za, zb := s.Z()[c[i]], s.Z()[c[(i+1)%3]]
-			longest = max(longest, math.Hypot(b[0]-a[0], b[1]-a[1]))
-			if distance(a, b, p) > within {
-				continue
-			}
-			meets = true
-			const steps = 64 // along the side, those within the distance
-			length := math.Hypot(b[0]-a[0], b[1]-a[1])
-			at := ((p[0]-a[0])*(b[0]-a[0]) + (p[1]-a[1])*(b[1]-a[1])) / length
-			for k := range steps + 1 {
-				f := (at + within*(2*float64(k)/steps-1)) / length
-				f = max(0, min(1, f))
-				add(za + f*(zb-za))
-			}
-		}
-		if meets {
-			a, b, d := m.Position(c[0]), m.Position(c[1]), m.Position(c[2])
-			thick = thick || exact.Area2(a[0], a[1], b[0], b[1], d[0], d[1])/longest > within
+// angleAt returns the angle of the surface at a vertex, 2 pi inside.
+func angleAt(m *triangulate.Mesh, v triangulate.Vertex) float64 {
+	angle := 0.0
+	p := m.Position(v)
+	for h := range m.Around(v) {
+		q, r := m.Position(m.Dest(h)), m.Position(m.Apex(h))
+		area := exact.Area2(p[0], p[1], q[0], q[1], r[0], r[1])
+		dot := (q[0]-p[0])*(r[0]-p[0]) + (q[1]-p[1])*(r[1]-p[1])
+		angle += math.Atan2(area, dot)
+	}
+	return angle
+}
+
+// thin reports whether all triangles at v are at most so high over their longest sides.
+func thin(m *triangulate.Mesh, v triangulate.Vertex, most float64) bool {
+	p := m.Position(v)
+	for h := range m.Around(v) {
+		q, r := m.Position(m.Dest(h)), m.Position(m.Apex(h))
+		longest := max(math.Hypot(q[0]-p[0], q[1]-p[1]), math.Hypot(r[0]-p[0], r[1]-p[1]), math.Hypot(r[0]-q[0], r[1]-q[1]))
+		if exact.Area2(p[0], p[1], q[0], q[1], r[0], r[1]) > most*longest {
+			return false
 		}
 	}
-	return low, high, thick
+	return true
+}
+
+// around returns the range of values of s on the sides of triangles within some distance of p.
+func around(s *interp.Surface, p orb.Point, within float64) (low, high float64) {
+	m := s.Mesh()
+	low, high = math.Inf(1), math.Inf(-1)
+	for h := range triangulate.HalfEdge(m.NumHalfEdges()) {
+		a, b := m.Position(m.Origin(h)), m.Position(m.Dest(h))
+		if distance(a, b, p) > within {
+			continue
+		}
+		za, zb := s.Z()[m.Origin(h)], s.Z()[m.Dest(h)]
+		const steps = 64 // along the side, those within the distance
+		length := math.Hypot(b[0]-a[0], b[1]-a[1])
+		at := ((p[0]-a[0])*(b[0]-a[0]) + (p[1]-a[1])*(b[1]-a[1])) / length
+		for k := range steps + 1 {
+			f := (at + within*(2*float64(k)/steps-1)) / length
+			z := za + max(0, min(1, f))*(zb-za)
+			low, high = min(low, z), max(high, z)
+		}
+	}
+	return low, high
 }
 
 // holds reports whether q lies in the polygon, on its border, or within a distance of it.
