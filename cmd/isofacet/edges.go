@@ -498,3 +498,40 @@ func (l *loaded) shown() *interp.Surface {
 func (l *loaded) contains(p orb.Point) bool {
 	return l.drawn.region == nil || l.drawn.region.Contains(p)
 }
+
+// ids returns what names a vertex of the shown surface: the id of its reading, or
+// nothing where a line or a cut made it.
+func (l *loaded) ids() func(v triangulate.Vertex) string {
+	inputs := l.surface.Mesh().Inputs()
+	if l.drawn.cut == nil {
+		return func(v triangulate.Vertex) string { return l.id(int(inputs[v])) }
+	}
+	old := l.drawn.cut.Surface.Mesh().Inputs()
+	return func(v triangulate.Vertex) string {
+		if k := int(old[v]); k < len(inputs) {
+			return l.id(int(inputs[k]))
+		}
+		return ""
+	}
+}
+
+// lineAlong returns the name of the line that an edge of the shown surface came
+// from, of several the first by name; nothing for an edge of no line.
+func (l *loaded) lineAlong(h triangulate.HalfEdge) string {
+	var segments []int32
+	if cut := l.drawn.cut; cut != nil {
+		segments = cut.SegmentsAlong(h)
+	} else {
+		segments = l.surface.Mesh().SegmentsAlong(h)
+	}
+	name := ""
+	for _, s := range segments {
+		if n := l.drawn.lines[l.drawn.report.LineOf[s]].Name; name == "" || n < name {
+			name = n
+		}
+	}
+	return name
+}
+
+// hasLines tells whether there are breaklines.
+func (l *loaded) hasLines() bool { return len(l.drawn.lines) > 0 }

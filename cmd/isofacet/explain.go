@@ -42,6 +42,7 @@ func explain(err error) (status.Code, []string) {
 // explanations is the table of errors, the most telling first.
 var explanations = []func(error) (code status.Code, hint string, ok bool){
 	explainTooBig,
+	explainLines,
 	explainReadings,
 	explainGrid,
 	explainRaster,

@@ -69,7 +69,7 @@ func TestTables(t *testing.T) {
 			linecsv.Vertex{"P17", orb.Point{1.25, 2}, 3}, linecsv.Vertex{"", orb.Point{-1, 0}, 0.0005}, linecsv.Vertex{" x", orb.Point{0, 0}, 0}),
 			"vertex,reading,x,y,z\n1,P17,1.25,2,3.000\n2,,-1,0,0.001\n3,\" x\",0,0,0.000\n"},
 		{"triangles", text(t, func(b *bytes.Buffer) *linecsv.Writer[linecsv.Triangle] { return linecsv.NewTriangles(b, full) },
-			linecsv.Triangle{[3]int{1, 2, 3}, 0.05, 270}, linecsv.Triangle{[3]int{2, 4, 3}, 0, math.NaN()}),
+			linecsv.Triangle{Corners: [3]int{1, 2, 3}, Slope: 0.05, DownhillAzimuth: 270}, linecsv.Triangle{Corners: [3]int{2, 4, 3}, DownhillAzimuth: math.NaN()}),
 			"triangle,vertex_1,vertex_2,vertex_3,slope,downhill_azimuth\n1,1,2,3,0.05,270.0\n2,2,4,3,0,\n"},
 	} {
 		if c.got != c.want {
@@ -251,4 +251,17 @@ type counter int
 func (c *counter) Write(p []byte) (int, error) {
 	*c += counter(len(p))
 	return len(p), nil
+}
+
+func TestTrianglesWithLines(t *testing.T) {
+	var b bytes.Buffer
+	w := linecsv.NewTrianglesWithLines(&b, linecsv.Options{SlopeDecimals: 2, AzimuthDecimals: 0})
+	err := w.WriteBatch([]linecsv.Triangle{{Corners: [3]int{1, 2, 3}, Slope: 0.5, DownhillAzimuth: 90, Lines: [3]string{"", "toe, east", "crest"}}})
+	if err == nil {
+		err = w.Close()
+	}
+	const want = "triangle,vertex_1,vertex_2,vertex_3,slope,downhill_azimuth,line_1,line_2,line_3\n1,1,2,3,0.50,90,,\"toe, east\",crest\n"
+	if err != nil || b.String() != want {
+		t.Errorf("got %q, %v; want %q", b.String(), err, want)
+	}
 }

@@ -149,6 +149,9 @@ type Triangle struct {
 	Corners         [3]int // numbers of vertices, counting from 1, counter-clockwise
 	Slope           float64
 	DownhillAzimuth float64 // degrees clockwise from north; NaN on a flat
+	// Lines names the line that each edge came from, that from the first corner to
+	// the second first; "" for none. Written only by NewTrianglesWithLines.
+	Lines [3]string
 }
 
 // NewTriangles returns a Writer of the table triangle,vertex_1,vertex_2,vertex_3,slope,downhill_azimuth.
@@ -156,6 +159,25 @@ func NewTriangles(w io.Writer, opt Options) *Writer[Triangle] {
 	return newWriter(w, opt, table[Triangle]{
 		name: "triangle", header: "triangle,vertex_1,vertex_2,vertex_3,slope,downhill_azimuth", weight: func(*Triangle) int { return 1 }, rows: triangleRow,
 	})
+}
+
+// NewTrianglesWithLines is NewTriangles with three more columns, line_1,line_2,line_3.
+func NewTrianglesWithLines(w io.Writer, opt Options) *Writer[Triangle] {
+	return newWriter(w, opt, table[Triangle]{
+		name: "triangle", header: "triangle,vertex_1,vertex_2,vertex_3,slope,downhill_azimuth,line_1,line_2,line_3", weight: func(*Triangle) int { return 1 }, rows: triangleRowWithLines,
+	})
+}
+
+func triangleRowWithLines(dst []byte, opt *Options, t *Triangle, number int) ([]byte, *WriteError) {
+	dst, err := triangleRow(dst, opt, t, number)
+	if err != nil {
+		return dst, err
+	}
+	dst = dst[:len(dst)-1] // the line end
+	for _, name := range t.Lines {
+		dst = appendText(append(dst, ','), name)
+	}
+	return append(dst, '\n'), nil
 }
 
 func triangleRow(dst []byte, opt *Options, t *Triangle, number int) ([]byte, *WriteError) {
