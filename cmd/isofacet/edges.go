@@ -458,12 +458,12 @@ func enclosed(rings []orb.Ring) float64 {
 			twice += float64((a[0]-r[0][0])*(b[1]-r[0][1])) - float64((a[1]-r[0][1])*(b[0]-r[0][0]))
 		}
 		if outer {
-			total += math.Abs(twice) / 2
+			total += math.Abs(twice)
 		} else {
-			total -= math.Abs(twice) / 2
+			total -= math.Abs(twice)
 		}
 	}
-	return total
+	return total / 2
 }
 
 // ringError names the ring of an error by its file.
@@ -497,22 +497,6 @@ func (l *loaded) shown() *interp.Surface {
 // contains tells whether boundary and voids leave a place in.
 func (l *loaded) contains(p orb.Point) bool {
 	return l.drawn.region == nil || l.drawn.region.Contains(p)
-}
-
-// ids returns what names a vertex of the shown surface: the id of its reading, or
-// nothing where a line or a cut made it.
-func (l *loaded) ids() func(v triangulate.Vertex) string {
-	inputs := l.surface.Mesh().Inputs()
-	if l.drawn.cut == nil {
-		return func(v triangulate.Vertex) string { return l.id(int(inputs[v])) }
-	}
-	old := l.drawn.cut.Surface.Mesh().Inputs()
-	return func(v triangulate.Vertex) string {
-		if k := int(old[v]); k < len(inputs) {
-			return l.id(int(inputs[k]))
-		}
-		return ""
-	}
 }
 
 // lineAlong returns the name of the line that an edge of the shown surface came
