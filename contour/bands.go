@@ -50,11 +50,24 @@ func RasterBands(ctx context.Context, g *grid.Grid, levels Levels, opt Options) 
 }
 
 func bands(ctx context.Context, src source, levels Levels, opt Options) ([]Band, error) {
+	n, err := netOf(ctx, src, levels, opt)
+	if err != nil {
+		return nil, err
+	}
+	polygons, err := n.polygons(ctx, opt.workers())
+	if err != nil {
+		return nil, err
+	}
+	return bandsFrom(polygons, levels), nil
+}
+
+// netOf returns the net of all lines and the outline.
+func netOf(ctx context.Context, src source, levels Levels, opt Options) (*net, error) {
 	j, err := newJob(ctx, src, levels, opt)
 	if err != nil {
 		return nil, err
 	}
-	var n net
+	n := new(net)
 	k := 0
 	err = j.run(ctx, func(t traced) error {
 		for _, l := range t.lines {
@@ -68,13 +81,11 @@ func bands(ctx context.Context, src source, levels Levels, opt Options) ([]Band,
 	if err != nil {
 		return nil, err
 	}
-	if err := src.outline(j.zs, n.addSide); err != nil {
-		return nil, err
-	}
-	polygons, err := n.polygons(ctx, opt.workers())
-	if err != nil {
-		return nil, err
-	}
+	return n, src.outline(j.zs, n.addSide)
+}
+
+// bandsFrom adds the levels to polygons.
+func bandsFrom(polygons []bandPolygon, levels Levels) []Band {
 	out := make([]Band, len(polygons))
 	for i, p := range polygons {
 		if p.band > 0 {
@@ -85,7 +96,7 @@ func bands(ctx context.Context, src source, levels Levels, opt Options) ([]Band,
 		}
 		out[i].Polygon = p.rings
 	}
-	return out, nil
+	return out
 }
 
 // polygons returns the polygons of the bands between the paths.
