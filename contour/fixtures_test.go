@@ -136,7 +136,7 @@ func TestValidityFixtures(t *testing.T) {
 				t.Fatal(err)
 			}
 			area, perimeter, largest := exactArea(s)
-			out := fixture{in.pts, in.z, in.levels, area, 1e-12*area + perimeter*ulp(largest), nil}
+			out := fixture{in.pts, in.z, in.levels, area, float64(1e-12*area) + float64(perimeter*ulp(largest)), nil}
 			for _, b := range bands {
 				out.Bands = append(out.Bands, bandOfFile{bandNumber(b, levels), b.Polygon})
 			}

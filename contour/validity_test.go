@@ -228,7 +228,8 @@ func exactArea(s *interp.Surface) (area, perimeter, largest float64) {
 		for i := range 3 {
 			if h := t.HalfEdge(i); m.Twin(h) == triangulate.NoHalfEdge {
 				p, q := m.Position(m.Origin(h)), m.Position(m.Dest(h))
-				perimeter += math.Hypot(q[0]-p[0], q[1]-p[1])
+				dx, dy := q[0]-p[0], q[1]-p[1]
+				perimeter += math.Sqrt(float64(dx*dx) + float64(dy*dy))
 			}
 			largest = max(largest, math.Abs(m.Position(c[i])[0]), math.Abs(m.Position(c[i])[1]))
 		}
