@@ -101,7 +101,7 @@ func (p *program) find(l *loaded, w *writing) *finding {
 		reasons: [3]string{cell.Reason, interval.Reason, edge.Reason},
 	}
 	if m.NumTriangles() == 0 {
-		p.report.Warn("no-surface", "no triangles: "+cell.Reason)
+		p.report.Warn("no-surface", cell.Reason)
 		return f
 	}
 	p.warnOfLongOutline(l, edge)
