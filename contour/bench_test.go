@@ -7,6 +7,7 @@ import (
 
 	"github.com/paulmach/orb"
 
+	"isofacet/grid"
 	"isofacet/grid/decimal"
 	"isofacet/interp"
 	"isofacet/triangulate"
@@ -92,5 +93,58 @@ func BenchmarkDelaunay(b *testing.B) {
 			}
 		}
 		b.ReportMetric(1e6*float64(b.N)/b.Elapsed().Seconds(), "points/s")
+	})
+}
+
+func BenchmarkBands(b *testing.B) {
+	for _, d := range []struct {
+		name    string
+		n       int
+		heights func([]orb.Point) []float64
+	}{{"smooth/n=1e6", 1e6, smoothHeights}, {"noise/n=1e5", 1e5, noiseHeights}} {
+		b.Run(d.name, func(b *testing.B) {
+			pts := pointsets.Uniform(d.n, 1)
+			s, levels := surfaceOf(b, pts, d.heights(pts), 0), twentyLevels(b)
+			points := 0
+			b.ReportAllocs()
+			for b.Loop() {
+				bands, err := Bands(context.Background(), s, levels, Options{})
+				if err != nil {
+					b.Fatal(err)
+				}
+				points = 0
+				for _, band := range bands {
+					for _, ring := range band.Polygon {
+						points += len(ring)
+					}
+				}
+			}
+			b.ReportMetric(float64(points)*float64(b.N)/b.Elapsed().Seconds(), "points/s")
+		})
+	}
+}
+
+func BenchmarkRasterLines(b *testing.B) {
+	b.Run("smooth/n=4e6", func(b *testing.B) {
+		step := decimal.MustParse("0.0005")
+		g, err := grid.New(grid.Spec{CellX: step, CellY: step, Cols: 2000, Rows: 2000})
+		if err != nil {
+			b.Fatal(err)
+		}
+		var places []orb.Point
+		for _, y := range g.Spec.Ys() {
+			for _, x := range g.Spec.Xs() {
+				places = append(places, orb.Point{x, y})
+			}
+		}
+		g.Values = smoothHeights(places)
+		levels := twentyLevels(b)
+		var r Report
+		for b.Loop() {
+			if r, err = EachRasterLine(context.Background(), g, levels, Options{}, func(Line) error { return nil }); err != nil {
+				b.Fatal(err)
+			}
+		}
+		b.ReportMetric(float64(r.Pieces)*float64(b.N)/b.Elapsed().Seconds(), "pieces/s")
 	})
 }

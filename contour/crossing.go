@@ -38,6 +38,12 @@ func crossing(lx, ly, lz, ux, uy, uz, level float64) orb.Point {
 	t := (level - lz) / (uz - lz)
 	x := math.FMA(t, ux-lx, lx)
 	y := math.FMA(t, uy-ly, ly)
-	// lx <= ux; y may fall or rise.
-	return orb.Point{min(x, ux), max(min(y, max(ly, uy)), min(ly, uy))}
+	// Rounding may overshoot the larger end, never the smaller, where it starts from.
+	if x > ux {
+		x = ux
+	}
+	if ly <= uy && y > uy || ly >= uy && y < uy {
+		y = uy
+	}
+	return orb.Point{x, y}
 }

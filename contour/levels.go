@@ -162,11 +162,8 @@ func (ls Levels) Within(low, high float64) error {
 	return &RangeError{Low: low, High: high, Levels: len(ls)}
 }
 
-// below returns how many of zs, which rise, are not above z. near is the answer for a value that is likely to be close.
-func below(zs []float64, z float64, near int) int {
-	if (near == len(zs) || z < zs[near]) && (near == 0 || zs[near-1] <= z) {
-		return near
-	}
+// below returns how many of zs, which rise, are not above z.
+func below(zs []float64, z float64) int {
 	return sort.Search(len(zs), func(i int) bool { return z < zs[i] })
 }
 

@@ -1,6 +1,8 @@
 package contour
 
 import (
+	"math"
+
 	"github.com/paulmach/orb"
 
 	"isofacet/interp"
@@ -41,8 +43,21 @@ func (s *triangles) rank(zs []float64, workers int) {
 // values.
 func rankValues(dst []int32, values, zs []float64) {
 	near := 0
+	lo, hi := math.Inf(-1), math.Inf(1) // the levels below and above number near
+	if len(zs) > 0 {
+		hi = zs[0]
+	}
 	for i, z := range values {
-		near = below(zs, z, near)
+		if z < lo || z >= hi {
+			near = below(zs, z)
+			lo, hi = math.Inf(-1), math.Inf(1)
+			if near > 0 {
+				lo = zs[near-1]
+			}
+			if near < len(zs) {
+				hi = zs[near]
+			}
+		}
 		dst[i] = int32(near)
 	}
 }
@@ -52,12 +67,13 @@ func (s *triangles) spans(dst []span, first int, outline *[]passage) {
 		h := triangulate.Triangle(first + i).HalfEdge(0)
 		a, b, c := s.ranks[s.mesh.Origin(h)], s.ranks[s.mesh.Origin(h+1)], s.ranks[s.mesh.Origin(h+2)]
 		dst[i] = span{min(a, b, c), max(a, b, c)}
-		if a|b|c != 0 { // all below every level: no line begins
-			for e := h; e < h+3; e++ {
-				if s.mesh.Twin(e) == triangulate.NoHalfEdge {
-					if sp := s.side(passage(e)); sp.lo < sp.hi {
-						*outline = append(*outline, passage(e))
-					}
+		if dst[i].lo == dst[i].hi {
+			continue
+		}
+		for e := h; e < h+3; e++ {
+			if s.mesh.Twin(e) == triangulate.NoHalfEdge {
+				if sp := s.side(passage(e)); sp.lo < sp.hi {
+					*outline = append(*outline, passage(e))
 				}
 			}
 		}
@@ -118,19 +134,19 @@ func (s *triangles) followFrom(k int, z float64, h triangulate.HalfEdge, m *mark
 			s.probe.passed(k, h)
 			line = appendPoint(line, s.probe.crossing(pa, za, pb, zb, z))
 		}
-		c := s.mesh.Apex(h)
+		out := s.mesh.Prev(h) // c→a
+		c := s.mesh.Origin(out)
 		above := s.z[c] >= z
 		if s.probe != nil && s.probe.flip == h.Triangle() {
 			above = !above
 		}
 		if above {
-			h = s.mesh.Next(h) // b→c
+			out = s.mesh.Next(h) // b→c
 			pa, za = s.pos[c], s.z[c]
 		} else {
-			h = s.mesh.Prev(h) // c→a
 			pb, zb = s.pos[c], s.z[c]
 		}
-		h = s.mesh.Twin(h)
+		h = s.mesh.Twin(out)
 		if h == triangulate.NoHalfEdge {
 			line = appendPoint(line, Crossing(pa, za, pb, zb, z))
 			f.after = noPassage

@@ -252,7 +252,7 @@ func checkReadings(s *interp.Surface, levels Levels, bands []Band, numbers []int
 			return nil
 		}
 		within := ulp(largest) * (3 + 2/math.Sin(min(angleAt(m, v), math.Pi/2)))
-		want := below(zs, z, 0)
+		want := below(zs, z)
 		equal := want > 0 && zs[want-1] == z
 		found, others := false, []int(nil)
 		for i := range bands {
@@ -271,7 +271,7 @@ func checkReadings(s *interp.Surface, levels Levels, bands []Band, numbers []int
 		found = len(others) == 0 && thin(m, v, 3*ulp(largest))
 		low, high := around(s, p, within+2*ulp(largest))
 		for _, n := range others {
-			found = found || below(zs, low, 0) <= n && n <= below(zs, high, 0)
+			found = found || below(zs, low) <= n && n <= below(zs, high)
 		}
 		if !found {
 			return fmt.Errorf("reading %v at (%v, %v), band %d: in polygons of bands %v", z, p[0], p[1], want, others)
