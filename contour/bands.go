@@ -29,13 +29,12 @@ type Band struct {
 // touch in a point are polygons of their own, and parts without area (a ridge that just reaches the level) are left
 // out. All this is decided by exact signs for the coordinates as given out.
 //
-// A reading's place lies in or on a polygon of its band, or if its value equals a level that the surface rises above nowhere
-// near, of the band below; where isolines come closer to a reading than coordinates are rounded, within
-// that rounding.
+// A reading's place lies in or on a polygon of its band; if its value equals a level that the surface just reaches there, of the
+// band below; and if bands are narrower there than coordinates can show, of one that the surface has that near.
 //
 // It returns a *PiecesError, an error wrapping ErrTooMany for more than 1e9 points, or ctx.Err() with no bands.
 //
-// Time O(n log n) for n points of lines and outline, some 100 bytes a point.
+// Time O(n log n) for n points of lines and outline, some 150 bytes a point.
 func Bands(ctx context.Context, s *interp.Surface, levels Levels, opt Options) ([]Band, error) {
 	return bands(ctx, newTriangles(s), levels, opt)
 }

@@ -8,6 +8,7 @@ import (
 	"github.com/paulmach/orb"
 
 	"isofacet/interp"
+	"isofacet/triangulate"
 	"isofacet/triangulate/pointsets"
 )
 
@@ -75,6 +76,78 @@ func TestLargerSurfaces(t *testing.T) {
 				t.Fatal(err)
 			}
 			t.Logf("%d lines, %d polygons", len(lines), len(bands))
+		})
+	}
+}
+
+// TestSeveralRims draws surfaces with voids, voids that touch each other and the boundary in points, and surfaces from
+// which long triangles were trimmed: lines end at every rim, and bands stop there.
+func TestSeveralRims(t *testing.T) {
+	check := func(t *testing.T, s *interp.Surface, levels Levels) {
+		t.Helper()
+		if s.Mesh().NumTriangles() == 0 {
+			t.Fatal("nothing left of the surface")
+		}
+		lines, r, err := Lines(context.Background(), s, levels, Options{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if err := checkLines(s, levels, lines, r); err != nil {
+			t.Fatal(err)
+		}
+		bands, err := Bands(context.Background(), s, levels, Options{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if err := checkBands(s, levels, bands); err != nil {
+			t.Fatal(err)
+		}
+		rims := 0
+		for _, p := range bands {
+			rims += len(p.Polygon) - 1
+		}
+		t.Logf("%d triangles, %d lines, %d polygons with %d holes", s.Mesh().NumTriangles(), len(lines), len(bands), rims)
+	}
+	levels := Levels{levelAt(96.5), levelAt(98), levelAt(99), levelAt(100), levelAt(100.25), levelAt(102), levelAt(104)}
+
+	pts := pointsets.UnitLattice(400, 2)
+	s := surfaceOf(t, pts, wholeHeights(pts), 0)
+	for name, rings := range map[string][2][]orb.Ring{
+		"a void": {nil, {{{5.5, 5.5}, {12, 6}, {9.3, 13.1}, {5.5, 5.5}}}},
+		"voids that touch": {
+			{{{1, 1}, {18, 1}, {18, 18}, {1, 18}, {1, 1}}},
+			{
+				{{3, 3}, {7, 3}, {7, 7}, {3, 7}, {3, 3}},             // along edges
+				{{7, 7}, {12, 7}, {12, 12}, {7, 12}, {7, 7}},         // touches the first at a vertex
+				{{1, 10}, {4, 9.5}, {4, 10.5}, {1, 10}},              // touches the boundary
+				{{14.5, 14.5}, {16, 14}, {15.2, 16.9}, {14.5, 14.5}}, // through triangles
+			},
+		},
+	} {
+		t.Run(name, func(t *testing.T) {
+			region, err := triangulate.NewRegion(rings[0], rings[1])
+			if err != nil {
+				t.Fatal(err)
+			}
+			clip, err := s.Clip(context.Background(), region, triangulate.Options{})
+			if err != nil {
+				t.Fatal(err)
+			}
+			check(t, clip.Surface, levels)
+		})
+	}
+	for _, longest := range []float64{0.06, 0.08, 0.12} {
+		t.Run("trimmed", func(t *testing.T) {
+			pts := pointsets.Uniform(600, 8)
+			m, err := triangulate.Delaunay(context.Background(), pts, triangulate.Options{})
+			if err != nil {
+				t.Fatal(err)
+			}
+			s, err := interp.FromInputs(m.Trim(longest), wholeHeights(pts))
+			if err != nil {
+				t.Fatal(err)
+			}
+			check(t, s, levels)
 		})
 	}
 }

@@ -55,18 +55,20 @@
 // their common border; together they are the surface, without overlap or gap, their areas adding up to within
 // (1e-12 x area) + (perimeter x ulp of the largest coordinate). Where lines cross by rounding, one of them is led through
 // an end of the other (nodes.go). A part of the surface thinner than coordinates can show has no polygon; so a reading lies in
-// or on a polygon of its band unless the band is that narrow there.
+// or on a polygon of its band unless the band is that narrow there. Surfaces with several rims (voids, trimmed edges) are
+// no exception to any of this.
 //
 // Not checked: that values of a Surface or grid are what they are said to be.
 //
 // # Cost
 //
 // Lines: time O(vertices + triangles + pieces), a piece being a line's way through one triangle; a level visits
-// only the triangles that it crosses. 4 bytes a vertex, 12 a crossed triangle and 4 a piece while working; 16 bytes a point of the
-// result, of which EachLine needs only some millions at a time. Following a piece takes some 50 ns on one core; levels, and
-// parts of large ones, are followed at the same time.
+// only the triangles that it crosses. 4 bytes a vertex, 12 a crossed triangle and 4 a piece while working; 16 bytes a point of
+// the result, of which EachLine needs only some millions at a time. On one core some 20 ns a triangle, to find what
+// levels cross it, and 100 ns a piece; levels, and parts of large ones, are followed at the same time.
 //
-// Bands: O(n log n) for n points of lines and outline, some 300 to 500 ns a point and 100 bytes.
+// Bands: O(n log n) for n points of lines and outline, some 0.5 microseconds a point where lines lie side by side as contours
+// of ground do, 3 where every reading has a ring of its own, and 150 bytes a point.
 //
 // # Sources
 //

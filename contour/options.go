@@ -32,7 +32,7 @@ func (o Options) workers() int {
 
 // Report counts what came out, and tells what was left out.
 type Report struct {
-	Pieces int64 // a line's way through one triangle or cell each
+	Pieces int64 // triangles or cells that levels cross, one for each level
 	Lines  int64
 	Points int64 // of the lines
 	// WithoutLength counts lines that shrank to nothing in coordinates: about a summit that just reaches the level, or
