@@ -98,7 +98,12 @@ func (q *queryCommand) answer(cmd *cobra.Command, list []*input, l *loaded, aske
 	}
 	t := q.table(l, asked, samples)
 	for _, d := range out.list {
-		if err := out.write(d, func(d *destination) error { return t.write(d.w) }); err != nil {
+		if err := out.write(d, func(d *destination) error {
+			if d.format == formatGeoJSON {
+				return q.writeFeatures(d, q.featureOptions(q.labels(""), t.xy, t.z), t.features)
+			}
+			return t.write(d.w)
+		}); err != nil {
 			return err
 		}
 	}

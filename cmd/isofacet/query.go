@@ -20,7 +20,8 @@ Outside there is no value; the fields stay empty and such places are counted on
 standard error.
 
 Places are typed as --at X,Y, or read from one file, whose columns are found like
-those of readings and written in front of the answers as they are.
+those of readings and written in front of the answers as they are. Formats by
+extension: .csv, and .geojson, where a place is a point with the value as height.
 
 Where triangles meet, slope and azimuth are those of the triangle that owns the
 place: the one just east of it, or north where an edge runs east.
@@ -52,7 +53,7 @@ func newQuery(p *program) *cobra.Command {
 			Text: "what the columns of the file of places hold, like --columns"},
 		manual.Option{Group: group, Name: "explain", Value: &q.explain, Switch: true, Text: "add the triangle, its readings and their weights"})
 	manual.Add(fs, q.reading.readingOptions()...)
-	manual.Add(fs, q.writing.writingOptions([]string{"table"}, []string{formatCSV})...)
+	manual.Add(fs, q.writing.writingOptions([]string{"table"}, []string{formatCSV, formatGeoJSON})...)
 	manual.Add(fs, p.runningOptions()...)
 	return cmd
 }
@@ -75,7 +76,7 @@ func (q *queryCommand) run(cmd *cobra.Command, files []string) error {
 	if err != nil {
 		return err
 	}
-	dests, err := q.destinations("table", files, byExtensions(map[string]string{".csv": formatCSV}), formatCSV)
+	dests, err := q.destinations("table", files, byExtensions(map[string]string{".csv": formatCSV, ".geojson": formatGeoJSON}), formatCSV)
 	if err != nil {
 		return err
 	}
