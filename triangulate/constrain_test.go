@@ -14,7 +14,6 @@ import (
 
 	"isofacet/triangulate"
 	"isofacet/triangulate/exact"
-	"isofacet/triangulate/pointsets"
 )
 
 // segmentIsChain walks the segment's edges in the mesh.
@@ -347,60 +346,6 @@ func FuzzConstrained(f *testing.F) {
 		for i, s := range split.Pieces {
 			if m.NumTriangles() > 0 && !segmentIsChain(m, m.VertexOf(int(s.From)), m.VertexOf(int(s.To))) {
 				t.Fatalf("piece %d is not a chain of edges", i)
-			}
-		}
-	})
-}
-
-func BenchmarkConstrained(b *testing.B) {
-	pts := pointsets.Uniform(1e6, 1)
-	// Ends among the points, median length three spacings: join points to others
-	// that are near in the mesh's numbering.
-	rng := rand.New(rand.NewPCG(1, 2))
-	m, _ := triangulate.Delaunay(context.Background(), pts, triangulate.Options{})
-	in := m.Inputs()
-	var segs []triangulate.Segment
-	loc := m.Locator()
-	boxes := map[[2]int][]int32{}
-	for len(segs) < 1e5 {
-		v := triangulate.Vertex(rng.IntN(len(pts)))
-		p := m.Position(v)
-		q := orb.Point{p[0] + rng.NormFloat64()*3e-3*0.85, p[1] + rng.NormFloat64()*3e-3*0.85}
-		at := loc.Locate(q)
-		if at.Place == triangulate.Outside {
-			continue
-		}
-		w := m.Corners(at.Triangle)[0]
-		s := triangulate.Segment{From: in[v], To: in[w]}
-		if v == w {
-			continue
-		}
-		key := [2]int{int(p[0] * 50), int(p[1] * 50)}
-		ok := true
-		for dx := -1; dx <= 1 && ok; dx++ {
-			for dy := -1; dy <= 1 && ok; dy++ {
-				for _, o := range boxes[[2]int{key[0] + dx, key[1] + dy}] {
-					if crosses(pts[s.From], pts[s.To], pts[segs[o].From], pts[segs[o].To]) {
-						ok = false
-						break
-					}
-				}
-			}
-		}
-		if ok {
-			boxes[key] = append(boxes[key], int32(len(segs)))
-			segs = append(segs, s)
-		}
-	}
-	b.Run("plain", func(b *testing.B) {
-		for b.Loop() {
-			triangulate.Delaunay(context.Background(), pts, triangulate.Options{})
-		}
-	})
-	b.Run("segments", func(b *testing.B) {
-		for b.Loop() {
-			if _, err := triangulate.Constrained(context.Background(), pts, segs, triangulate.Options{}); err != nil {
-				b.Fatal(err)
 			}
 		}
 	})
