@@ -10,6 +10,8 @@ import (
 	"slices"
 	"strconv"
 	"testing"
+
+	"github.com/paulmach/orb"
 )
 
 // benchText makes n lines id,x,y,z,code of a kind.
@@ -141,4 +143,30 @@ func BenchmarkSort(b *testing.B) {
 
 func report(b *testing.B, n int) {
 	b.ReportMetric(float64(n)*float64(b.N)/b.Elapsed().Seconds()/1e6, "Mlines/s")
+}
+
+// BenchmarkSpots looks for repeated places: equal ones, and chains of near ones.
+func BenchmarkSpots(b *testing.B) {
+	for _, n := range benchSizes() {
+		r := rand.New(rand.NewPCG(1, 2))
+		pts := make([]orb.Point, n)
+		for i := range pts {
+			pts[i] = orb.Point{500000 + float64(r.IntN(1e6))/1000, 4600000 + float64(r.IntN(1e6))/1000}
+		}
+		b.Run(fmt.Sprintf("equal/n=%.0e", float64(n)), func(b *testing.B) {
+			for b.Loop() {
+				samePlaces(pts, 1)
+			}
+			report(b, n)
+		})
+		b.Run(fmt.Sprintf("within/n=%.0e", float64(n)), func(b *testing.B) {
+			c := &collected{Set: &Set{Points: pts, DecimalsXY: 3}, o: &Options{Spots: Spots{Within: 0.01}, Workers: 1}}
+			for b.Loop() {
+				if _, err := c.chains(context.Background()); err != nil {
+					b.Fatal(err)
+				}
+			}
+			report(b, n)
+		})
+	}
 }

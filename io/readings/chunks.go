@@ -141,6 +141,14 @@ func (c *chunks) next() ([]byte, *PositionError) {
 			}
 			return nil, nil
 		}
+		if c.have > 2*c.size {
+			// What detection looked at: enough for several workers.
+			if n := c.format.cut(c.buf[:c.size], false); n > 0 {
+				b := c.buf[:n:n]
+				c.buf, c.have = c.buf[n:], c.have-n
+				return b, nil
+			}
+		}
 		b := c.buf[:c.have]
 		n := c.format.cut(b, c.ended)
 		if c.ended && c.err != nil {

@@ -24,48 +24,73 @@ import (
 
 // samePlaces finds the groups of equal places. Coordinates must not be NaN, and
 // zero must be +0.
-func samePlaces(points []orb.Point, workers int) (g groups) {
+func samePlaces(points []orb.Point, workers int) groups {
 	n := len(points)
 	if n < 2 {
-		return g
+		return groups{}
 	}
-	size := bits.Len(uint(16 * n)) // bits of the hash that are looked at
-	size = max(size, 6)
-	once, twice := make([]uint64, 1<<(size-6)), make([]uint64, 1<<(size-6))
-	shift := 64 - size
+	f := newFilter(n)
 	parts := min(max(workers, 1), n/sliceLeast+1)
-	if parts == 1 {
-		for _, p := range points {
-			h := hashPlace(p) >> shift
-			if bit := uint64(1) << (h & 63); once[h>>6]&bit != 0 {
-				twice[h>>6] |= bit
-			} else {
-				once[h>>6] |= bit
+	inParts(n, parts, func(_, from, to int) {
+		if parts == 1 {
+			for _, p := range points {
+				f.add(hashPlace(p) >> f.shift)
 			}
+			return
 		}
-	} else {
-		inParts(n, parts, func(_, from, to int) {
-			for _, p := range points[from:to] {
-				h := hashPlace(p) >> shift
-				if bit := uint64(1) << (h & 63); atomic.OrUint64(&once[h>>6], bit)&bit != 0 {
-					atomic.OrUint64(&twice[h>>6], bit)
-				}
-			}
-		})
-	}
+		for _, p := range points[from:to] {
+			f.addShared(hashPlace(p) >> f.shift)
+		}
+	})
 	found := make([][]candidate, parts)
 	inParts(n, parts, func(part, from, to int) {
 		var mine []candidate
 		for i, p := range points[from:to] {
-			hash := hashPlace(p)
-			if h := hash >> shift; twice[h>>6]&(1<<(h&63)) != 0 {
+			if hash := hashPlace(p); f.twice(hash >> f.shift) {
 				mine = append(mine, candidate{hash, int32(from + i)})
 			}
 		}
 		found[part] = mine
 	})
-	return groupCandidates(points, slices.Concat(found...))
+	c := slices.Concat(found...)
+	// Once more by other bits of the hash: those that met by chance part here.
+	f = newFilter(len(c))
+	mask := uint64(1)<<(64-f.shift) - 1
+	for i := range c {
+		f.add(c[i].hash & mask)
+	}
+	c = slices.DeleteFunc(c, func(c candidate) bool { return !f.twice(c.hash & mask) })
+	return groupCandidates(points, c)
 }
+
+// filter knows which bits were set once, and which more than once.
+type filter struct {
+	onceBits, twiceBits []uint64
+	shift               int // of a hash, to be the number of a bit
+}
+
+// newFilter makes a filter with at least 16 bits for each of n numbers.
+func newFilter(n int) *filter {
+	size := max(bits.Len(uint(16*n)), 6)
+	return &filter{make([]uint64, 1<<(size-6)), make([]uint64, 1<<(size-6)), 64 - size}
+}
+
+func (f *filter) add(h uint64) {
+	if bit := uint64(1) << (h & 63); f.onceBits[h>>6]&bit != 0 {
+		f.twiceBits[h>>6] |= bit
+	} else {
+		f.onceBits[h>>6] |= bit
+	}
+}
+
+// addShared is add for several goroutines at a time.
+func (f *filter) addShared(h uint64) {
+	if bit := uint64(1) << (h & 63); atomic.OrUint64(&f.onceBits[h>>6], bit)&bit != 0 {
+		atomic.OrUint64(&f.twiceBits[h>>6], bit)
+	}
+}
+
+func (f *filter) twice(h uint64) bool { return f.twiceBits[h>>6]&(1<<(h&63)) != 0 }
 
 // sliceLeast is how many places are worth a goroutine.
 const sliceLeast = 1 << 15

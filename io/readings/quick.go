@@ -25,6 +25,9 @@ func (w *worker) quick(b []byte, p int) int {
 	return p
 }
 
+// span is where a text stands in a block; a block is shorter than 2^31.
+type span struct{ from, to int32 }
+
 // quickRow reads one record, or returns 0 and has done nothing.
 func (w *worker) quickRow(b []byte, p int, blk *Block) (next int) {
 	if len(w.comment) > 0 {
@@ -38,7 +41,7 @@ func (w *worker) quickRow(b []byte, p int, blk *Block) (next int) {
 	}
 	var v [3]float64
 	var decimals [3]int
-	var from, to [textSlots]int
+	var spans [textSlots]span
 	blanks := w.delimiter == ' '
 	last := len(w.acts) - 1
 	for i, a := range w.acts {
@@ -100,7 +103,7 @@ func (w *worker) quickRow(b []byte, p int, blk *Block) (next int) {
 				return 0
 			}
 			if a.kind == text {
-				from[a.slot], to[a.slot] = start, end
+				spans[a.slot] = span{int32(start), int32(end)}
 			}
 		}
 		if i == last {
@@ -132,8 +135,8 @@ func (w *worker) quickRow(b []byte, p int, blk *Block) (next int) {
 		return 0
 	}
 	if w.choosing {
-		for slot := range from {
-			w.current[slot] = b[from[slot]:to[slot]]
+		for slot, s := range spans {
+			w.current[slot] = b[s.from:s.to]
 		}
 		why := w.chosen()
 		if why == "" && w.exclude != nil {
@@ -154,9 +157,7 @@ func (w *worker) quickRow(b []byte, p int, blk *Block) (next int) {
 	blk.DecimalsXY = max(blk.DecimalsXY, decimals[0], decimals[1])
 	blk.DecimalsZ = max(blk.DecimalsZ, decimals[2])
 	for _, slot := range w.slots {
-		t := &blk.texts[slot]
-		t.data = append(t.data, b[from[slot]:to[slot]]...)
-		t.ends = append(t.ends, uint32(len(t.data)))
+		blk.texts[slot].addFrom(b, int(spans[slot].from), int(spans[slot].to))
 	}
 	return p
 }

@@ -52,6 +52,19 @@ func (t *texts) add(text []byte) {
 	t.ends = append(t.ends, uint32(len(t.data)))
 }
 
+// addFrom appends the text b[from:to]. Most are short: these are copied as the 16
+// bytes that they begin, which costs less than asking how many to copy.
+func (t *texts) addFrom(b []byte, from, to int) {
+	n := len(t.data)
+	if to-from <= 16 && from+16 <= len(b) && n+16 <= cap(t.data) {
+		*(*[16]byte)(t.data[n : n+16]) = *(*[16]byte)(b[from : from+16])
+		t.data = t.data[:n+to-from]
+	} else {
+		t.data = append(t.data, b[from:to]...)
+	}
+	t.ends = append(t.ends, uint32(len(t.data)))
+}
+
 // remove takes texts out of the texts of a block: those with the numbers gone,
 // which rise and count from base.
 func (t *texts) remove(gone []int32, base int) {
