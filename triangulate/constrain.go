@@ -61,12 +61,12 @@ func Constrained(ctx context.Context, pts []orb.Point, segs []Segment, opt Optio
 		return m, nil
 	}
 	n := &inserter{pos: m.pos, half: m.half, kept: newBits(len(m.half)), at: m.outgoing()}
-	for _, i := range m.insertionOrder(segs) {
-		a, b := m.VertexOf(int(segs[i].From)), m.VertexOf(int(segs[i].To))
+	for _, p := range m.insertionOrder(segs) {
+		a, b := p.lo, p.hi
 		if exact.CompareXY(m.pos[a], m.pos[b]) > 0 {
 			a, b = b, a
 		}
-		if !n.insert(a, b, i) {
+		if !n.insert(a, b, p.segment) {
 			return nil, &CrossingError{Pairs: FindCrossings(pts, segs)}
 		}
 		if ctx.Err() != nil {
@@ -79,35 +79,33 @@ func Constrained(ctx context.Context, pts []orb.Point, segs []Segment, opt Optio
 	return m, nil
 }
 
+// pending is a segment to insert, by its vertices, lo < hi.
+type pending struct {
+	lo, hi  Vertex
+	segment int32
+}
+
 // insertionOrder sorts the segments along the vertices, whose numbers are
 // coherent in space, so that neighbours in time are neighbours in memory. It
 // depends on the places of the segments, not on their order.
-func (m *Mesh) insertionOrder(segs []Segment) []int32 {
-	type keyed struct {
-		lo, hi Vertex
-		i      int32
-	}
-	ks := make([]keyed, 0, len(segs))
+func (m *Mesh) insertionOrder(segs []Segment) []pending {
+	ps := make([]pending, 0, len(segs))
 	for i, s := range segs {
 		a, b := m.VertexOf(int(s.From)), m.VertexOf(int(s.To))
 		if a != b {
-			ks = append(ks, keyed{min(a, b), max(a, b), int32(i)})
+			ps = append(ps, pending{min(a, b), max(a, b), int32(i)})
 		}
 	}
-	slices.SortFunc(ks, func(p, q keyed) int {
+	slices.SortFunc(ps, func(p, q pending) int {
 		if p.lo != q.lo {
 			return int(p.lo) - int(q.lo)
 		}
 		if p.hi != q.hi {
 			return int(p.hi) - int(q.hi)
 		}
-		return int(p.i) - int(q.i)
+		return int(p.segment) - int(q.segment)
 	})
-	order := make([]int32, len(ks))
-	for i, k := range ks {
-		order[i] = k.i
-	}
-	return order
+	return ps
 }
 
 // outgoing returns, for every vertex, a half-edge that starts there.

@@ -85,46 +85,41 @@ func (n *inserter) keep(h HalfEdge, segment int32) {
 	n.chains = append(n.chains, chainEdge{min(u, v), max(u, v), segment})
 }
 
-// toward turns about a: along is an edge from a (or, on the outline, one that
-// enters a) on which the line to b begins; else into is the half-edge from a
-// whose triangle the line enters.
+// toward finds how the line from a to b begins: along is an edge at a, in either
+// direction, on which it begins, or else into is the half-edge from a whose
+// triangle it enters. b lies within the fan of triangles about a, since the
+// mesh is convex, less than half a turn from any edge on the side on which it
+// lies of that edge's line, so turning to that side finds it.
 func (n *inserter) toward(a, b Vertex) (along, into HalfEdge) {
-	p, q := n.pos[a], n.pos[b]
-	onward := func(u Vertex) bool { return exact.CompareXY(p, n.pos[u]) == exact.CompareXY(p, q) }
-	h := n.at[a]
-	first := h
-	for { // clockwise until the outside or all the way round
-		t := n.half[first].twin
-		if t == NoHalfEdge {
-			break
-		}
-		if first = t.next(); first == h {
-			break
-		}
+	e := n.at[a]
+	d := n.dest(e)
+	s := n.orient(a, d, b)
+	if s == 0 && exact.CompareXY(n.pos[a], n.pos[d]) == exact.CompareXY(n.pos[a], n.pos[b]) {
+		return e, NoHalfEdge
 	}
-	for e := first; ; {
-		d := n.dest(e)
-		s := n.orient(a, d, b)
-		if s == 0 && onward(d) {
-			return e, NoHalfEdge
-		}
-		c := n.half[e.prev()].origin
-		next := n.half[e.prev()].twin
-		if s > 0 {
-			sc := n.orient(a, c, b)
-			if sc < 0 {
-				return NoHalfEdge, e
-			}
-			if sc == 0 && next == NoHalfEdge && onward(c) {
-				return e.prev(), NoHalfEdge
-			}
-		} else if next == NoHalfEdge && n.orient(a, c, b) == 0 && onward(c) {
-			return e.prev(), NoHalfEdge
-		}
-		if next == NoHalfEdge || next == first {
+	for s < 0 { // clockwise
+		t := n.half[e].twin
+		if t == NoHalfEdge {
 			panic("triangulate: no way from a vertex to another of its mesh")
 		}
-		e = next
+		e = t.next()
+		switch s = n.orient(a, n.dest(e), b); {
+		case s == 0:
+			return e, NoHalfEdge
+		case s > 0:
+			return NoHalfEdge, e
+		}
+	}
+	for { // counter-clockwise; from an edge that leads straight away from b, too
+		switch s = n.orient(a, n.half[e.prev()].origin, b); {
+		case s == 0:
+			return e.prev(), NoHalfEdge
+		case s < 0:
+			return NoHalfEdge, e
+		}
+		if e = n.half[e.prev()].twin; e == NoHalfEdge {
+			panic("triangulate: no way from a vertex to another of its mesh")
+		}
 	}
 }
 
@@ -197,6 +192,11 @@ func (n *inserter) link(links []rimLink, rim []HalfEdge) []rimLink {
 // the rim is in order along the base, and cutting off each vertex that turns
 // left, checking its predecessor again, leaves valid triangles only: the part
 // of the hole between two such edges is convex but for the rim between.
+//
+// Only the edges inside the hole become suspect. A triangle that the segment
+// does not cross stays constrained Delaunay, as a segment more only hides
+// vertices from it, so the rim passes the in-circle test in the end whatever
+// the filling (Chew 1989).
 func (n *inserter) fill(links []rimLink, last Vertex) HalfEdge {
 	made := n.made[:0] // the new half-edge of every rim edge, for pairs
 	for range links {
@@ -220,7 +220,9 @@ func (n *inserter) fill(links []rimLink, last Vertex) HalfEdge {
 			n.attach(h, first, made)
 			n.attach(h+1, second, made)
 			n.kept.put(int(h+2), false)
-			n.suspects = append(n.suspects, h, h+1, h+2)
+			if len(s) > 2 || i+1 < len(links) { // not the base itself
+				n.suspects = append(n.suspects, h+2)
+			}
 			s = append(s[:len(s)-2], rimLink{u: first.u, outer: h + 2, pair: -1, index: -1})
 		}
 	}
