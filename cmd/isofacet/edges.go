@@ -6,6 +6,8 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"strconv"
+	"strings"
 
 	"github.com/paulmach/orb"
 
@@ -71,12 +73,14 @@ func (e *edges) edgeOptions() []manual.Option {
 type drawn struct {
 	lines    []lines.Line
 	report   *interp.BreaklineReport
-	trimmed  int // triangles
+	trimming bool // whether triangles were to be left out by their edges
+	trimmed  int  // triangles
 	trimArea float64
 	alone    []triangulate.Vertex // readings used that no triangle has
 	region   *triangulate.Region
 	cut      *interp.Clip // the surface within the region
 	rings    ringReport
+	outside  int // readings used that boundary or voids leave out
 }
 
 // ringReport compares what rings enclose with what of the surface is there.
@@ -104,15 +108,19 @@ func (p *program) readCodes(ctx context.Context, e *edges, sel *readings.Selecti
 }
 
 // codesKnown refuses codes that the table says nothing about, and counts the rest.
-func (p *program) codesKnown(e *edges) error {
+func (p *program) codesKnown(e *edges, set *readings.Set) error {
 	if e.codes == nil {
 		return nil
+	}
+	if !set.Has(readings.Code) {
+		_, err := lines.Strung(set, e.table) // says that there is no such column
+		return err
 	}
 	if err := e.codes.Unknown(); err != nil {
 		return err
 	}
 	for _, c := range e.codes.Histogram() {
-		p.report.Note(fmt.Sprintf("code: %s: %s, %s", c.Code, c.Use, counted(c.Readings, "reading")), "code", c.Code, "use", c.Use.String(), "readings", c.Readings)
+		p.report.Note(fmt.Sprintf("code: %s: %s, %s", c.Code, c.Use, counted(c.Readings, "reading")), "reading_code", c.Code, "use", c.Use.String(), "readings", c.Readings)
 	}
 	return nil
 }
@@ -126,17 +134,17 @@ func (p *program) draw(ctx context.Context, r *reading, l *loaded, opt triangula
 		return err
 	}
 	d.lines = append(d.lines, strung.Lines...)
-	p.tellLines("strings of readings", strung)
-	files, err := p.readLines(ctx, e.breaklines.values, e, lines.Breaklines)
+	p.tellLines("strings of readings", "line", strung)
+	files, err := p.readLines(ctx, e.breaklines.values, e, "line", lines.Breaklines)
 	if err != nil {
 		return err
 	}
 	d.lines = append(d.lines, files.Lines...)
-	boundary, err := p.readLines(ctx, e.boundary.values, e, lines.Rings)
+	boundary, err := p.readLines(ctx, e.boundary.values, e, "ring", lines.Rings)
 	if err != nil {
 		return err
 	}
-	voids, err := p.readLines(ctx, e.voids.values, e, lines.Rings)
+	voids, err := p.readLines(ctx, e.voids.values, e, "ring", lines.Rings)
 	if err != nil {
 		return err
 	}
@@ -160,8 +168,8 @@ func (p *program) draw(ctx context.Context, r *reading, l *loaded, opt triangula
 	return p.limit(ctx, l, boundary, voids, opt)
 }
 
-// readLines reads the files of one option.
-func (p *program) readLines(ctx context.Context, names []string, e *edges, read func(context.Context, []readings.Source, lines.Options) (*lines.Set, error)) (*lines.Set, error) {
+// readLines reads the files of one option, lines or rings.
+func (p *program) readLines(ctx context.Context, names []string, e *edges, kind string, read func(context.Context, []readings.Source, lines.Options) (*lines.Set, error)) (*lines.Set, error) {
 	if len(names) == 0 {
 		return &lines.Set{}, nil
 	}
@@ -177,16 +185,12 @@ func (p *program) readLines(ctx context.Context, names []string, e *edges, read 
 	if err != nil {
 		return nil, err
 	}
-	what := "lines"
-	if len(names) == 1 {
-		what = names[0]
-	}
-	p.tellLines(what, set)
+	p.tellLines(strings.Join(names, ", "), kind, set)
 	return set, nil
 }
 
 // tellLines says what was read, and passes warnings on.
-func (p *program) tellLines(what string, set *lines.Set) {
+func (p *program) tellLines(what, kind string, set *lines.Set) {
 	for _, layout := range set.Layouts {
 		p.report.Note("text: "+layout.File+": "+layout.String(), "file", layout.File, "layout", layout.String())
 	}
@@ -194,7 +198,7 @@ func (p *program) tellLines(what string, set *lines.Set) {
 		p.report.Warn("lines", w.String(), "file", w.File, "line", w.Line)
 	}
 	if len(set.Lines) > 0 {
-		text := fmt.Sprintf("%s: %s, %s", what, counted(len(set.Lines), "line"), countedVertices(set.Vertices))
+		text := fmt.Sprintf("%s: %s, %s", what, counted(len(set.Lines), kind), countedVertices(set.Vertices))
 		if set.Repeated > 0 {
 			text += fmt.Sprintf(", %d of them repeats of the one before", set.Repeated)
 		}
@@ -208,6 +212,12 @@ func (p *program) join(ctx context.Context, r *reading, l *loaded, opt triangula
 	breaklines := make([]interp.Breakline, len(d.lines))
 	for i, line := range d.lines {
 		breaklines[i] = interp.Breakline{Name: line.Name, Points: line.Points, Z: line.Z}
+	}
+	if n := countPoints(d.lines); n > 0 {
+		work := fmt.Sprintf("a surface of %s and %s of lines", counted(l.set.Len(), "reading"), countedVertices(n))
+		if err := p.announce(work, uint64(l.set.Len()+n)*bytesReading); err != nil {
+			return err
+		}
 	}
 	spread := r.spotSpread.Value.Float64()
 	o := interp.BreaklineOptions{
@@ -236,13 +246,25 @@ func (p *program) join(ctx context.Context, r *reading, l *loaded, opt triangula
 		"lines", len(d.lines), "vertices", report.Vertices, "merged", report.Merged, "segments", report.Segments)
 	p.listSome(len(report.Made), func(i int) string {
 		m := report.Made[i]
-		return fmt.Sprintf("crossing: %s at (%v, %v): heights %v, vertex made at %v", d.names(m.Lines), m.At[0], m.At[1], m.Heights, m.Z)
+		heights := make([]string, len(m.Heights))
+		for k, z := range m.Heights {
+			heights[k] = fmt.Sprint(z)
+		}
+		return fmt.Sprintf("crossing: %s at (%v, %v): heights %s, vertex made at %v", d.names(m.Lines), m.At[0], m.At[1], listed(heights), m.Z)
 	})
 	p.listSome(len(report.Touched), func(i int) string {
 		t := report.Touched[i]
 		return fmt.Sprintf("touching: line %q led through (%v, %v), %.3g from it", d.lines[t.Line].Name, t.At[0], t.At[1], t.Distance)
 	})
 	return nil
+}
+
+func countPoints(list []lines.Line) int {
+	n := 0
+	for i := range list {
+		n += len(list[i].Points)
+	}
+	return n
 }
 
 // mergeRule returns the height of a place from the heights there, nil for the mean.
@@ -272,18 +294,20 @@ func (p *program) listSome(n int, text func(i int) string) {
 }
 
 func (d *drawn) names(is []int) string {
-	text := ""
+	texts := make([]string, len(is))
 	for k, i := range is {
-		switch {
-		case k == 0:
-		case k == len(is)-1:
-			text += " and "
-		default:
-			text += ", "
-		}
-		text += fmt.Sprintf("%q", d.lines[i].Name)
+		texts[k] = strconv.Quote(d.lines[i].Name)
 	}
-	return text
+	return listed(texts)
+}
+
+// listed joins texts as a sentence does: a, b and c.
+func listed(texts []string) string {
+	n := len(texts) - 1
+	if n < 1 {
+		return strings.Join(texts, "")
+	}
+	return strings.Join(texts[:n], ", ") + " and " + texts[n]
 }
 
 // linesError names readings and lines by their files.
@@ -306,9 +330,31 @@ func (p *program) linesError(l *loaded, err error) error {
 		if crossing.Crossings[0].SpreadTooLarge {
 			hint = "mend the heights, or say with --same-spot-spread how far apart still agrees"
 		}
-		return status.With(status.WrongData, err, hint)
+		return status.With(status.WrongData, l.drawn.crossingError(crossing), hint)
 	}
 	return err
+}
+
+// crossingError names the files of lines that cross, the first few of all.
+func (d *drawn) crossingError(e *interp.CrossingError) error {
+	const few = 5
+	var texts []string
+	for _, c := range e.Crossings[:min(len(e.Crossings), few)] {
+		a, b := d.lines[c.A].File, d.lines[c.B].File
+		who := fmt.Sprintf("%s: breaklines %q and %q", a, c.NameA, c.NameB)
+		if a != b {
+			who = fmt.Sprintf("breaklines %q of %s and %q of %s", c.NameA, a, c.NameB, b)
+		}
+		expected := "lines that meet only at vertices"
+		if c.SpreadTooLarge {
+			expected = "heights that agree"
+		}
+		texts = append(texts, fmt.Sprintf("%s cross near (%v, %v), at heights %v and %v: expected %s", who, c.At[0], c.At[1], c.ZA, c.ZB, expected))
+	}
+	if n := len(e.Crossings) - few; n > 0 {
+		texts = append(texts, fmt.Sprintf("and %d more crossings", n))
+	}
+	return errors.New(strings.Join(texts, "\n"))
 }
 
 // vertexPlace tells where a reading or a vertex of a line was read.
@@ -318,31 +364,6 @@ func (l *loaded) vertexPlace(v interp.LineVertex) string {
 	}
 	line := &l.drawn.lines[v.Line]
 	return fmt.Sprintf("%s: line %q", line.At(v.Vertex), line.Name)
-}
-
-// trim leaves out what reaches in from the outside over edges that are too long.
-func (p *program) trim(l *loaded, most decimal.Number) error {
-	before, area := l.surface.Mesh().NumTriangles(), l.surface.Area()
-	s, err := interp.New(l.surface.Mesh().Trim(most.Float64()), l.surface.Z())
-	if err != nil {
-		return err
-	}
-	l.surface = s
-	l.drawn.trimmed = before - s.Mesh().NumTriangles()
-	l.drawn.trimArea = area - s.Area()
-	l.drawn.alone = s.WithoutTriangle()
-	xy, _ := l.digits(option.Decimals{})
-	p.report.Note(fmt.Sprintf("max edge %s: %s left out, %v of area", most, counted(l.drawn.trimmed, "triangle"), number{l.drawn.trimArea, xy}),
-		"triangles", l.drawn.trimmed, "area", l.drawn.trimArea)
-	inputs := s.Mesh().Inputs()
-	if len(l.drawn.alone) > 0 {
-		p.report.Note(fmt.Sprintf("without a triangle: %s", countedVertices(len(l.drawn.alone))), "vertices", len(l.drawn.alone))
-	}
-	p.listSome(len(l.drawn.alone), func(i int) string {
-		at := s.Mesh().Position(l.drawn.alone[i])
-		return fmt.Sprintf("without a triangle: %s at (%v, %v)", l.inputPlace(int(inputs[l.drawn.alone[i]])), at[0], at[1])
-	})
-	return nil
 }
 
 // inputPlace tells where an input of the mesh was read.
@@ -367,122 +388,6 @@ func (l *loaded) id(i int) string {
 		return l.set.ID(i)
 	}
 	return ""
-}
-
-// limit cuts the surface at boundary and voids.
-func (p *program) limit(ctx context.Context, l *loaded, boundary, voids *lines.Set, opt triangulate.Options) error {
-	if len(boundary.Lines)+len(voids.Lines) == 0 {
-		return nil
-	}
-	d := l.drawn
-	region, err := triangulate.NewRegion(boundary.Rings(), voids.Rings())
-	if err != nil {
-		return ringError(boundary, voids, err)
-	}
-	opt.Progress = nil
-	if d.cut, err = l.surface.Clip(ctx, region, opt); err != nil {
-		return err
-	}
-	d.region = region
-	d.rings = ringReport{
-		boundaries: len(boundary.Lines), voids: len(voids.Lines),
-		boundaryArea: enclosed(boundary.Rings()), voidArea: enclosed(voids.Rings()),
-		keptArea: d.cut.Surface.Area(),
-	}
-	d.rings.inBoundary = l.surface.Area()
-	if len(boundary.Lines) > 0 {
-		d.rings.inBoundary = d.rings.keptArea
-		if len(voids.Lines) > 0 {
-			only, err := triangulate.NewRegion(boundary.Rings(), nil)
-			if err != nil {
-				return ringError(boundary, voids, err)
-			}
-			within, err := l.surface.Clip(ctx, only, opt)
-			if err != nil {
-				return err
-			}
-			d.rings.inBoundary = within.Surface.Area()
-		}
-	}
-	d.rings.taken = d.rings.inBoundary - d.rings.keptArea
-	return p.tellRings(l)
-}
-
-// tellRings says what boundary and voids left of the surface.
-func (p *program) tellRings(l *loaded) error {
-	g := l.drawn.rings
-	xy, _ := l.digits(option.Decimals{})
-	area := func(a float64) number { return number{max(a, 0), xy} }
-	// What the areas of two ways of adding up may differ by says nothing.
-	beyond := func(a, of float64) bool { return a > 1e-9*of }
-	if g.boundaries > 0 {
-		text := fmt.Sprintf("boundary: %s, enclosing %v", counted(g.boundaries, "ring"), area(g.boundaryArea))
-		if rest := g.boundaryArea - g.inBoundary; beyond(rest, g.boundaryArea) {
-			text += fmt.Sprintf("; %v of that has no surface", area(rest))
-		}
-		p.report.Note(text, "rings", g.boundaries, "area", g.boundaryArea, "with_surface", g.inBoundary)
-	}
-	if g.voids > 0 {
-		text := fmt.Sprintf("voids: %s, enclosing %v", counted(g.voids, "ring"), area(g.voidArea))
-		if rest := g.voidArea - g.taken; beyond(rest, g.voidArea) {
-			text += fmt.Sprintf("; %v of that lies beyond the boundary or the surface", area(rest))
-		}
-		p.report.Note(text, "rings", g.voids, "area", g.voidArea, "taken", g.taken)
-		if g.taken <= 0 {
-			p.report.Warn("voids-outside", "the voids take nothing away: they lie beyond the boundary or the surface")
-		}
-	}
-	if l.drawn.cut.Surface.Mesh().NumTriangles() == 0 {
-		return status.With(status.WrongData, fmt.Errorf("boundary and voids enclose %v and %v: nothing of the surface is left: expected rings around readings", area(g.boundaryArea), area(g.voidArea)),
-			"are x and y of the rings in the same system and order as those of the readings?")
-	}
-	return nil
-}
-
-// enclosed is the area inside an odd number of rings that do not cross each other.
-func enclosed(rings []orb.Ring) float64 {
-	total := 0.0
-	for i, r := range rings {
-		outer := true
-		for k, s := range rings {
-			if k == i {
-				continue
-			}
-			if in, err := triangulate.NewRegion([]orb.Ring{s}, nil); err == nil && in.Contains(r[0]) {
-				outer = !outer
-			}
-		}
-		twice := 0.0
-		for k := 1; k < len(r); k++ {
-			a, b := r[k-1], r[k]
-			twice += float64((a[0]-r[0][0])*(b[1]-r[0][1])) - float64((a[1]-r[0][1])*(b[0]-r[0][0]))
-		}
-		if outer {
-			total += math.Abs(twice)
-		} else {
-			total -= math.Abs(twice)
-		}
-	}
-	return total / 2
-}
-
-// ringError names the ring of an error by its file.
-func ringError(boundary, voids *lines.Set, err error) error {
-	e, ok := errors.AsType[*triangulate.RingError](err)
-	if !ok {
-		return err
-	}
-	set := boundary
-	if e.Void {
-		set = voids
-	}
-	ring := &set.Lines[e.Index]
-	place := ring.At(max(e.Vertex, 0))
-	text := fmt.Sprintf("%s: ring %q: %s", place, ring.Name, e.Reason)
-	if e.Vertex >= 0 {
-		text = fmt.Sprintf("%s: ring %q near (%v, %v): %s", place, ring.Name, e.At[0], e.At[1], e.Reason)
-	}
-	return status.With(status.WrongData, errors.New(text), "mend the ring there; two rings may touch or lie inside each other")
 }
 
 // shown is the surface whose triangles are drawn, measured and written: that

@@ -18,14 +18,17 @@ import (
 // finding is what inspect writes. Every number in it is a function of the set of
 // readings; what names files and lines goes to standard error.
 type finding struct {
-	Readings counts           `json:"readings"`
-	Extent   extents          `json:"extent"`
-	Spacing  number           `json:"spacing"`
-	Surface  surfaceCounts    `json:"surface"`
-	Suggest  suggestions      `json:"suggest"`
-	Warnings []report.Warning `json:"warnings"`
+	Readings    counts           `json:"readings"`
+	Extent      extents          `json:"extent"`
+	Spacing     number           `json:"spacing"`
+	Surface     surfaceCounts    `json:"surface"`
+	Constraints constraintCounts `json:"constraints"`
+	Limits      limitsFound      `json:"limits"`
+	Quality     qualityFound     `json:"quality"`
+	Suggest     suggestions      `json:"suggest"`
+	Warnings    []report.Warning `json:"warnings"`
 
-	reasons [3]string // of the suggestions
+	reasons [4]string // of the suggestions
 }
 
 type counts struct {
@@ -54,9 +57,10 @@ type surfaceCounts struct {
 }
 
 type suggestions struct {
-	Cell     suggested `json:"cell"`
-	Interval suggested `json:"interval"`
-	MaxEdge  suggested `json:"max_edge"`
+	Cell        suggested `json:"cell"`
+	Interval    suggested `json:"interval"`
+	MaxEdge     suggested `json:"max_edge"`
+	TouchWithin suggested `json:"touch_within"`
 }
 
 // suggested is a decimal number, null where there is none.
@@ -84,34 +88,43 @@ func (s suggested) String() string {
 const muchArea = 0.1
 
 // find looks at what was loaded.
-func (p *program) find(l *loaded, w *writing) *finding {
+func (p *program) find(l *loaded, r *reading, w *writing) (*finding, error) {
 	m := l.surface.Mesh()
 	c := l.set.Counts
 	xy, _ := l.digits(w.decimals)
 	spacing := advice.Spacing(m, p.workers())
 	cell, interval, edge := advice.Cell(spacing), advice.Interval(l.surface.Z()), advice.MaxEdge(spacing)
+	touch := p.touchWithin(l, &r.edges)
+	quality, err := l.quality(xy)
+	if err != nil {
+		return nil, err
+	}
 	f := &finding{
-		Readings: counts{c.Read, c.Used, c.Merged, c.LeftOut, c.Refused},
-		Extent:   l.extents(w.decimals),
-		Spacing:  number{spacing, xy},
-		Surface:  l.surfaceCounts(w.decimals),
+		Readings:    counts{c.Read, c.Used, c.Merged, c.LeftOut, c.Refused},
+		Extent:      l.extents(w.decimals),
+		Spacing:     number{spacing, xy},
+		Surface:     l.surfaceCounts(w.decimals),
+		Constraints: l.constraints(),
+		Limits:      l.limits(xy),
+		Quality:     quality,
 		Suggest: suggestions{
 			suggested{cell.Value, cell.OK}, suggested{interval.Value, interval.OK}, suggested{edge.Value, edge.OK},
+			suggested{touch.Value, touch.OK},
 		},
-		reasons: [3]string{cell.Reason, interval.Reason, edge.Reason},
+		reasons: [4]string{cell.Reason, interval.Reason, edge.Reason, touch.Reason},
 	}
 	if m.NumTriangles() == 0 {
 		p.report.Warn("no-surface", cell.Reason)
-		return f
+		return f, nil
 	}
 	p.warnOfLongOutline(l, edge)
-	return f
+	return f, nil
 }
 
 // warnOfLongOutline tells when the convex hull, which nobody chose, stands in for
 // the outline of the measured area.
 func (p *program) warnOfLongOutline(l *loaded, edge advice.Suggestion) {
-	if !edge.OK {
+	if !edge.OK || l.drawn.trimming || l.drawn.rings.boundaries > 0 {
 		return
 	}
 	share := advice.LongOutline(l.surface.Mesh(), edge.Value.Float64())
@@ -151,15 +164,20 @@ func (f *finding) writeText(w io.Writer, l *loaded, r *reading) error {
 		}
 	}
 	line("surface", "%s, %s, %d on the outline", countedVertices(s.Vertices), counted(s.Triangles, "triangle"), s.OutlineVertices)
-	line("area", "%v in plan; volume above zero %v", s.Area, s.VolumeAboveZero)
+	line("area", "%v in plan", s.Area)
+	line("volume", "%v net of height zero: what is above it less what is below", s.VolumeAboveZero)
 	if !math.IsNaN(f.Spacing.v) {
 		line("spacing", "%v, the median length of an edge", f.Spacing)
 	}
 	writeCodes(line, l.set)
+	f.writeEdges(line)
 	for i, v := range []struct {
 		option string
 		suggested
-	}{{"cell", f.Suggest.Cell}, {"interval", f.Suggest.Interval}, {"max edge", f.Suggest.MaxEdge}} {
+	}{{"cell", f.Suggest.Cell}, {"interval", f.Suggest.Interval}, {"max edge", f.Suggest.MaxEdge}, {"touch within", f.Suggest.TouchWithin}} {
+		if i == 3 && f.Constraints.Lines == 0 {
+			break // it is about lines
+		}
 		line("suggested", "%s %v: %s", v.option, v.suggested, f.reasons[i])
 	}
 	for _, warning := range f.Warnings {

@@ -182,7 +182,7 @@ func (g *gridCommand) lattice(l *loaded) (grid.Spec, error) {
 		return grid.Spec{}, err
 	}
 	if !g.extent.IsSet() {
-		return grid.SpecFor(l.bound, g.cell.X, g.cell.Y, at)
+		return grid.SpecFor(l.reach(), g.cell.X, g.cell.Y, at)
 	}
 	e := grid.Extent{XMin: g.extent.XMin, YMin: g.extent.YMin, XMax: g.extent.XMax, YMax: g.extent.YMax}
 	if g.outward {

@@ -69,7 +69,10 @@ func (p *program) inspect(cmd *cobra.Command, r *reading, w *writing, files []st
 	if err != nil {
 		return err
 	}
-	finding := p.find(l, w)
+	finding, err := p.find(l, r, w)
+	if err != nil {
+		return err
+	}
 	p.tellSurface(l)
 	if err := p.settleWarnings(); err != nil {
 		return err

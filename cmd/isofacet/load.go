@@ -25,6 +25,7 @@ type loaded struct {
 	zRange [2]float64
 	names  []string // of the inputs
 	drawn  *drawn   // what lines made of it
+	inputs []int32  // of the surface's vertices, once asked for
 
 	// The most decimals that readings and lines carry.
 	decimalsXY, decimalsZ int
@@ -101,7 +102,7 @@ func (p *program) read(ctx context.Context, r *reading, list []*input) (*reading
 	if err != nil {
 		return nil, err
 	}
-	return set, p.codesKnown(&r.edges)
+	return set, p.codesKnown(&r.edges, set)
 }
 
 // readExclusions reads the file of readings to leave out, and says what in it does
@@ -133,6 +134,15 @@ func (l *loaded) measure() {
 		z := l.set.Z[i]
 		l.zRange[0], l.zRange[1] = min(l.zRange[0], z), max(l.zRange[1], z)
 	}
+}
+
+// reach is the extent of readings and breaklines, which a surface may fill.
+func (l *loaded) reach() orb.Bound {
+	b := l.bound
+	for i := range l.drawn.lines {
+		b = b.Union(orb.LineString(l.drawn.lines[i].Points).Bound())
+	}
+	return b
 }
 
 // whichReading turns an error about a numbered point into one about a line of a
@@ -250,7 +260,7 @@ func (l *loaded) surfaceCounts(d option.Decimals) surfaceCounts {
 	s := l.shown()
 	m := s.Mesh()
 	c := surfaceCounts{
-		Vertices: m.NumVertices(), Triangles: m.NumTriangles(),
+		Vertices: l.vertices(), Triangles: m.NumTriangles(),
 		Area: number{s.Area(), xy}, VolumeAboveZero: number{s.VolumeAboveZero(), z},
 	}
 	for _, ring := range m.Outline() {
@@ -268,9 +278,18 @@ const (
 
 // tellSurface says what the surface is.
 func (p *program) tellSurface(l *loaded) {
-	m := l.shown().Mesh()
-	p.report.Note(fmt.Sprintf("surface: %s, %s", countedVertices(m.NumVertices()), counted(m.NumTriangles(), "triangle")),
-		"vertices", m.NumVertices(), "triangles", m.NumTriangles())
+	v, t := l.vertices(), l.shown().Mesh().NumTriangles()
+	p.report.Note(fmt.Sprintf("surface: %s, %s", countedVertices(v), counted(t, "triangle")), "vertices", v, "triangles", t)
+}
+
+// vertices counts the vertices of the shown surface; limits leave some without a
+// triangle, which are not counted.
+func (l *loaded) vertices() int {
+	n := l.shown().Mesh().NumVertices()
+	if l.drawn.trimming || l.drawn.cut != nil {
+		n -= len(l.shown().WithoutTriangle())
+	}
+	return n
 }
 
 func countedVertices(n int) string {

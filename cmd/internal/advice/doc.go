@@ -1,10 +1,12 @@
 // Package advice looks at a triangulated set of readings and suggests settings: a
-// cell for rasters, an interval for isolines, a limit for the length of edges.
+// cell for rasters, an interval for isolines, a limit for the length of edges, how near
+// to a line a place counts as on it.
 //
 //	spacing := advice.Spacing(mesh, workers)         // 4.31
 //	cell := advice.Cell(spacing)                     // 2, "..."
 //	interval := advice.Interval(surface.Z())         // 0.5, "..."
 //	edge := advice.MaxEdge(spacing)                  // 10, "..."
+//	touch := advice.TouchWithin(points, segments, 3) // 0.0005, "..."
 //	share := advice.LongOutline(mesh, edge.Value.Float64()) // 0.07
 //
 // # Conventions
