@@ -34,6 +34,8 @@ func valueNote(l grid.Labels) string {
 		return "slope, rise over run"
 	case "downhill-azimuth":
 		return "downhill azimuth, degrees clockwise from north"
+	case shades:
+		return "shade, the share of a light from the north-west"
 	default:
 		what = l.Show
 	}

@@ -7,33 +7,35 @@ import (
 	"strings"
 	"sync"
 
-	"golang.org/x/image/font"
 	"golang.org/x/image/font/gofont/goregular"
-	"golang.org/x/image/font/opentype"
-	"golang.org/x/image/math/fixed"
+	"golang.org/x/image/font/sfnt"
 )
 
 // goRegular is the font of all texts in pictures of pixels.
-var goRegular = sync.OnceValues(func() (*opentype.Font, error) { return opentype.Parse(goregular.TTF) })
+var goRegular = sync.OnceValues(func() (*sfnt.Font, error) { return sfnt.Parse(goregular.TTF) })
 
 // pen writes and rules on an image.
 type pen struct {
 	em   int // size of letters in pixels
-	face font.Face
+	font *sfnt.Font
+	buf  sfnt.Buffer
 	ink  color.RGBA
 }
 
 func newPen(em int) (pen, error) {
 	f, err := goRegular()
-	if err != nil {
-		return pen{}, err
-	}
-	face, err := opentype.NewFace(f, &opentype.FaceOptions{Size: float64(em), DPI: 72, Hinting: font.HintingNone})
-	return pen{em: em, face: face, ink: color.RGBA{43, 47, 51, 255}}, err
+	return pen{em: em, font: f, ink: color.RGBA{43, 47, 51, 255}}, err
 }
 
 // width returns that of a text in pixels, rounded up.
-func (p *pen) width(text string) int { return font.MeasureString(p.face, text).Ceil() }
+func (p *pen) width(text string) int {
+	sum := 0
+	for _, r := range text {
+		a, _ := p.advance(r)
+		sum += a
+	}
+	return (sum + 63) / 64
+}
 
 // Where a text stands about its x.
 type side uint8
@@ -45,15 +47,19 @@ const (
 )
 
 // words writes text with its baseline at y.
-func (p *pen) words(img draw.Image, x, y int, where side, text string) {
+func (p *pen) words(img *image.RGBA, x, y int, where side, text string) {
 	switch where {
 	case aboutX:
 		x -= p.width(text) / 2
 	case upToX:
 		x -= p.width(text)
 	}
-	d := font.Drawer{Dst: img, Src: image.NewUniform(p.ink), Face: p.face, Dot: fixed.P(x, y)}
-	d.DrawString(text)
+	at := 64 * x
+	for _, r := range text {
+		a, glyph := p.advance(r)
+		p.letter(img, at, y, glyph)
+		at += a
+	}
 }
 
 // box fills a rectangle.

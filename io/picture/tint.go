@@ -11,6 +11,9 @@ var heightTint = tint{{62, 92, 128}, {74, 128, 134}, {108, 156, 112}, {176, 177,
 // roundTint is for directions, which begin again where they end: north light, south dark, east warm and west cool.
 var roundTint = tint{{236, 230, 214}, {204, 146, 104}, {98, 74, 92}, {92, 142, 164}, {236, 230, 214}}
 
+// greyTint is for shade, from dark to light. Colour would say something about height.
+var greyTint = tint{{28, 30, 32}, {250, 250, 248}}
+
 // at returns the colour at part of whole. whole is at least part, and above 0.
 func (t tint) at(part, whole uint32) (r, g, b uint8) {
 	c := t.light(part, whole).bytes()
