@@ -227,3 +227,69 @@ func TestConstrainedRatios(t *testing.T) {
 		}
 	}
 }
+
+// crossingSegments joins n pairs of points about three spacings apart, whether
+// they cross or not.
+func crossingSegments(t testing.TB, pts []orb.Point, n int) []triangulate.Segment {
+	t.Helper()
+	m := mustDelaunay(t, pts)
+	in, l, step := m.Inputs(), m.Locator(), spacing(pts)
+	rng := rand.New(rand.NewPCG(1, 3))
+	var segs []triangulate.Segment
+	for len(segs) < n {
+		i := int32(rng.IntN(len(pts)))
+		p := pts[i]
+		k := nearestCorner(l, m, in, orb.Point{p[0] + rng.NormFloat64()*step*2.5, p[1] + rng.NormFloat64()*step*2.5})
+		if k >= 0 && pts[k] != p {
+			segs = append(segs, triangulate.Segment{From: i, To: k})
+		}
+	}
+	return segs
+}
+
+// BenchmarkSegments measures what segments go through before they are inserted: a
+// tenth as many as points. The floor adds up the coordinates of their ends.
+func BenchmarkSegments(b *testing.B) {
+	for _, n := range benchSizes() {
+		pts := pointsets.Uniform(n, 1)
+		apart, crossing := shortSegments(b, pts, n/10), crossingSegments(b, pts, n/10)
+		found := 0
+		for _, k := range []struct {
+			name string
+			run  func()
+		}{
+			{"find-crossings-none", func() { found = len(triangulate.FindCrossings(pts, apart)) }},
+			{"find-crossings-many", func() { found = len(triangulate.FindCrossings(pts, crossing)) }},
+			{"split-crossings-none", func() { found = made(b, pts, apart) }},
+			{"split-crossings-many", func() { found = made(b, pts, crossing) }},
+			{"touch", func() {
+				_, _, touched := triangulate.Touch(pts, apart, spacing(pts)/100)
+				found = len(touched)
+			}},
+			{"floor-read", func() {
+				sum := 0.0
+				for _, s := range apart {
+					sum += pts[s.From][0] + pts[s.To][1]
+				}
+				found = int(sum)
+			}},
+		} {
+			b.Run(k.name+"/"+pointsets.SizeName(n), func(b *testing.B) {
+				for b.Loop() {
+					k.run()
+				}
+				rate(b, len(apart), "segments/s")
+				b.ReportMetric(float64(found), "found")
+			})
+		}
+	}
+}
+
+// made counts the vertices that splitting makes.
+func made(b *testing.B, pts []orb.Point, segs []triangulate.Segment) int {
+	s, err := triangulate.SplitCrossings(context.Background(), pts, segs)
+	if err != nil {
+		b.Fatal(err)
+	}
+	return len(s.Made)
+}
