@@ -30,19 +30,21 @@ the third multiple of 0.1 is 0.3.
 With --bands, or --out bands=FILE, the surface is cut into polygons between
 neighbouring levels, the lowest open below and the highest open above.
 
-Formats by extension: .geojson and .csv. In GeoJSON a line has its level as
+Formats by extension: .geojson, .csv and .svg. In GeoJSON a line has its level as
 height and the properties level, rank (index or intermediate), closed and
 depression (a closed line round lower ground); a band has lower and upper. A CSV
-of lines has a vertex a row: line, level, rank, closed, x, y.
+of lines has a vertex a row: line, level, rank, closed, x, y. An SVG is a quick
+look: index lines heavier and with their level, the outline, a scale bar.
 
 --from-raster draws through a raster instead of readings, a CSV or raw file as
 grid writes them: straight through each square between four nodes, the mean of
 the four deciding where a line could turn either way.`
 
-const contourExample = `isofacet contour sample:gravel-pit/shots.csv --exclude sample:gravel-pit/decisions.csv --interval 1 --out pit.geojson
-isofacet contour sample:gravel-pit/shots.csv --levels 205,210,215,220 --bands --out bands.geojson
-isofacet contour sample:landfill/heads-2024-q1.csv --interval 0.5 --format csv
-isofacet grid sample:gravel-pit/shots.csv --cell 5 | isofacet contour --from-raster - --interval 2 --format csv | head`
+const contourExample = `isofacet contour sample:gravel-pit/shots.csv --interval 1 --out pit.geojson
+isofacet contour sample:gravel-pit/shots.csv --levels 205,210,215 --bands
+isofacet contour sample:landfill/heads-2024-q1.csv --interval 0.5 --out q1.svg
+isofacet grid sample:gravel-pit/shots.csv --cell 5 --out raster.csv
+isofacet contour --from-raster raster.csv --interval 2 --format csv | head`
 
 // newContour is "isofacet contour".
 func newContour(p *program) *cobra.Command {
@@ -57,7 +59,7 @@ func newContour(p *program) *cobra.Command {
 	fs := cmd.Flags()
 	manual.Add(fs, c.options()...)
 	manual.Add(fs, c.reading.readingOptions()...)
-	manual.Add(fs, c.writing.writingOptions(contourParts, []string{formatGeoJSON, formatCSV})...)
+	manual.Add(fs, c.writing.writingOptions(contourParts, []string{formatGeoJSON, formatCSV, formatSVG})...)
 	manual.Add(fs, p.runningOptions()...)
 	return cmd
 }
@@ -70,10 +72,13 @@ const (
 
 var contourParts = []string{partLines, partBands}
 
-// The format of shapes.
-const formatGeoJSON = "geojson"
+// Formats of shapes.
+const (
+	formatGeoJSON = "geojson"
+	formatSVG     = "svg"
+)
 
-var contourFormats = map[string]string{".geojson": formatGeoJSON, ".csv": formatCSV}
+var contourFormats = map[string]string{".geojson": formatGeoJSON, ".csv": formatCSV, ".svg": formatSVG}
 
 const groupIsolines = "Isolines"
 
@@ -81,14 +86,15 @@ type contourCommand struct {
 	*program
 	reading
 	writing
-	interval   parsed[decimal.Number]
-	countFrom  option.Number
-	levels     parsed[[]decimal.Number]
-	indexEvery parsed[int]
-	bands      manual.Switch
-	shortest   option.Number
-	fromRaster typed
-	noData     option.Number
+	interval     parsed[decimal.Number]
+	countFrom    option.Number
+	levels       parsed[[]decimal.Number]
+	indexEvery   parsed[int]
+	bands        manual.Switch
+	shortest     option.Number
+	showReadings manual.Switch
+	fromRaster   typed
+	noData       option.Number
 }
 
 func (c *contourCommand) options() []manual.Option {
@@ -108,6 +114,7 @@ func (c *contourCommand) options() []manual.Option {
 		{Group: group, Name: "bands", Value: &c.bands, Switch: true, Text: "filled bands between the levels instead of lines"},
 		{Group: group, Name: "shortest", Value: &c.shortest, Default: "0",
 			Text: "leave out lines shorter than this, in the unit of x and y, and list them"},
+		{Group: group, Name: "show-readings", Value: &c.showReadings, Switch: true, Text: "a dot at every reading in an SVG"},
 		{Group: group, Name: "from-raster", Value: &c.fromRaster,
 			Text: "raster to draw through instead of readings: a CSV or raw file, - for a CSV on standard input"},
 		{Group: group, Name: "no-data", Value: &c.noData, Default: "an empty field; NaN in raw files",
@@ -210,6 +217,8 @@ func (c *contourCommand) check(cmd *cobra.Command, files []string) error {
 		return status.Usage(errors.New("--no-data with a raw raster: expected none: its description says what stands for no value"), "leave --no-data out")
 	case len(files) > 0:
 		return status.Usage(fmt.Errorf("%q beside --from-raster: expected readings or a raster, not both", files[0]), "leave one of them out")
+	case bool(c.showReadings):
+		return status.Usage(errors.New("--show-readings with --from-raster: expected readings to show"), "leave --show-readings out: a raster has none")
 	}
 	return c.noReadings(cmd)
 }
@@ -229,12 +238,22 @@ func (c *contourCommand) noReadings(cmd *cobra.Command) error {
 
 // unused refuses an option that nothing would follow.
 func (c *contourCommand) unused(cmd *cobra.Command, dests []*destination) error {
-	lines := slices.ContainsFunc(dests, func(d *destination) bool { return d.part == partLines })
-	switch {
+	var lines, ranked, svg, text bool
+	for _, d := range dests {
+		lines = lines || d.part == partLines
+		ranked = ranked || d.part == partLines || d.format == formatSVG
+		svg = svg || d.format == formatSVG
+		text = text || d.format != formatSVG
+	}
+	switch fs := cmd.Flags(); {
 	case !lines && c.shortest.IsSet():
 		return status.Usage(errors.New("--shortest without lines: expected an output of lines: bands cover the whole surface"), "leave --shortest out")
-	case !lines && cmd.Flags().Changed("index-every"):
+	case !ranked && fs.Changed("index-every"):
 		return status.Usage(errors.New("--index-every without lines: expected an output of lines: bands have no rank"), "leave --index-every out")
+	case !svg && bool(c.showReadings):
+		return status.Usage(errors.New("--show-readings without an SVG output: expected an output that shows something"), "add --out FILE.svg, or leave --show-readings out")
+	case !text && fs.Changed("decimals"):
+		return status.Usage(errors.New("--decimals without a GeoJSON or CSV output: expected none: a picture is as fine as it can be seen"), "leave --decimals out")
 	}
 	return nil
 }

@@ -95,22 +95,27 @@ func (g *ground) bands(ctx context.Context, levels contour.Levels, opt contour.O
 	return contour.Bands(ctx, g.surface, levels, opt)
 }
 
-// rims returns the outline as closed lines: every rim of the surface, or the
-// frame of the nodes of a raster.
-func (g *ground) rims() []orb.LineString {
+// rims returns every rim of the surface as a ring, those of voids among them.
+func (g *ground) rims(ctx context.Context, opt contour.Options) ([]orb.Ring, error) {
 	if g.raster != nil {
-		return nil
+		// Without levels there is one band, which is everything.
+		all, err := contour.RasterBands(ctx, g.raster, nil, opt)
+		var rims []orb.Ring
+		for i := range all {
+			rims = append(rims, all[i].Polygon...)
+		}
+		return rims, err
 	}
 	m := g.surface.Mesh()
-	var rims []orb.LineString
-	for _, ring := range m.Outline() {
-		rim := make(orb.LineString, 0, len(ring)+1)
-		for _, h := range ring {
+	var rims []orb.Ring
+	for _, halfEdges := range m.Outline() {
+		rim := make(orb.Ring, 0, len(halfEdges)+1)
+		for _, h := range halfEdges {
 			rim = append(rim, m.Position(m.Origin(h)))
 		}
 		rims = append(rims, append(rim, rim[0]))
 	}
-	return rims
+	return rims, nil
 }
 
 // taken is what the ground holds of the memory.

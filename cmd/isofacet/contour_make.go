@@ -146,6 +146,8 @@ func (d *drawing) makeBands(ctx context.Context) error {
 // write writes one output.
 func (d *drawing) write(ctx context.Context, dest *destination) error {
 	switch {
+	case dest.format == formatSVG:
+		return d.picture(ctx, dest)
 	case dest.format == formatCSV && dest.part == partBands:
 		return d.bandTable(dest)
 	case dest.format == formatCSV:

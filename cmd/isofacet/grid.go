@@ -13,7 +13,7 @@ import (
 	"isofacet/grid"
 )
 
-const gridLong = `Reads a raster off the surface: the value, slope or downhill azimuth at every
+const gridLong = `Reads a raster off the surface: the value, slope, downhill azimuth or shade at every
 node of a lattice. Nodes outside the surface have no value; a node on its outline
 has one.
 
@@ -22,16 +22,19 @@ size fit together: with --values-at centres the edges of the cells lie on them,
 with --values-at corners the nodes. Without --extent the lattice covers the
 readings.
 
-Formats by extension: .csv and .raw. A CSV matrix has the x of the columns in its
+Formats by extension: .csv, .raw and .png. A CSV matrix has the x of the columns in its
 first row and the y of a row in its first column, the northern row first; a list
 has a node a line. A raw file holds the bare numbers, little-endian, the northern
-row first, and a .json beside it says what they are.
+row first, and a .json beside it says what they are. A PNG is a quick look: values
+by colour and shaded as relief, with a scale.
 
 Slope is rise over run. The downhill azimuth is where water would run, in degrees
-clockwise from grid north; a flat has none.`
+clockwise from grid north; a flat has none. Shade is the share, from 0 to 1, of a
+light from the north-west, 45 degrees high, that a triangle is struck by.`
 
 const gridExample = `isofacet grid sample:gravel-pit/shots.csv --cell 5 --out pit.csv
 isofacet grid sample:gravel-pit/shots.csv --cell 2 --out slope=slope.raw
+isofacet grid sample:landfill/heads-2024-q1.csv --cell 10 --out heads.png
 isofacet grid sample:landfill/heads-2024-q1.csv --cell 50 --layout list | head`
 
 // newGrid is "isofacet grid".
@@ -47,19 +50,20 @@ func newGrid(p *program) *cobra.Command {
 	fs := cmd.Flags()
 	manual.Add(fs, g.options()...)
 	manual.Add(fs, g.reading.readingOptions()...)
-	manual.Add(fs, g.writing.writingOptions(gridParts, []string{formatCSV, formatRaw, formatRaw32})...)
+	manual.Add(fs, g.writing.writingOptions(gridParts, []string{formatCSV, formatRaw, formatRaw32, formatPNG})...)
 	manual.Add(fs, p.runningOptions()...)
 	return cmd
 }
 
 // What a raster can show; also the parts of --out.
-var gridParts = []string{grid.Value.String(), grid.Slope.String(), grid.DownhillAzimuth.String()}
+var gridParts = []string{grid.Value.String(), grid.Slope.String(), grid.DownhillAzimuth.String(), grid.Shade.String()}
 
 // The formats of a raster.
 const (
 	formatCSV   = "csv"
 	formatRaw   = "raw"
 	formatRaw32 = "raw-float32"
+	formatPNG   = "png"
 )
 
 type gridCommand struct {
@@ -104,7 +108,7 @@ func (g *gridCommand) run(cmd *cobra.Command, files []string) error {
 	if err != nil {
 		return err
 	}
-	dests, err := g.destinations(g.show.Word(), files, byExtensions(map[string]string{".csv": formatCSV, ".raw": formatRaw}), formatCSV)
+	dests, err := g.destinations(g.show.Word(), files, byExtensions(map[string]string{".csv": formatCSV, ".raw": formatRaw, ".png": formatPNG}), formatCSV)
 	if err != nil {
 		return err
 	}
@@ -162,12 +166,14 @@ func (g *gridCommand) check() error {
 // unused refuses an option that nothing would follow.
 func (g *gridCommand) unused(cmd *cobra.Command, dests []*destination) error {
 	texts := slices.ContainsFunc(dests, func(d *destination) bool { return d.format == formatCSV })
-	raws := slices.ContainsFunc(dests, func(d *destination) bool { return d.format != formatCSV })
+	raws := slices.ContainsFunc(dests, func(d *destination) bool { return family(d.format) == formatRaw })
 	switch {
 	case !texts && cmd.Flags().Changed("layout"):
 		return status.Usage(errors.New("--layout without a CSV output: expected an output that has a layout"), "add --out FILE.csv, or leave --layout out")
 	case !texts && cmd.Flags().Changed("decimals"):
-		return status.Usage(errors.New("--decimals without a CSV output: expected none: a raw file holds the numbers themselves"), "leave --decimals out")
+		return status.Usage(errors.New("--decimals without a CSV output: expected none: other formats do not write numbers as text"), "leave --decimals out")
+	case g.noData.IsSet() && !raws && !texts:
+		return status.Usage(errors.New("--no-data without a CSV or raw output: expected none: a picture has a colour for it"), "leave --no-data out")
 	case g.noData.IsSet() && !raws && g.layout.Word() == "list":
 		return status.Usage(errors.New("--no-data with --layout list: expected none: a list leaves nodes without a value out"), "leave --no-data out, or write --layout matrix")
 	}

@@ -99,7 +99,7 @@ func (g *gridCommand) fill(ctx context.Context, l *loaded, spec grid.Spec, part 
 	report, finish := g.display.Stage("filling")
 	defer finish()
 	show := grid.Value
-	for _, s := range []grid.Show{grid.Slope, grid.DownhillAzimuth} {
+	for _, s := range []grid.Show{grid.Slope, grid.DownhillAzimuth, grid.Shade} {
 		if part == s.String() {
 			show = s
 		}
@@ -139,6 +139,8 @@ func (g *gridCommand) valueDigits(l *loaded, part string) int {
 		return g.decimals.Resolve(slopeDigits)
 	case grid.DownhillAzimuth.String():
 		return g.decimals.Resolve(azimuthDigits)
+	case grid.Shade.String():
+		return g.decimals.Resolve(shadeDigits)
 	}
 	_, z := l.digits(g.decimals)
 	return z
@@ -146,8 +148,11 @@ func (g *gridCommand) valueDigits(l *loaded, part string) int {
 
 // writeRaster writes a raster to one output.
 func (g *gridCommand) writeRaster(d *destination, raster *grid.Grid, l *loaded) error {
-	if d.format != formatCSV {
+	switch d.format {
+	case formatRaw, formatRaw32:
 		return g.writeRaw(d, raster, l)
+	case formatPNG:
+		return g.writePicture(d, raster, l)
 	}
 	opt := gridcsv.Options{
 		// Nodes stand at decimal places, which may need more digits than the
@@ -217,6 +222,8 @@ func (g *gridCommand) digitsCarried(l *loaded, part string) int {
 		return slopeDigits
 	case grid.DownhillAzimuth.String():
 		return azimuthDigits
+	case grid.Shade.String():
+		return shadeDigits
 	}
 	return l.set.DecimalsZ
 }

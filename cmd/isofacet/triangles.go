@@ -27,8 +27,8 @@ and azimuth. The vertices can be written as GeoJSON points too.
 Slope is rise over run. The downhill azimuth is where water would run, in degrees
 clockwise from grid north; a flat has none.`
 
-const trianglesExample = `isofacet triangles sample:gravel-pit/shots.csv --exclude sample:gravel-pit/decisions.csv --out pit.geojson
-isofacet triangles sample:landfill/heads-2024-q1.csv --out vertices=vertices.csv --out triangles=triangles.csv
+const trianglesExample = `isofacet triangles sample:gravel-pit/shots.csv --out pit.geojson
+isofacet triangles sample:landfill/heads-2024-q1.csv --out vertices=v.csv
 isofacet triangles sample:landfill/heads-2024-q1.csv --format csv`
 
 // newTriangles is "isofacet triangles".
@@ -94,11 +94,11 @@ type trianglesResult struct {
 	Surface surfaceCounts `json:"surface"`
 }
 
-// What ordering triangles takes in memory for each of them (a key and its place),
+// What ordering triangles takes in memory for each of them,
 // and what vertices take beside what they have.
 const (
-	bytesTriangleOrder = 20
-	bytesVertexOrder   = 20
+	bytesTriangleOrder = 8
+	bytesVertexOrder   = 24
 )
 
 // make orders the surface and writes it.
