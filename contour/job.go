@@ -169,7 +169,6 @@ func (j *job) cellsOf(k int) int64 { return j.seedFirst[k+1] - j.seedFirst[k] }
 type traced struct {
 	lines         []Line
 	withoutLength int64
-	err           error
 }
 
 // batch follows the levels from..to and returns what came out of each.

@@ -164,8 +164,8 @@ func (s *raster) middleAbove(cell int, z float64) bool {
 	c := s.corners(cell)
 	a, b, d, e := s.values[c[0]], s.values[c[1]], s.values[c[2]], s.values[c[3]]
 	// Five numbers added in doubles are off by less than 4 x 2^-53 of the sum of their sizes each.
-	sum := ((a + b) + (d + e)) - 4*z
-	if bound := 0x1p-50 * (math.Abs(a) + math.Abs(b) + math.Abs(d) + math.Abs(e) + 4*math.Abs(z)); math.Abs(sum) > bound {
+	sum := ((a + b) + (d + e)) - float64(4*z)
+	if bound := 0x1p-50 * (math.Abs(a) + math.Abs(b) + math.Abs(d) + math.Abs(e) + float64(4*math.Abs(z))); math.Abs(sum) > bound {
 		return sum > 0
 	}
 	var s5 exact.Sum

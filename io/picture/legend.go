@@ -23,7 +23,7 @@ func (m *Map) Close() (Report, error) {
 	m.samples(top)
 	y := m.legendTop() + m.legendHeight()
 	for i, note := range m.notes {
-		m.words(marginSide, y+letters+float64(i)*1.4*letters, letters, "start", note)
+		m.words(marginSide, y+letters+float64(float64(i)*1.4*letters), letters, "start", note)
 	}
 	m.put("</svg>\n")
 	m.flush()
@@ -75,7 +75,7 @@ func (m *Map) bar(top float64) {
 	x, y := marginSide, top+letters+1.5
 	m.put(`<g stroke="`, ink, `" stroke-width=".2">`,
 		`<rect x="`, mm(x), `" y="`, mm(y), `" width="`, mm(long/2), `" height="1.4" fill="`, ink, `"/>`,
-		`<rect x="`, mm(x+long/2), `" y="`, mm(y), `" width="`, mm(long/2), `" height="1.4" fill="#fff"/></g>`, "\n")
+		`<rect x="`, mm(x+float64(long/2)), `" y="`, mm(y), `" width="`, mm(long/2), `" height="1.4" fill="#fff"/></g>`, "\n")
 	m.words(x, y-1, letters, "start", "0")
 	m.words(x+long, y-1, letters, "middle", ground.String())
 	unit := unitName(m.opt.Labels.XYUnit)
@@ -93,7 +93,7 @@ func (m *Map) samples(top float64) {
 	x := marginSide + legendLeast/2
 	row := 0
 	sample := func(attributes, text string) {
-		y := top + 2.2 + float64(row)*legendRow
+		y := top + 2.2 + float64(float64(row)*legendRow)
 		m.put(`<path d="M`, mm(x), " ", mm(y), `h12" `, attributes, "/>\n")
 		m.words(x+15, y+.36*letters, letters, "start", text)
 		row++
@@ -116,7 +116,7 @@ func (m *Map) samples(top float64) {
 		sample(`stroke="`+rimColour+`" stroke-width="`+mm(rimWidth)+`" stroke-dasharray="3 .8 .5 .8"`, "edge of the surface")
 	}
 	if m.report.Dots > 0 {
-		y := top + 2.2 + float64(row)*legendRow
+		y := top + 2.2 + float64(float64(row)*legendRow)
 		m.put(`<circle cx="`, mm(x+6), `" cy="`, mm(y), `" r="`, mm(max(m.dotRadius, dotMost/2)), `" fill="`, dotColour, "\"/>\n")
 		m.words(x+15, y+.36*letters, letters, "start", "reading")
 	}
@@ -145,12 +145,12 @@ func (m *Map) bandBar(top float64) {
 	each := long / float64(len(levels)+1)
 	for k := range len(levels) + 1 {
 		colour := m.bandColour(k)
-		m.put(`<rect x="`, mm(marginSide+float64(k)*each), `" y="`, mm(top), `" width="`, mm(each), `" height="`, mm(high), `" fill="`, colour, `" stroke="`, colour, `" stroke-width=".05"/>`, "\n")
+		m.put(`<rect x="`, mm(marginSide+float64(float64(k)*each)), `" y="`, mm(top), `" width="`, mm(each), `" height="`, mm(high), `" fill="`, colour, `" stroke="`, colour, `" stroke-width=".05"/>`, "\n")
 	}
 	m.put(`<rect x="`, mm(marginSide), `" y="`, mm(top), `" width="`, mm(long), `" height="`, mm(high), `" stroke="`, ink, `" stroke-width=".2"/>`, "\n")
 	every := bandStride(levels, each)
 	for k := every - 1; k < len(levels); k += every {
-		x := marginSide + float64(k+1)*each
+		x := marginSide + float64(float64(k+1)*each)
 		m.put(`<path d="M`, mm(x), " ", mm(top), "v", mm(high+1), `" stroke="`, ink, `" stroke-width=".2"/>`, "\n")
 		m.words(x, top+high+1+letters, letters, "middle", levels[k])
 	}
@@ -161,7 +161,7 @@ func (m *Map) bandBar(top float64) {
 func bandStride(levels []string, each float64) int {
 	widest := 0.0
 	for _, l := range levels {
-		widest = max(widest, textWidth(l, letters)+1.6)
+		widest = max(widest, float64(textWidth(l, letters))+1.6)
 	}
 	for power := 1; ; power *= 10 {
 		for _, digit := range []int{1, 2, 5} {

@@ -130,14 +130,14 @@ func (m *Map) layout() {
 	m.width = max(f.width, legendLeast) + 2*marginSide
 	f.left, f.top = marginSide, marginTop
 	if title := wrap(m.opt.Title, titleSize, m.width-2*marginSide); len(title) > 0 {
-		f.top += float64(len(title))*1.3*titleSize + 1
+		f.top += float64(float64(len(title))*1.3*titleSize) + 1
 	}
 	f.top += 1.3 * letters // the upper right corner
 	m.notes = nil
 	for _, note := range []string{valueNote(m.opt.Labels), placeNote(m.opt.Labels)} {
 		m.notes = append(m.notes, wrap(note, letters, m.width-2*marginSide)...)
 	}
-	m.height = m.legendTop() + m.legendHeight() + float64(len(m.notes))*1.4*letters + marginFoot
+	m.height = m.legendTop() + m.legendHeight() + float64(float64(len(m.notes))*1.4*letters) + marginFoot
 	m.placer = newPlacer(f)
 }
 
@@ -159,7 +159,7 @@ func (m *Map) head() {
 	}
 	m.put(`<rect width="`, w, `" height="`, h, `" fill="#fff"/>`, "\n")
 	for i, line := range wrap(m.opt.Title, titleSize, m.width-2*marginSide) {
-		m.words(marginSide, marginTop+titleSize+float64(i)*1.3*titleSize, titleSize, "start", line)
+		m.words(marginSide, marginTop+titleSize+float64(float64(i)*1.3*titleSize), titleSize, "start", line)
 	}
 }
 

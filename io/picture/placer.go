@@ -55,7 +55,7 @@ func (p *placer) offer(line []spot, text string, index bool) {
 	} else if len(p.index.labels) > 0 {
 		return
 	}
-	half := 50*textWidth(text, levelSize) + 40
+	half := float64(50*textWidth(text, levelSize)) + 40
 	p.along = append(p.along[:0], 0)
 	for i := 1; i < len(line); i++ {
 		p.along = append(p.along, p.along[i-1]+length(float64(line[i].x-line[i-1].x), float64(line[i].y-line[i-1].y)))

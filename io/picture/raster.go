@@ -114,7 +114,7 @@ func (p *plate) part(v float64) uint32 {
 		return tintSteps / 2
 	}
 	// Half of each, so that the range of numbers of opposite signs does not overflow.
-	t := (v/2 - p.low/2) / (p.high/2 - p.low/2)
+	t := (float64(v/2) - float64(p.low/2)) / (float64(p.high/2) - float64(p.low/2))
 	return uint32(math.RoundToEven(float64(tintSteps * max(0, min(t, 1)))))
 }
 
