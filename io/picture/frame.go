@@ -25,7 +25,7 @@ func newFrame(extent orb.Bound, widthMost, heightMost float64) frame {
 		extent.Max[0], extent.Max[1] = extent.Max[0]+0.5, extent.Max[1]+0.5
 	}
 	// No side shorter than an eighth of the other, so that there is something to see of a single line.
-	padX, padY := float64(max(0, size/8-w)/2)+float64(size/80), float64(max(0, size/8-h)/2)+float64(size/80)
+	padX, padY := float64(max(0, float64(size/8)-w)/2)+float64(size/80), float64(max(0, float64(size/8)-h)/2)+float64(size/80)
 	step := roundUp(size / 100)
 	f := frame{}
 	f.ground.Min[0], f.ground.Max[0] = outward(step, extent.Min[0]-padX, extent.Max[0]+padX)
