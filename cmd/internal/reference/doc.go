@@ -11,6 +11,8 @@
 //	vectors_test.go      small cases with known answers
 //	isolines_test.go     lengths and counts of lines, through triangles and squares
 //	bands_test.go        areas between levels
+//	lines_test.go        breaklines, boundaries and voids: solids, clips, bad rings
+//	pit_test.go          the sample of a gravel pit with and without its lines
 //
 // The figures stand in testdata, whose README.md names their sources, and in the
 // folder that ISOFACET_REFERENCE names: data that may not be kept here. Without
