@@ -45,11 +45,13 @@ type bandsResult struct {
 	Points   int `json:"points"`
 }
 
-// What following lines and making bands takes in memory, by piece: a line's way
-// through one triangle. Measured on white noise, which has the most of them.
+// What following lines and making bands takes in memory at most, by piece: a line's
+// way through one triangle. White noise of 2e5 readings at 1, 2 and 9 levels came to
+// 70, 70 and 54 for lines, which are handed out as they come, and to 158, 190 and 130
+// for bands, which are not.
 const (
-	bytesLinePiece = 24
-	bytesBandPiece = 160
+	bytesLinePiece = 70
+	bytesBandPiece = 190
 )
 
 // drawing is one run's work on lines and bands.

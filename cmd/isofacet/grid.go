@@ -144,7 +144,7 @@ func (g *gridCommand) run(cmd *cobra.Command, files []string) error {
 			return err
 		}
 	}
-	if err := g.fits(l, spec); err != nil {
+	if err := g.fits(l, spec, dests); err != nil {
 		return err
 	}
 	return g.make(cmd, files, list, l, spec, out)
@@ -201,13 +201,24 @@ func (g *gridCommand) lattice(l *loaded) (grid.Spec, error) {
 // mesh (68) and the surface's values (8).
 const bytesVertex = 120
 
+// A picture has at most so many pixels a side; it takes 8 bytes for each value that it
+// shows and 4 a pixel, legend included.
+const (
+	pictureSide   = 2000
+	picturePixels = pictureSide * pictureSide * 3 / 2
+)
+
 // fits states what the raster needs and refuses what would not fit beside the
 // surface.
-func (g *gridCommand) fits(l *loaded, spec grid.Spec) error {
+func (g *gridCommand) fits(l *loaded, spec grid.Spec, dests []*destination) error {
 	taken := uint64(l.set.Len()) * bytesVertex
 	left := int64(g.budget.Bytes) - int64(taken)
 	if err := spec.Check(max(left, 0)); err != nil {
 		return err
 	}
-	return g.announce(fmt.Sprintf("a raster of %d x %d nodes", spec.Cols, spec.Rows), taken+uint64(spec.Bytes()))
+	need := taken + uint64(spec.Bytes())
+	if slices.ContainsFunc(dests, func(d *destination) bool { return d.format == formatPNG }) {
+		need += uint64(min(spec.NumNodes(), pictureSide*pictureSide))*8 + picturePixels*4
+	}
+	return g.announce(fmt.Sprintf("a raster of %d x %d nodes", spec.Cols, spec.Rows), need)
 }

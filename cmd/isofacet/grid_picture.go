@@ -21,7 +21,7 @@ func (l *loaded) title() string {
 
 // writePicture draws a quick look at a raster as PNG.
 func (g *gridCommand) writePicture(d *destination, raster *grid.Grid, l *loaded) error {
-	r, err := picture.WriteRaster(d.w, raster, picture.RasterOptions{Title: l.title()})
+	r, err := picture.WriteRaster(d.w, raster, picture.RasterOptions{Title: l.title(), PixelsMost: pictureSide})
 	if err != nil {
 		return err
 	}
