@@ -169,18 +169,48 @@ func (c *cutter) ringEdge(a, b orb.Point) {
 	}
 }
 
-// point returns the number of the point at p, which lies on what is given.
+// point returns the number of the point at p, which lies on what is given. Where
+// edges run together, crossings with several of them may round to one point: it has
+// its value from the first by place, whichever way the rings run.
 func (c *cutter) point(p orb.Point, on support) int32 {
 	k, ok := c.index[p]
 	if !ok {
 		k = int32(len(c.pts))
 		c.index[p] = k
 		c.pts, c.supports = append(c.pts, p), append(c.supports, on)
+	} else if old := &c.supports[int(k)-c.whole.NumVertices()]; c.compare(on, *old) < 0 {
+		*old = on
 	}
 	if on.triangle != triangulate.NoTriangle {
 		c.touched[on.triangle] = true
 	}
 	return k
+}
+
+// compare orders supports, edges before triangles, by the places of their vertices.
+func (c *cutter) compare(a, b support) int {
+	if (a.edge == triangulate.NoHalfEdge) != (b.edge == triangulate.NoHalfEdge) {
+		if a.edge != triangulate.NoHalfEdge {
+			return -1
+		}
+		return 1
+	}
+	return slices.CompareFunc(c.corners(a), c.corners(b), func(p, q orb.Point) int { return exact.CompareXY(p, q) })
+}
+
+// corners returns the places of a support's vertices in order.
+func (c *cutter) corners(s support) []orb.Point {
+	m := c.whole
+	var at []orb.Point
+	if s.edge != triangulate.NoHalfEdge {
+		at = []orb.Point{m.Position(m.Origin(s.edge)), m.Position(m.Dest(s.edge))}
+	} else {
+		for _, v := range m.Corners(s.triangle) {
+			at = append(at, m.Position(v))
+		}
+	}
+	slices.SortFunc(at, func(p, q orb.Point) int { return exact.CompareXY(p, q) })
+	return at
 }
 
 // onEdge returns the number of the point where the line from a to b crosses the
