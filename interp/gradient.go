@@ -28,8 +28,13 @@ func (s *Surface) projections(i, j, k triangulate.Vertex) (zy, xz, xy float64) {
 		exact.Area2(pi[0], pi[1], pj[0], pj[1], pk[0], pk[1])
 }
 
-// Slope returns the rise over run of a plane with the gradient (dzdx, dzdy).
+// Slope returns the rise over run of a plane with the gradient (dzdx, dzdy). It
+// does not overflow before the gradient does: slivers can be steep beyond 1e154.
 func Slope(dzdx, dzdy float64) float64 {
+	if size := max(math.Abs(dzdx), math.Abs(dzdy)); size > 1e150 && !math.IsInf(size, 0) {
+		dzdx, dzdy = dzdx/size, dzdy/size
+		return size * math.Sqrt(float64(dzdx*dzdx)+float64(dzdy*dzdy))
+	}
 	return math.Sqrt(float64(dzdx*dzdx) + float64(dzdy*dzdy))
 }
 

@@ -41,3 +41,9 @@ func TestQuality(t *testing.T) {
 		t.Errorf("%d vertices without a triangle, want 3", got)
 	}
 }
+
+func TestSlopeDoesNotOverflow(t *testing.T) {
+	if got := interp.Slope(3e200, 4e200); got < 4.99999e200 || got > 5.00001e200 {
+		t.Errorf("got %v, want 5e200", got)
+	}
+}
