@@ -352,7 +352,7 @@ func (d *drawn) crossingError(e *interp.CrossingError) error {
 		texts = append(texts, fmt.Sprintf("%s cross near (%v, %v), at heights %v and %v: expected %s", who, c.At[0], c.At[1], c.ZA, c.ZB, expected))
 	}
 	if n := len(e.Crossings) - few; n > 0 {
-		texts = append(texts, fmt.Sprintf("and %d more crossings", n))
+		texts = append(texts, "and "+counted(n, "more crossing"))
 	}
 	return errors.New(strings.Join(texts, "\n"))
 }
