@@ -6,6 +6,7 @@ import (
 
 	"github.com/paulmach/orb"
 
+	"isofacet/interp"
 	"isofacet/triangulate"
 )
 
@@ -40,6 +41,34 @@ func (g *Grid) Mask(r *triangulate.Region) (taken int) {
 		}
 	}
 	return taken
+}
+
+// OwnOnRims gives every node on a rim of the region the slope, azimuth or shade of the
+// triangle that owns it on what the region leaves of the surface: the triangle that owns
+// it on the whole surface s may be in a void. Call it after Mask, with the clip of s and
+// what Fill was asked to show. Values are the same from both sides.
+//
+// Time O(rows + nodes near rims).
+func (g *Grid) OwnOnRims(r *triangulate.Region, s *interp.Surface, c *interp.Clip, show Show) {
+	if show == Value {
+		return
+	}
+	whole, tracer := s.Mesh().Locator(), c.Tracer()
+	xs, ys := g.Spec.Xs(), g.Spec.Ys()
+	for row, spans := range g.nearRims(r) {
+		at := 0
+		for _, span := range spans {
+			for at = max(at, span.from); at < span.to; at++ {
+				p := orb.Point{xs[at], ys[row]}
+				if r.Place(p) != triangulate.OnEdge {
+					continue
+				}
+				if loc := tracer.Kept(p, whole.LocateNext(p)); loc.Place != triangulate.Outside {
+					g.Row(row)[at] = show.of(s.Gradient(loc.Triangle))
+				}
+			}
+		}
+	}
 }
 
 // columnSpan holds columns from (included) to to (left out).

@@ -194,16 +194,22 @@ type writer struct {
 
 func (w *writer) prepare(t triangulate.Triangle) {
 	w.t = t
-	switch w.show {
-	case Value:
+	if w.show == Value {
 		w.s.PlaneInto(&w.plane, t)
-	case Slope:
-		w.fixed = interp.Slope(w.s.Gradient(w.t))
-	case DownhillAzimuth:
-		w.fixed = interp.DownhillAzimuth(w.s.Gradient(w.t))
-	case Shade:
-		w.fixed = shade(w.s.Gradient(w.t))
+		return
 	}
+	w.fixed = w.show.of(w.s.Gradient(t))
+}
+
+// of returns what is shown of a triangle with this gradient.
+func (s Show) of(dzdx, dzdy float64) float64 {
+	switch s {
+	case Slope:
+		return interp.Slope(dzdx, dzdy)
+	case DownhillAzimuth:
+		return interp.DownhillAzimuth(dzdx, dzdy)
+	}
+	return shade(dzdx, dzdy)
 }
 
 // row returns the values of a row counted from the south.

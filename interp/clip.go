@@ -22,6 +22,7 @@ type Clip struct {
 	// there. Its mesh's inputs are the old vertices, by number, then the new.
 	Surface *Surface
 
+	from     *Surface
 	segments [][]int32 // of the mesh's segments, those of the old mesh that they lie along
 	rings    int       // the first so many are pieces of rings
 }
@@ -95,7 +96,7 @@ func (s *Surface) Clip(ctx context.Context, r *triangulate.Region, opt triangula
 	for i := len(pts) - 1; i >= 0; i-- { // an old vertex has the last word
 		z[mesh.VertexOf(i)] = c.valueAt(i, pts[i])
 	}
-	clip := &Clip{segments: of, rings: rings}
+	clip := &Clip{from: s, segments: of, rings: rings}
 	outside := clip.outside(mesh, r, c)
 	mesh = mesh.Hide(func(t triangulate.Triangle) bool { return outside[t] || c.wasHidden(mesh, t) })
 	clip.Surface, err = New(mesh, z)

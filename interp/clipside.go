@@ -1,10 +1,6 @@
 package interp
 
-import (
-	"github.com/paulmach/orb"
-
-	"isofacet/triangulate"
-)
+import "isofacet/triangulate"
 
 // outside tells for every triangle of the divided mesh whether it lies outside the
 // region. Pieces of rings are edges, so triangles that hang together across other
@@ -86,13 +82,6 @@ func area2(m *triangulate.Mesh, t triangulate.Triangle) float64 {
 	v := m.Corners(t)
 	a, b, c := m.Position(v[0]), m.Position(v[1]), m.Position(v[2])
 	return float64((b[0]-a[0])*(c[1]-a[1])) - float64((b[1]-a[1])*(c[0]-a[0]))
-}
-
-// middle is about the centroid of t.
-func middle(m *triangulate.Mesh, t triangulate.Triangle) orb.Point {
-	v := m.Corners(t)
-	a, b, c := m.Position(v[0]), m.Position(v[1]), m.Position(v[2])
-	return orb.Point{a[0] + ((b[0]-a[0])+(c[0]-a[0]))/3, a[1] + ((b[1]-a[1])+(c[1]-a[1]))/3}
 }
 
 // wasHidden tells whether triangle t of the divided mesh is a part of a triangle

@@ -59,14 +59,28 @@ func NewRegion(boundary, voids []orb.Ring) (*Region, error) {
 
 // Contains tells whether p belongs to the region, exactly.
 // Time O(ring edges at the height of p).
-func (r *Region) Contains(p orb.Point) bool {
+func (r *Region) Contains(p orb.Point) bool { return r.Place(p) != Outside }
+
+// Place tells whether p is Inside the region, on a ring and so OnEdge, or Outside,
+// exactly. Time O(ring edges at the height of p).
+func (r *Region) Place(p orb.Point) Place {
+	place := Inside
 	if len(r.boundary.edges) > 0 {
-		if odd, onRim := r.boundary.around(p); !odd && !onRim {
-			return false
+		odd, onRim := r.boundary.around(p)
+		switch {
+		case onRim:
+			place = OnEdge
+		case !odd:
+			return Outside
 		}
 	}
-	odd, onRim := r.voids.around(p)
-	return !odd || onRim
+	switch odd, onRim := r.voids.around(p); {
+	case onRim:
+		place = OnEdge
+	case odd:
+		return Outside
+	}
+	return place
 }
 
 // Rings returns the boundary rings and the void rings, as given.

@@ -75,11 +75,9 @@ func (q *queryCommand) answer(cmd *cobra.Command, list []*input, l *loaded, aske
 	if err != nil {
 		return err
 	}
+	l.limitSamples(asked.points, samples)
 	outside := 0
 	for i := range samples {
-		if !l.contains(asked.points[i]) {
-			samples[i].Location = triangulate.Location{Place: triangulate.Outside, Triangle: triangulate.NoTriangle, Edge: triangulate.NoHalfEdge, Vertex: triangulate.NoVertex}
-		}
 		if samples[i].Location.Place == triangulate.Outside {
 			outside++
 		}

@@ -110,6 +110,7 @@ func (g *gridCommand) fill(ctx context.Context, l *loaded, spec grid.Spec, part 
 	}
 	if l.drawn.region != nil {
 		raster.Mask(l.drawn.region)
+		raster.OwnOnRims(l.drawn.region, l.surface, l.drawn.cut, show)
 	}
 	raster.Labels = g.labels(part)
 	return raster, nil

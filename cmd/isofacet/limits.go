@@ -196,3 +196,22 @@ func ringError(boundary, voids *lines.Set, err error) error {
 	}
 	return status.With(status.WrongData, errors.New(text), "mend the ring there; two rings may touch or lie inside each other")
 }
+
+// limitSamples makes places that boundary and voids leave out outside, and gives those on
+// a rim the triangle that owns them on what is left.
+func (l *loaded) limitSamples(at []orb.Point, samples []interp.Sample) {
+	d := l.drawn
+	if d.region == nil {
+		return
+	}
+	tracer := d.cut.Tracer()
+	for i := range samples {
+		s := &samples[i]
+		switch d.region.Place(at[i]) {
+		case triangulate.Outside:
+			s.Location = triangulate.Location{Place: triangulate.Outside, Triangle: triangulate.NoTriangle, Edge: triangulate.NoHalfEdge, Vertex: triangulate.NoVertex}
+		case triangulate.OnEdge:
+			s.Location = tracer.Kept(at[i], s.Location)
+		}
+	}
+}

@@ -6,12 +6,9 @@ import (
 	"strconv"
 	"strings"
 
-	"github.com/paulmach/orb"
-
 	"isofacet/cmd/internal/advice"
 	"isofacet/interp"
 	"isofacet/triangulate"
-	"isofacet/triangulate/exact"
 )
 
 // What inspect says of the lines that people draw, and of the triangles that came of
@@ -131,27 +128,13 @@ func (l *loaded) reaching() (*interp.Surface, error) {
 		return l.surface, nil
 	}
 	m, pieces := l.surface.Mesh(), l.drawn.cut.Surface.Mesh()
-	locator, reaches := m.Locator(), make([]bool, m.NumTriangles())
+	tracer, reaches := l.drawn.cut.Tracer(), make([]bool, m.NumTriangles())
 	for t := range pieces.Triangles() {
-		if at := locator.LocateNext(middle(pieces, t)); at.Place != triangulate.Outside {
-			reaches[at.Triangle] = true
+		if whole := tracer.TriangleOf(t); whole != triangulate.NoTriangle {
+			reaches[whole] = true
 		}
 	}
 	return interp.New(m.Hide(func(t triangulate.Triangle) bool { return !reaches[t] }), l.surface.Z())
-}
-
-// middle is about the centroid of t, whichever corner is its first.
-func middle(m *triangulate.Mesh, t triangulate.Triangle) orb.Point {
-	var c [3]orb.Point
-	for i, v := range m.Corners(t) {
-		c[i] = m.Position(v)
-	}
-	slices.SortFunc(c[:], func(a, b orb.Point) int { return exact.CompareXY(a, b) })
-	var p orb.Point
-	for k := range p {
-		p[k] = c[0][k] + ((c[1][k]-c[0][k])+(c[2][k]-c[0][k]))/3
-	}
-	return p
 }
 
 // nameVertex tells whose a vertex of the surface is.

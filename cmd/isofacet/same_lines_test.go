@@ -160,8 +160,8 @@ func TestSameLines(t *testing.T) {
 					}
 				}
 			}
-			if len(want) != 7 {
-				t.Errorf("%d products, want 7", len(want))
+			if len(want) != 8 {
+				t.Errorf("%d products, want 8", len(want))
 			}
 			// The scene has what it is for.
 			for _, none := range []string{`"crossings": 0,`, `"constrained_edges": 0,`, `"readings_outside": 0`, `"max_edge": null`, `"voids": null`} {
@@ -182,7 +182,7 @@ func (d *scene) everything(t *testing.T, program, dir string, threads int) map[s
 		files []string
 	}{
 		{[]string{"inspect", "--out", "report.json"}, []string{"report.json"}},
-		{[]string{"grid", "--cell", d.cell(), "--out", "grid.csv"}, []string{"grid.csv"}},
+		{[]string{"grid", "--cell", d.cell(), "--out", "grid.csv", "--out", "slope=slope.csv"}, []string{"grid.csv", "slope.csv"}},
 		{[]string{"query", "--at", "places.csv", "--explain", "--out", "answers.csv"}, []string{"answers.csv"}},
 		{[]string{"contour", "--interval", d.interval(), "--out", "lines.geojson", "--out", "bands=bands.geojson"}, []string{"lines.geojson", "bands.geojson"}},
 		{[]string{"triangles", "--out", "triangles.csv", "--out", "vertices=vertices.csv"}, []string{"triangles.csv", "vertices.csv"}},
