@@ -19,8 +19,8 @@ has one.
 
 The lattice begins at whole multiples of the cell, so that rasters of one cell
 size fit together: with --values-at centres the edges of the cells lie on them,
-with --values-at corners the nodes. Without --extent the lattice covers the
-readings.
+with --values-at corners the nodes. Without --extent the lattice covers readings
+and lines.
 
 Formats by extension: .csv, .raw and .png. A CSV matrix has the x of the columns in its
 first row and the y of a row in its first column, the northern row first; a list
@@ -86,7 +86,7 @@ func (g *gridCommand) options() []manual.Option {
 	const group = "Raster"
 	return []manual.Option{
 		{Group: group, Name: "cell", Value: &g.cell, Text: "size of a cell, in the unit of x and y"},
-		{Group: group, Name: "extent", Value: &g.extent, Default: "what covers the readings",
+		{Group: group, Name: "extent", Value: &g.extent, Default: "what covers readings and lines",
 			Text: "sides of the raster, on whole multiples of the cell"},
 		{Group: group, Name: "extent-outward", Value: &g.outward, Switch: true,
 			Text: "move the sides of --extent outward to the next multiples"},
@@ -158,7 +158,7 @@ func (g *gridCommand) check() error {
 	}
 	if bool(g.outward) && !g.extent.IsSet() {
 		return status.Usage(errors.New("--extent-outward without --extent: expected the extent that it moves outward"),
-			"without --extent the raster covers the readings")
+			"without --extent the raster covers readings and lines")
 	}
 	return nil
 }

@@ -17,10 +17,14 @@ How the text was read, and every reading that is not used with its file, line
 and reason, goes to standard error. What goes to standard output does not depend
 on the order of the readings.
 
-The spacing is the median length of the edges between neighbouring readings.`
+The spacing is the median length of the edges between neighbouring readings.
+Flat triangles have three equal heights: where they are no real flats, a line
+along the crest or valley is missing. Slivers and the longest edges, with the two
+readings that each joins, show where the outline is not that of the survey.`
 
 const inspectExample = `isofacet inspect sample:gravel-pit/shots.csv
 isofacet inspect sample:gravel-pit/shots.csv --only code=GR --format json
+isofacet inspect sample:gravel-pit/shots.csv --breaklines sample:gravel-pit/lines/breaklines.csv --boundary sample:gravel-pit/lines/boundary.csv
 isofacet inspect sample:landfill/heads-2024-q1.csv`
 
 // The formats of inspect.
