@@ -7,6 +7,8 @@ import (
 	"slices"
 	"strings"
 	"testing"
+
+	"isofacet/io/lines"
 )
 
 // A lineFault is a faulty file of lines, rings or codes, and the whole message that the
@@ -173,5 +175,19 @@ func TestLineFaults(t *testing.T) {
 				}
 			}
 		})
+	}
+}
+
+// Every kind of trouble with lines has a way out.
+func TestEveryKindOfLineHasAHint(t *testing.T) {
+	n := 0
+	for kind := lines.NoLines; kind <= lines.NoCodeColumn; kind++ {
+		n++
+		if lineHints[kind] == "" {
+			t.Errorf("kind %d of trouble has no hint", kind)
+		}
+	}
+	if n != len(lineHints) {
+		t.Errorf("%d kinds and %d hints", n, len(lineHints))
 	}
 }
