@@ -11,8 +11,6 @@ import (
 
 	"isofacet/interp"
 	"isofacet/triangulate"
-
-	"isofacet/triangulate/pages"
 )
 
 // Show says what of a surface a raster shows.
@@ -104,7 +102,7 @@ func newUnset(spec Spec) (*Grid, error) {
 	if spec.NumNodes() > math.MaxInt/8 {
 		return nil, spec.Check(math.MaxInt64 / 8)
 	}
-	return &Grid{Spec: spec, Values: pages.Make[float64](spec.NumNodes())}, nil
+	return &Grid{Spec: spec, Values: make([]float64, spec.NumNodes())}, nil
 }
 
 // setNoData makes NaN of every value that the surface may leave alone: all but

@@ -10,8 +10,6 @@ import (
 
 	"github.com/paulmach/orb"
 	"golang.org/x/sync/errgroup"
-
-	"isofacet/triangulate/pages"
 )
 
 // VerticesMost is the largest number of points in one mesh: half-edges, six a
@@ -77,14 +75,14 @@ func Delaunay(ctx context.Context, pts []orb.Point, opt Options) (*Mesh, error) 
 		return nil, fmt.Errorf("%d points, expected at most %d: %w", len(pts), VerticesMost, ErrTooMany)
 	}
 	workers := min(opt.workers(), len(pts)/parallelLeast+1)
-	b := &builder{ctx: ctx, progress: opt.Progress, rec: pages.Make[record](len(pts))}
+	b := &builder{ctx: ctx, progress: opt.Progress, rec: make([]record, len(pts))}
 	if err := b.load(pts, workers); err != nil {
 		return nil, err
 	}
 	if len(pts) == 0 {
 		return &Mesh{}, nil
 	}
-	b.half = pages.Make[half](max(0, 6*len(pts)-6))
+	b.half = make([]half, max(0, 6*len(pts)-6))
 	whole := b.build(0, len(pts), 0, workers)
 	if err := ctx.Err(); err != nil {
 		return nil, err

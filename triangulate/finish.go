@@ -4,22 +4,20 @@ import (
 	"slices"
 
 	"github.com/paulmach/orb"
-
-	"isofacet/triangulate/pages"
 )
 
 // finish turns the closed surface of the builder into a mesh: repeated places
 // leave gaps that are closed, and the ghosts go.
 func (b *builder) finish(whole part, workers int) *Mesh {
 	n := len(b.rec)
-	m := &Mesh{vertexOf: pages.Make[Vertex](n), half: b.half}
+	m := &Mesh{vertexOf: make([]Vertex, n), half: b.half}
 	low := whole.low
 	if whole.n < n {
 		low = b.closeGaps(whole)
 		m.half = b.half
 		n = whole.n
 	}
-	m.pos = pages.Make[orb.Point](n)
+	m.pos = make([]orb.Point, n)
 	inRanges(n, workers, func(_, lo, hi int) {
 		for i, r := range b.rec[lo:hi] {
 			m.pos[lo+i] = orb.Point{r.x, r.y}
