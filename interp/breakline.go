@@ -37,7 +37,8 @@ type BreaklineOptions struct {
 	// vertex from a reading or another line's vertex there.
 	SpotSpreadMax float64
 	// Merge gives the height of a place from all the heights there, readings first,
-	// then lines in turn; nil for their exact mean.
+	// then lines in turn; nil for their exact mean, a line that comes to the place
+	// more than once at one height counting once.
 	Merge func(z []float64) float64
 	// TouchWithin is the distance within which a point counts as lying on a
 	// segment; 0 for exactly.
@@ -68,7 +69,7 @@ type MadeVertex struct {
 	At      orb.Point
 	Lines   []int
 	Heights []float64 // of every line there
-	Z       float64   // their mean, which the surface has
+	Z       float64   // their mean, which the surface has; a segment that repeats another counts once
 }
 
 // TouchedVertex is a vertex or reading that a line was led through.
@@ -149,6 +150,7 @@ type joiner struct {
 	pts      []orb.Point
 	z        []float64
 	readings int
+	owner    []int32 // line of every input after the readings
 	segs     []triangulate.Segment
 	line     []int // of every segment
 	vertex   []int // of the line, where the segment begins
@@ -159,7 +161,7 @@ func (j *joiner) addLines() {
 	for i, l := range j.lines {
 		for k, p := range l.Points {
 			n := int32(len(j.pts))
-			j.pts, j.z = append(j.pts, p), append(j.z, l.Z[k])
+			j.pts, j.z, j.owner = append(j.pts, p), append(j.z, l.Z[k]), append(j.owner, int32(i))
 			if k > 0 && l.Points[k-1] != p {
 				j.segs = append(j.segs, triangulate.Segment{From: n - 1, To: n})
 				j.line, j.vertex = append(j.line, i), append(j.vertex, k-1)
@@ -229,7 +231,7 @@ func (j *joiner) mergeSpots() error {
 		case j.opt.Merge != nil:
 			z = j.opt.Merge(heights)
 		default:
-			z = mean(heights)
+			z = mean(j.onceEach(is, heights))
 		}
 		for _, i := range is {
 			j.z[i] = z
@@ -239,6 +241,22 @@ func (j *joiner) mergeSpots() error {
 		return worst
 	}
 	return nil
+}
+
+// onceEach returns the heights of inputs at one place, rising by number, without those
+// that a line has there again: where a ring begins and ends is chance.
+func (j *joiner) onceEach(is []int, heights []float64) []float64 {
+	var own []float64
+	from := 0 // of the line's heights among own
+	for k, i := range is {
+		if i < j.readings || k == 0 || is[k-1] < j.readings || j.owner[i-j.readings] != j.owner[is[k-1]-j.readings] {
+			from = len(own)
+		}
+		if !slices.Contains(own[from:], heights[k]) {
+			own = append(own, heights[k])
+		}
+	}
+	return own
 }
 
 // mean is the exact mean, rounded once.
@@ -336,7 +354,7 @@ func (j *joiner) settle(split *triangulate.Split) error {
 			c.SpreadTooLarge = true
 			e.Crossings = append(e.Crossings, c)
 		}
-		v.Z = mean(v.Heights)
+		v.Z = mean(j.once(m.Segments, v.Heights))
 		made[k] = v.Z
 		j.report.Made = append(j.report.Made, v)
 	}
@@ -345,4 +363,22 @@ func (j *joiner) settle(split *triangulate.Split) error {
 	}
 	j.pts, j.z = split.Points, append(j.z, made...)
 	return nil
+}
+
+// once returns the heights of segments without those of repeats: a line given twice
+// does not weigh twice.
+func (j *joiner) once(segments []int32, heights []float64) []float64 {
+	seen := make(map[[2]orb.Point]bool, len(segments))
+	var own []float64
+	for i, s := range segments {
+		ends := [2]orb.Point{j.pts[j.segs[s].From], j.pts[j.segs[s].To]}
+		if exact.CompareXY(ends[0], ends[1]) > 0 {
+			ends[0], ends[1] = ends[1], ends[0]
+		}
+		if !seen[ends] {
+			seen[ends] = true
+			own = append(own, heights[i])
+		}
+	}
+	return own
 }

@@ -138,3 +138,50 @@ func TestTouchWithin(t *testing.T) {
 		t.Errorf("%d constrained edges at the point, want 2", constrained)
 	}
 }
+
+// A line that is given twice counts once where it crosses another, whichever way it runs.
+func TestRepeatedLinesCountOnceP2(t *testing.T) {
+	pts := []orb.Point{{0, 0}, {10, 0}, {10, 10}, {0, 10}}
+	z := []float64{0, 0, 0, 0}
+	east := interp.Breakline{Name: "east", Points: []orb.Point{{1, 5}, {9, 5}}, Z: []float64{2, 4}}
+	back := interp.Breakline{Name: "back", Points: []orb.Point{{9, 5}, {1, 5}}, Z: []float64{4, 2}}
+	north := interp.Breakline{Name: "north", Points: []orb.Point{{5, 1}, {5, 9}}, Z: []float64{3.5, 4.5}}
+	for _, lines := range [][]interp.Breakline{{east, north}, {east, north, east}, {back, north, east, back}, {north, north, back}} {
+		s, report, err := interp.WithBreaklines(context.Background(), pts, z, lines, interp.BreaklineOptions{Crossing: interp.SplitCrossings, CrossingSpreadMax: 1})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if got := s.Sampler().At(orb.Point{5, 5}).Z; got != 3.5 { // of 3 and 4
+			t.Errorf("%d lines: height %v at the crossing, want 3.5", len(lines), got)
+		}
+		if n := len(report.Made); n != 1 || len(report.Made[0].Lines) != len(lines) {
+			t.Errorf("%d lines: made %+v", len(lines), report.Made)
+		}
+	}
+}
+
+// Where a ring begins does not matter for the height of a place that it shares with
+// others.
+func TestRingsBeginAnywhereP2(t *testing.T) {
+	pts := []orb.Point{{0, 0}, {10, 0}, {10, 10}, {0, 10}, {4, 4}, {6, 6}}
+	z := []float64{0, 0, 0, 0, 3, 9}
+	ring := []orb.Point{{4, 4}, {6, 4}, {6, 6}, {4, 6}}
+	for turn := range ring {
+		l := interp.Breakline{Name: "pond"}
+		for k := range 5 {
+			l.Points, l.Z = append(l.Points, ring[(turn+k)%4]), append(l.Z, 6)
+		}
+		s, report, err := interp.WithBreaklines(context.Background(), pts, z, []interp.Breakline{l}, interp.BreaklineOptions{SpotSpreadMax: 3})
+		if err != nil {
+			t.Fatal(err)
+		}
+		for p, want := range map[orb.Point]float64{{4, 4}: 4.5, {6, 6}: 7.5, {6, 4}: 6} {
+			if got := s.Sampler().At(p).Z; got != want {
+				t.Errorf("beginning at %v: height %v at %v, want %v", ring[turn], got, p, want)
+			}
+		}
+		if report.Vertices != 5 {
+			t.Errorf("%d vertices, want 5", report.Vertices)
+		}
+	}
+}

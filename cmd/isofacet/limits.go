@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"math"
 
 	"github.com/paulmach/orb"
 
@@ -87,7 +88,20 @@ func (p *program) limit(ctx context.Context, l *loaded, boundary, voids *lines.S
 			d.rings.inBoundary = within.Surface.Area()
 		}
 	}
-	d.rings.taken = d.rings.inBoundary - d.rings.keptArea
+	// What the areas of two ways of adding up may differ by says nothing.
+	settle := func(part *float64, of float64) {
+		if math.Abs(of-*part) <= 1e-9*of {
+			*part = of
+		}
+	}
+	d.rings.taken = max(d.rings.inBoundary-d.rings.keptArea, 0)
+	settle(&d.rings.taken, d.rings.voidArea)
+	if d.rings.taken <= min(1e-9*d.rings.voidArea, 1e-12*d.rings.inBoundary) {
+		d.rings.taken = 0
+	}
+	if len(boundary.Lines) > 0 {
+		settle(&d.rings.inBoundary, d.rings.boundaryArea)
+	}
 	for _, at := range l.set.Points {
 		if !region.Contains(at) {
 			d.outside++
@@ -100,23 +114,21 @@ func (p *program) limit(ctx context.Context, l *loaded, boundary, voids *lines.S
 func (p *program) tellRings(l *loaded, boundary, voids *lines.Set) error {
 	g := l.drawn.rings
 	xy, _ := l.digits(option.Decimals{})
-	area := func(a float64) number { return number{max(a, 0), xy} }
-	// What the areas of two ways of adding up may differ by says nothing.
-	beyond := func(a, of float64) bool { return a > 1e-9*of }
+	area := func(a float64) number { return number{a, xy} }
 	if g.boundaries > 0 {
 		text := fmt.Sprintf("boundary: %s, enclosing %v", counted(g.boundaries, "ring"), area(g.boundaryArea))
-		if rest := g.boundaryArea - g.inBoundary; beyond(rest, g.boundaryArea) {
+		if rest := g.boundaryArea - g.inBoundary; rest > 0 {
 			text += fmt.Sprintf("; %v of that has no surface", area(rest))
 		}
 		p.report.Note(text, "rings", g.boundaries, "area", g.boundaryArea, "with_surface", g.inBoundary)
 	}
 	if g.voids > 0 {
 		text := fmt.Sprintf("voids: %s, enclosing %v", counted(g.voids, "ring"), area(g.voidArea))
-		if rest := g.voidArea - g.taken; beyond(rest, g.voidArea) {
+		if rest := g.voidArea - g.taken; rest > 0 {
 			text += fmt.Sprintf("; %v of that lies beyond the boundary or the surface", area(rest))
 		}
 		p.report.Note(text, "rings", g.voids, "area", g.voidArea, "taken", g.taken)
-		if g.taken <= 0 {
+		if g.taken == 0 {
 			p.report.Warn("voids-outside", "the voids take nothing away: they lie beyond the boundary or the surface")
 		}
 	}

@@ -173,7 +173,7 @@ func (l *loaded) limits(xy int) limitsFound {
 		f.Boundary = &boundaryFound{g.boundaries, number{g.boundaryArea, xy}, number{g.inBoundary, xy}}
 	}
 	if g := d.rings; g.voids > 0 {
-		f.Voids = &voidsFound{g.voids, number{g.voidArea, xy}, number{max(g.taken, 0), xy}}
+		f.Voids = &voidsFound{g.voids, number{g.voidArea, xy}, number{g.taken, xy}}
 	}
 	f.ReadingsOutside = d.outside
 	return f
