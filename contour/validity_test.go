@@ -172,6 +172,16 @@ func bandNumber(b Band, levels Levels) int {
 
 // checkBands checks P6 for the bands of s.
 func checkBands(s *interp.Surface, levels Levels, bands []Band) error {
+	numbers, err := checkTiling(s, levels, bands)
+	if err != nil {
+		return err
+	}
+	_, _, largest := exactArea(s)
+	return checkReadings(s, levels, bands, numbers, largest)
+}
+
+// checkTiling checks that bands are valid polygons that tile s. It returns the number of every band.
+func checkTiling(s *interp.Surface, levels Levels, bands []Band) ([]int, error) {
 	numbers := make([]int, len(bands))
 	var total exact.Sum
 	// Every segment with the polygon on its left: neighbours have it the other way round, with another band.
@@ -179,21 +189,21 @@ func checkBands(s *interp.Surface, levels Levels, bands []Band) error {
 	var all []bordered
 	for i, b := range bands {
 		if numbers[i] = bandNumber(b, levels); numbers[i] < 0 {
-			return fmt.Errorf("polygon %d: not between neighbouring levels", i)
+			return nil, fmt.Errorf("polygon %d: not between neighbouring levels", i)
 		}
 		if i > 0 && (numbers[i] < numbers[i-1] || numbers[i] == numbers[i-1] &&
 			slices.CompareFunc(bands[i-1].Polygon[0], b.Polygon[0], comparePlaces) >= 0) {
-			return fmt.Errorf("polygon %d out of order", i)
+			return nil, fmt.Errorf("polygon %d out of order", i)
 		}
 		if err := checkPolygon(b.Polygon); err != nil {
-			return fmt.Errorf("polygon %d, band %d: %w", i, numbers[i], err)
+			return nil, fmt.Errorf("polygon %d, band %d: %w", i, numbers[i], err)
 		}
 		for _, ring := range b.Polygon {
 			addArea(&total, ring[:len(ring)-1])
 			for k := 1; k < len(ring); k++ {
 				key := [2]orb.Point{ring[k-1], ring[k]}
 				if _, ok := left[key]; ok {
-					return fmt.Errorf("two polygons left of (%v)-(%v)", key[0], key[1])
+					return nil, fmt.Errorf("two polygons left of (%v)-(%v)", key[0], key[1])
 				}
 				left[key] = numbers[i]
 				if exact.CompareXY(key[0], key[1]) > 0 {
@@ -205,17 +215,17 @@ func checkBands(s *interp.Surface, levels Levels, bands []Band) error {
 	}
 	for key, band := range left {
 		if other, ok := left[[2]orb.Point{key[1], key[0]}]; ok && other == band {
-			return fmt.Errorf("band %d on both sides of (%v)-(%v)", band, key[0], key[1])
+			return nil, fmt.Errorf("band %d on both sides of (%v)-(%v)", band, key[0], key[1])
 		}
 	}
 	if err := meetOnlyAtEnds(all, true); err != nil {
-		return fmt.Errorf("between polygons: %w", err)
+		return nil, fmt.Errorf("between polygons: %w", err)
 	}
 	area, perimeter, largest := exactArea(s)
 	if off, most := math.Abs(total.Value()/2-area), 1e-12*area+perimeter*ulp(largest); off > most {
-		return fmt.Errorf("areas add up to %v, the surface has %v: off by %v, allowed %v", total.Value()/2, area, off, most)
+		return nil, fmt.Errorf("areas add up to %v, the surface has %v: off by %v, allowed %v", total.Value()/2, area, off, most)
 	}
-	return checkReadings(s, levels, bands, numbers, largest)
+	return numbers, nil
 }
 
 // exactArea returns the area of s, accumulated exactly, the length of its outline, and its largest coordinate.
