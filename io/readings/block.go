@@ -26,6 +26,9 @@ type Block struct {
 	texts [textSlots]texts
 	raw   texts // whole records, for positions
 
+	// Under Options.part: the part of each of LeftOut and Refused, nil where it is not known.
+	leftParts, refusedParts []*string
+
 	lines     int // line ends in the block
 	fatal     *PositionError
 	converted int // lines taken as Windows-1252

@@ -50,6 +50,8 @@ type Options struct {
 	// many (0 if unknown), never from two goroutines at once.
 	Progress func(done, total int64)
 
+	part Parter // of ReadParts
+
 	// For tests: the size of a chunk if not 0, and to read every line the careful way.
 	chunk   int
 	careful bool

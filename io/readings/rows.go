@@ -27,6 +27,8 @@ type worker struct {
 	line    int // of the record, from 0 in the block
 
 	only, without []rolePatterns
+	part          Parter
+	placed        bool // whether current holds the texts of the record
 	byCode        func(code []byte) string
 	exclude       *Exclusions
 	hit           []atomic.Bool     // rows of exclude that matched
@@ -53,7 +55,7 @@ func newWorker(p *plan, o *Options, hit []atomic.Bool) *worker {
 			w.slots = append(w.slots, a.slot)
 		}
 	}
-	w.byCode = o.Select.Code
+	w.byCode, w.part = o.Select.Code, o.part
 	w.choosing = len(w.only)+len(w.without) > 0 || w.byCode != nil || w.exclude != nil
 	// With one comma for both, numbers stand in quotes, which quick does not read.
 	w.careful = p.raw || o.careful || p.delimiter == p.decimal
@@ -129,6 +131,7 @@ func (w *worker) row(b []byte, p int) (next int) {
 
 // record reads the record that is taken apart in w.tokens.
 func (w *worker) record(b []byte, p, next int) {
+	w.placed = false
 	if w.tokens.bad {
 		w.refuse(b, p, w.tokens.quote.at, quoteTrouble(w.tokens.quote))
 		return
@@ -161,6 +164,7 @@ func (w *worker) record(b []byte, p, next int) {
 			complain(i, e)
 		}
 	}
+	w.placed = true
 	if trouble == nil {
 		// Chosen by text first: a line without a value may be left out by its status.
 		if why := w.chosen(); why != "" {
@@ -241,6 +245,10 @@ func (w *worker) leaveOut(why string) {
 		w.reasons[why] = why
 	}
 	w.blk.Counts.LeftOut++
+	if w.part != nil {
+		w.placed = true // quick has looked at the texts, too
+		w.blk.leftParts = append(w.blk.leftParts, w.partOfRecord())
+	}
 	w.blk.LeftOut = append(w.blk.LeftOut, LeftOut{Line: uint32(w.line), ID: string(w.current[textSlot[ID]]), Reason: kept})
 }
 
@@ -256,6 +264,19 @@ func (w *worker) refuse(b []byte, p, at int, e *PositionError) {
 		e.Column = column
 	}
 	w.blk.Refused = append(w.blk.Refused, e)
+	if w.part != nil {
+		w.blk.refusedParts = append(w.blk.refusedParts, w.partOfRecord())
+	}
+}
+
+// partOfRecord returns the part of a record that is not used, nil if it could not be
+// taken apart.
+func (w *worker) partOfRecord() *string {
+	if !w.placed {
+		return nil
+	}
+	name := w.part(func(r Role) string { return string(w.current[textSlot[r]]) })
+	return &name
 }
 
 // maxRow is the longest row that is carried along: 2^16 of them fill a page of
