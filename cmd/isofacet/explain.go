@@ -109,6 +109,10 @@ func explainReadings(err error) (status.Code, string, bool) {
 		code, hint, known := explainReadings(e.error)
 		return code, strings.ReplaceAll(hint, "--columns", "--at-columns"), known
 	}
+	if e, ok := errors.AsType[*checkpointsError](err); ok {
+		code, hint, known := explainReadings(e.error)
+		return code, strings.ReplaceAll(hint, "--columns", "--checkpoints-columns"), known
+	}
 	if e, ok := errors.AsType[*readings.SpotError](err); ok {
 		return status.WrongData, spotHint(e), true
 	}

@@ -47,6 +47,11 @@ func (p *program) load(ctx context.Context, r *reading, list []*input) (*loaded,
 	if err != nil {
 		return nil, err
 	}
+	return p.stand(ctx, r, list, set)
+}
+
+// stand says what was found in the inputs, and triangulates it.
+func (p *program) stand(ctx context.Context, r *reading, list []*input, set *readings.Set) (*loaded, error) {
 	l := &loaded{set: set, decimalsXY: set.DecimalsXY, decimalsZ: set.DecimalsZ}
 	for _, in := range list {
 		l.names = append(l.names, in.Name)
@@ -62,7 +67,7 @@ func (p *program) load(ctx context.Context, r *reading, list []*input) (*loaded,
 		return nil, err
 	}
 	report, finish := p.display.Stage("triangulating")
-	err = p.draw(ctx, r, l, triangulate.Options{Workers: p.workers(), Progress: report})
+	err := p.draw(ctx, r, l, triangulate.Options{Workers: p.workers(), Progress: report})
 	finish()
 	if err != nil {
 		return nil, l.whichReading(list, err)
@@ -72,6 +77,29 @@ func (p *program) load(ctx context.Context, r *reading, list []*input) (*loaded,
 
 // read reads the readings.
 func (p *program) read(ctx context.Context, r *reading, list []*input) (*readings.Set, error) {
+	var set *readings.Set
+	err := p.withSources(ctx, r, list, func(sources []readings.Source, opt readings.Options) (err error) {
+		set, err = readings.Read(ctx, sources, opt)
+		return err
+	})
+	if err != nil {
+		return nil, err
+	}
+	return set, p.codesKnown(&r.edges, set)
+}
+
+// readParts reads the readings and puts them apart.
+func (p *program) readParts(ctx context.Context, r *reading, list []*input, part readings.Parter) ([]readings.Part, error) {
+	var parts []readings.Part
+	err := p.withSources(ctx, r, list, func(sources []readings.Source, opt readings.Options) (err error) {
+		parts, err = readings.ReadParts(ctx, sources, opt, part)
+		return err
+	})
+	return parts, err
+}
+
+// withSources calls work with the sources and with how they are read.
+func (p *program) withSources(ctx context.Context, r *reading, list []*input, work func([]readings.Source, readings.Options) error) error {
 	opt := readings.Options{
 		Declared: r.declared(),
 		Lenient:  bool(r.lenient),
@@ -82,12 +110,12 @@ func (p *program) read(ctx context.Context, r *reading, list []*input) (*reading
 	if r.exclude.set {
 		x, err := p.readExclusions(r.exclude.text)
 		if err != nil {
-			return nil, err
+			return err
 		}
 		opt.Select.Exclude = x
 	}
 	if err := p.readCodes(ctx, &r.edges, &opt.Select); err != nil {
-		return nil, err
+		return err
 	}
 	report, finish := p.display.Stage("reading")
 	defer finish()
@@ -98,11 +126,7 @@ func (p *program) read(ctx context.Context, r *reading, list []*input) (*reading
 	for _, in := range list {
 		sources = append(sources, in.Source)
 	}
-	set, err := readings.Read(ctx, sources, opt)
-	if err != nil {
-		return nil, err
-	}
-	return set, p.codesKnown(&r.edges, set)
+	return work(sources, opt)
 }
 
 // readExclusions reads the file of readings to leave out, and says what in it does

@@ -29,6 +29,7 @@ func (p *program) commands() []*cobra.Command {
 		newContour(p),
 		newQuery(p),
 		newTriangles(p),
+		newAccuracy(p),
 		newSamples(p),
 		newCompletion(p),
 		newVersion(p),

@@ -12,6 +12,7 @@
 //	isolines_test.go     lengths and counts of lines, through triangles and squares
 //	bands_test.go        areas between levels
 //	lines_test.go        breaklines, boundaries and voids: solids, clips, bad rings
+//	accuracy_test.go     readings held back, against the surface of the others
 //	pit_test.go          the sample of a gravel pit with and without its lines
 //
 // The figures stand in testdata, whose README.md names their sources, and in the
