@@ -15,6 +15,9 @@
 //	interp.DownhillAzimuth(gx, gy)   // degrees clockwise from north
 //	s.VolumeAbove(105)
 //
+//	left, err := s.LeaveOneOut(ctx, 0)
+//	left.Residual(v)                 // how far v lies above what the others expect
+//
 // Conventions: x east, y north, z up; heights in their own unit, areas in that of
 // x times y, volumes in that of x times y times z. Outside the outline there is no
 // value: NaN. A corner whose value equals a level counts as above it.

@@ -55,6 +55,12 @@ func (s *Surface) Plane(t triangulate.Triangle) Plane {
 // PlaneInto is Plane for many triangles in turn, without copying.
 func (s *Surface) PlaneInto(p *Plane, t triangulate.Triangle) {
 	i, j, k := s.canonical(t)
+	s.planeThrough(p, i, j, k)
+}
+
+// planeThrough prepares the triangle of three vertices, counter-clockwise, the smallest
+// in (x, y) order first.
+func (s *Surface) planeThrough(p *Plane, i, j, k triangulate.Vertex) {
 	pi, pj, pk := &s.pos[i], &s.pos[j], &s.pos[k]
 	xi, yi, xj, yj, xk, yk := pi[0], pi[1], pj[0], pj[1], pk[0], pk[1]
 	zi, zj, zk := s.z[i], s.z[j], s.z[k]

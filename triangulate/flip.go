@@ -51,6 +51,8 @@ func (n *inserter) flip(h HalfEdge) {
 	beyondBC, keptBC := n.half[hn].twin, n.kept.get(int(hn))
 	beyondAD, keptAD := n.half[tn].twin, n.kept.get(int(tn))
 
+	n.note(h.Triangle())
+	n.note(t.Triangle())
 	n.half[hn].origin = d
 	n.half[tn].origin = c
 	n.join(h, beyondAD)

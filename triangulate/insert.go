@@ -25,6 +25,7 @@ type inserter struct {
 	at   []HalfEdge // of every vertex, some outgoing half-edge
 
 	chains []chainEdge
+	saved  journal // of what changes, for a Reduction
 
 	// Scratch of one hole, reused.
 	rimLeft, rimRight, made, suspects []HalfEdge
@@ -77,8 +78,10 @@ func (n *inserter) dest(h HalfEdge) Vertex { return n.half[h.next()].origin }
 
 // keep makes the edge of h constrained, as a part of segment.
 func (n *inserter) keep(h HalfEdge, segment int32) {
+	n.note(h.Triangle())
 	n.kept.set(int(h))
 	if t := n.half[h].twin; t != NoHalfEdge {
+		n.note(t.Triangle())
 		n.kept.set(int(t))
 	}
 	u, v := n.half[h].origin, n.dest(h)
@@ -174,6 +177,7 @@ func (n *inserter) link(links []rimLink, rim []HalfEdge) []rimLink {
 	}
 	// An edge that hangs into the hole is on the rim twice, once a side.
 	for i, h := range rim {
+		n.note(h.Triangle())
 		n.half[h].origin = Vertex(-2 - i)
 	}
 	for i := range links {
@@ -215,6 +219,7 @@ func (n *inserter) fill(links []rimLink, last Vertex) HalfEdge {
 			t := n.free[len(n.free)-1]
 			n.free = n.free[:len(n.free)-1]
 			h := t.HalfEdge(0)
+			n.note(t)
 			n.half[h].origin, n.half[h+1].origin, n.half[h+2].origin = first.u, second.u, w
 			n.at[first.u], n.at[second.u], n.at[w] = h, h+1, h+2
 			n.attach(h, first, made)
@@ -248,9 +253,11 @@ func (n *inserter) attach(h HalfEdge, l rimLink, made []HalfEdge) {
 // join makes h and g twins; either may be NoHalfEdge.
 func (n *inserter) join(h, g HalfEdge) {
 	if h != NoHalfEdge {
+		n.note(h.Triangle())
 		n.half[h].twin = g
 	}
 	if g != NoHalfEdge {
+		n.note(g.Triangle())
 		n.half[g].twin = h
 	}
 }

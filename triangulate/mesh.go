@@ -215,6 +215,11 @@ func (m *Mesh) turn(h HalfEdge) HalfEdge {
 // outline one with no triangle on its right, elsewhere any fixed one;
 // NoHalfEdge when v has no triangle.
 func (m *Mesh) firstAround(v Vertex) HalfEdge {
+	m.firstAroundAll()
+	return m.around[v]
+}
+
+func (m *Mesh) firstAroundAll() {
 	m.aroundOnce.Do(func() {
 		a := make([]HalfEdge, len(m.pos))
 		for i := range a {
@@ -227,5 +232,4 @@ func (m *Mesh) firstAround(v Vertex) HalfEdge {
 		}
 		m.around = a
 	})
-	return m.around[v]
 }
