@@ -31,12 +31,16 @@ type Figures struct {
 	Covered          float64
 	AreaFrom, AreaTo float64
 	Pieces           int // polygons on which the difference is linear
+
+	Weights *Weights // if they were asked for
 }
 
 // Options say how to work, never what comes out.
 type Options struct {
 	// Workers is the largest number of goroutines; 0 means one per CPU.
 	Workers int
+	// Weights asks for what every height counts in the volumes.
+	Weights bool
 	// Progress, when not nil, is told now and then, from one goroutine at a time,
 	// how many of the triangles of one surface are done.
 	Progress func(done, total int)
@@ -58,31 +62,15 @@ func Between(ctx context.Context, from, to *interp.Surface, opt Options) (*Figur
 	if swapped {
 		outer, inner = inner, outer
 	}
-	total, err := sumPieces(ctx, outer, inner, workers, opt.Progress)
+	var w *weigher
+	if opt.Weights {
+		w = newWeigher(outer, inner)
+	}
+	total, err := sumPieces(ctx, outer, inner, workers, opt.Progress, w)
 	if err != nil {
 		return nil, err
 	}
-	f := &Figures{
-		// Differences are inner less outer.
-		Cut: total.part(negVolume, swapped), Fill: total.part(posVolume, swapped), Same: total.part(zeroVolume, swapped),
-		AreaFrom: from.Area(), AreaTo: to.Area(), Pieces: total.pieces,
-	}
-	if swapped {
-		f.Cut, f.Fill = f.Fill, f.Cut
-	}
-	net := &exact.Sum{}
-	net.Merge(&total.sums[posVolume])
-	net.Subtract(&total.sums[negVolume])
-	f.Net = net.Mean(6)
-	if swapped && f.Net != 0 {
-		f.Net = -f.Net
-	}
-	covered := &exact.Sum{}
-	for _, k := range []int{posVolume, negVolume, zeroVolume} {
-		covered.Merge(&total.sums[k+1])
-	}
-	f.Covered = covered.Mean(2)
-	return f, nil
+	return total.figures(from, to, swapped, w), nil
 }
 
 // The sums of a run: for each part the volume, six times, and three areas, twice.
@@ -96,6 +84,49 @@ const (
 type totals struct {
 	sums   [sumsCount]exact.Sum
 	pieces int
+}
+
+func (t *totals) merge(o *totals) {
+	for i := range t.sums {
+		t.sums[i].Merge(&o.sums[i])
+	}
+	t.pieces += o.pieces
+}
+
+// figures rounds the sums. Their differences are inner less outer, which is to less
+// from unless the two have changed places.
+func (t *totals) figures(from, to *interp.Surface, swapped bool, w *weigher) *Figures {
+	f := &Figures{
+		Cut: t.part(negVolume, swapped), Fill: t.part(posVolume, swapped), Same: t.part(zeroVolume, swapped),
+		AreaFrom: from.Area(), AreaTo: to.Area(), Pieces: t.pieces,
+	}
+	if swapped {
+		f.Cut, f.Fill = f.Fill, f.Cut
+	}
+	var net, covered exact.Sum
+	net.Merge(&t.sums[posVolume])
+	net.Subtract(&t.sums[negVolume])
+	f.Net = net.Mean(6)
+	if swapped && f.Net != 0 {
+		f.Net = -f.Net
+	}
+	for _, first := range []int{posVolume, negVolume, zeroVolume} {
+		covered.Merge(&t.sums[first+1])
+	}
+	f.Covered = covered.Mean(2)
+	if w != nil {
+		f.Weights = w.weights(swapped)
+	}
+	return f
+}
+
+// addPiece adds what a polygon contributes.
+func (t *totals) addPiece(poly *polygon, slantOuter, slantInner float64) {
+	t.pieces++
+	pos, neg, zero2 := poly.integrate()
+	t.add(posVolume, pos, slantOuter, slantInner)
+	t.add(negVolume, neg, slantOuter, slantInner)
+	t.add(zeroVolume, share{zero2, 0}, slantOuter, slantInner)
 }
 
 func (t *totals) part(first int, swapped bool) Part {
@@ -127,7 +158,7 @@ const (
 
 // sumPieces adds up all pieces, on all workers. Every piece has terms of its own,
 // which do not depend on others; the sums are exact, so that their order is free.
-func sumPieces(ctx context.Context, outer, inner *side, workers int, progress func(done, total int)) (*totals, error) {
+func sumPieces(ctx context.Context, outer, inner *side, workers int, progress func(done, total int), weigh *weigher) (*totals, error) {
 	total := &totals{}
 	if outer.shown == 0 || inner.shown == 0 {
 		return total, ctx.Err()
@@ -140,7 +171,7 @@ func sumPieces(ctx context.Context, outer, inner *side, workers int, progress fu
 	done := 0
 	for range min(workers, count/trianglesChunk+1) {
 		wg.Go(func() {
-			m := &meeting{outer: outer, inner: inner}
+			m := &meeting{outer: outer, inner: inner, weigh: weigh}
 			sums := &totals{}
 			for ctx.Err() == nil {
 				first := int(next.Add(trianglesChunk)) - trianglesChunk
@@ -160,10 +191,7 @@ func sumPieces(ctx context.Context, outer, inner *side, workers int, progress fu
 			}
 			mu.Lock()
 			defer mu.Unlock()
-			for i := range total.sums {
-				total.sums[i].Merge(&sums.sums[i])
-			}
-			total.pieces += sums.pieces
+			total.merge(sums)
 		})
 	}
 	wg.Wait()
@@ -192,12 +220,10 @@ func (m *meeting) addTo(sums *totals, t triangulate.Triangle, at *places) {
 		if poly.n < 3 {
 			continue
 		}
-		sums.pieces++
-		pos, neg, zero2 := poly.integrate()
-		so, si := m.outer.slant[t], m.inner.slant[f.t]
-		sums.add(posVolume, pos, so, si)
-		sums.add(negVolume, neg, so, si)
-		sums.add(zeroVolume, share{zero2, 0}, so, si)
+		sums.addPiece(&poly, m.outer.slant[t], m.inner.slant[f.t])
+		if m.weigh != nil {
+			m.weigh.add(&poly, t, f.t, poly.origin)
+		}
 	}
 }
 

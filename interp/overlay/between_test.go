@@ -2,7 +2,6 @@ package overlay
 
 import (
 	"context"
-	"fmt"
 	"math"
 	"math/big"
 	"math/rand/v2"
@@ -184,13 +183,13 @@ func TestSameBits(t *testing.T) {
 		n := 3000
 		p, z := scatter(r, n, 1000, 2000, 100, 5, 6, []float64{0, 0.01, 1, 0}[kind])
 		q, y := scatter(r, n, 1010, 2010, 100, 5, 6, []float64{0, 0.01, 1, 0.001}[kind])
-		want := fmt.Sprintf("%x", *figures(t, surface(t, p, z), surface(t, q, y), 1))
+		want := *figures(t, surface(t, p, z), surface(t, q, y), 1)
 		for range 3 {
 			r.Shuffle(n, func(i, j int) { p[i], p[j], z[i], z[j] = p[j], p[i], z[j], z[i] })
 			r.Shuffle(n, func(i, j int) { q[i], q[j], y[i], y[j] = q[j], q[i], y[j], y[i] })
 			for _, workers := range []int{1, 2, 5} {
-				if got := fmt.Sprintf("%x", *figures(t, surface(t, p, z), surface(t, q, y), workers)); got != want {
-					t.Fatalf("kind %d, %d workers:\n got %s\nwant %s", kind, workers, got, want)
+				if got := *figures(t, surface(t, p, z), surface(t, q, y), workers); got != want {
+					t.Fatalf("kind %d, %d workers:\n got %+v\nwant %+v", kind, workers, got, want)
 				}
 			}
 		}

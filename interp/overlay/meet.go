@@ -13,6 +13,7 @@ import (
 // with it. Its memory is used again for the next.
 type meeting struct {
 	outer, inner *side
+	weigh        *weigher // nil unless weights are wanted
 
 	// The outer triangle.
 	t  triangulate.Triangle

@@ -14,8 +14,9 @@ type point struct{ x, y, d float64 }
 // polygon is what two triangles have in common, counter-clockwise, relative to a
 // point of theirs. Two triangles have at most six corners in common.
 type polygon struct {
-	at [8]point
-	n  int
+	at     [8]point
+	n      int
+	origin *orb.Point
 }
 
 // piece is the polygon that the outer triangle has in common with f; fewer than
@@ -35,6 +36,7 @@ func (m *meeting) piece(f *innerTriangle, at *[3]triangulate.Location, d *[3]flo
 	if before(&c[0].p, origin) {
 		origin = &c[0].p
 	}
+	poly.origin = origin
 	var enters, leaves [3]*crossing
 	var leavesOver [3]int
 	some := false
