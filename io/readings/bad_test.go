@@ -162,6 +162,9 @@ func TestBadInput(t *testing.T) {
 	}
 	// What no small text can bring about: other tests do, or 2^31 readings would.
 	met[0], met[Unreadable], met[TooManyBad], met[TooMany] = true, true, true, true
+	for _, k := range []Kind{DepthAlone, UnknownStatus, NoWell, Impossible} { // those of a Reducer
+		met[k] = true
+	}
 	for k, ok := range met {
 		if !ok {
 			t.Errorf("no input leads to kind %d", k)
@@ -189,7 +192,7 @@ func TestLenient(t *testing.T) {
 	if !slices.Equal(got, want) {
 		t.Errorf("refused:\n%s", strings.Join(got, "\n"))
 	}
-	wantOut := []LeftOut{{0, 8, "G", "z is -9999"}, {0, 9, "H", "z is blank"}}
+	wantOut := []LeftOut{{0, 8, "G", "z is -9999", nil, nil}, {0, 9, "H", "z is blank", nil, nil}}
 	if !slices.Equal(s.LeftOut, wantOut) {
 		t.Errorf("left out: %+v", s.LeftOut)
 	}
@@ -234,7 +237,7 @@ func TestMissingMarks(t *testing.T) {
 				}
 			case err != nil:
 				t.Errorf("%q with %q: %v", c.z, c.marks, err)
-			case len(s.LeftOut) != 1 || s.LeftOut[0] != (LeftOut{0, 2, "A", c.reason}):
+			case len(s.LeftOut) != 1 || s.LeftOut[0] != (LeftOut{0, 2, "A", c.reason, nil, nil}):
 				t.Errorf("%q with %q: %+v", c.z, c.marks, s.LeftOut)
 			}
 		}

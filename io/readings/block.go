@@ -25,11 +25,13 @@ type Block struct {
 
 	texts [textSlots]texts
 	raw   texts // whole records, for positions
+	work  []any // of a reducer, as many as Points if it is kept
 
 	// Under Options.part: the part of each of LeftOut and Refused, nil where it is not known.
 	leftParts, refusedParts []*string
 
-	lines     int // line ends in the block
+	warnings  []Warning // lines from 0 in the block
+	lines     int       // line ends in the block
 	fatal     *PositionError
 	converted int // lines taken as Windows-1252
 	first     int // the first of them, from 0 in the block

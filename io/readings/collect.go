@@ -37,6 +37,13 @@ func (c *collected) joinNumbers() {
 		c.fileStart[file] = n
 	}
 	c.start = append(c.start, n)
+	if c.o.Account {
+		c.work = make([]any, n)
+		for k, b := range c.blocks {
+			copy(c.work[c.start[k]:], b.work)
+			b.work = nil
+		}
+	}
 	c.Points = make([]orb.Point, n)
 	c.Z = make([]float64, n)
 	c.Lines = make([]uint32, n)
@@ -92,6 +99,9 @@ func (c *collected) remove(gone []int32) {
 	c.Points = removeFrom(c.Points, gone)
 	c.Z = removeFrom(c.Z, gone)
 	c.Lines = removeFrom(c.Lines, gone)
+	if c.work != nil {
+		c.work = removeFrom(c.work, gone)
+	}
 	for _, starts := range [][]int{c.start, c.fileStart} {
 		for k, at := range starts {
 			before, _ := slices.BinarySearch(gone, int32(at))

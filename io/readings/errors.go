@@ -40,6 +40,10 @@ const (
 	UnusedRole    // a declared role that is not used here
 	MissingColumn // a declared column name or number that the file does not have
 	WhichDecimal  // "1,234" everywhere: 1.234 or 1234?
+	DepthAlone    // a depth, and nothing that it is counted from
+	UnknownStatus // a word of the status that no table explains
+	NoWell        // an id that the well table does not have
+	Impossible    // numbers that contradict each other
 	WhichComment  // every line begins with the comment mark
 	kindCount
 )
@@ -58,7 +62,8 @@ type PositionError struct {
 	What     string // what stands there: a role, "line", "header", ...
 	Seen     string // the text as read, shortened
 	Expected string
-	Err      error // the cause, for Unreadable
+	Err      error  // the cause, for Unreadable
+	ID       string // of the reading, if it could be read
 }
 
 func (e *PositionError) Error() string {

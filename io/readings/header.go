@@ -179,7 +179,7 @@ func (s *sniffer) claim(b []byte, header row, r Role) *PositionError {
 	switch {
 	case len(strong) == 0:
 		return nil
-	case len(strong) > 1 && s.isNumeric(r):
+	case len(strong) > 1 && s.isNumeric(r) && (r <= Z || s.need == needTable || s.nameOf(Z) == ""):
 		i, j := strong[0], strong[1]
 		return s.atField(b, header, j, &PositionError{Kind: TwoColumns, What: "column", Seen: shorten(s.layout.Columns[j].Name),
 			Expected: fmt.Sprintf("one column for %s; column %d, %q, is one too", r, i+1, shorten(s.layout.Columns[i].Name))})
@@ -249,6 +249,9 @@ func (s *sniffer) isUnitRow(r row) bool {
 		if !s.isNumeric(c.Role) {
 			continue
 		}
+		if i < len(r.fields) && c.Role == SpecificGravity && (r.fields[i] == "" || r.fields[i] == "-") {
+			continue // it has no unit
+		}
 		if i >= len(r.fields) || !isUnit(r.fields[i]) {
 			return false
 		}
@@ -289,8 +292,23 @@ func (s *sniffer) complete() *PositionError {
 		found = []string{"none"}
 	}
 	needed, all := []Role{X, Y, Z}, "x, y and z"
-	if s.need == needPlace {
+	switch {
+	case s.need == needPlace:
 		needed, all = needed[:2], "x and y"
+	case s.need == needTable:
+		needed, all = s.tableNeeds, listRoles(s.tableNeeds)
+	case s.soundings(&has):
+		s.layout.Down = true
+		needed, all = []Role{X, Y, Depth}, "x, y and depth"
+	case s.reducer != nil:
+		var err *PositionError
+		if s.reduce, err = s.reducer.Begin(&s.layout); err != nil {
+			err.File = s.layout.File
+			return err
+		}
+		if s.reduce {
+			needed = nil
+		}
 	}
 	for _, r := range needed {
 		if !has[r] {
@@ -300,8 +318,13 @@ func (s *sniffer) complete() *PositionError {
 	}
 	for i := range s.layout.Columns {
 		r := s.layout.Columns[i].Role
-		if r == NoRole || s.isNumeric(r) || r.Kept() || s.need == needPlace {
+		switch {
+		case r == NoRole, r == X, r == Y, r == Z, r.Kept(), s.need != needValue,
+			s.reduce && s.reducer.Uses(r), s.layout.Down && r == Depth:
 			continue
+		case r == Depth && has[Z] && !s.layout.ColumnsDeclared:
+			s.warnings = append(s.warnings, Warning{s.layout.File, s.layout.HeaderLine,
+				fmt.Sprintf("column %q is a depth and not used: column %q is the value", shorten(s.layout.Columns[i].Name), shorten(s.nameOf(Z)))})
 		}
 		if s.layout.ColumnsDeclared {
 			return &PositionError{File: s.layout.File, Kind: UnusedRole, What: "role " + r.String(),
@@ -312,12 +335,34 @@ func (s *sniffer) complete() *PositionError {
 	return nil
 }
 
-func keptList() string {
-	names := make([]string, len(keptRoles))
-	for i, r := range keptRoles {
+// soundings reports whether the file has depths that count from one number, and
+// nothing else that makes values of them.
+func (s *sniffer) soundings(has *[roleCount]bool) bool {
+	if s.depthFrom == nil || !has[Depth] || has[Z] || has[MeasuringPoint] {
+		return false
+	}
+	return s.reducer == nil || !has[Status] && !has[Product] && !has[ProductDepth]
+}
+
+// nameOf returns the name of the column that has a role.
+func (s *sniffer) nameOf(r Role) string {
+	for _, c := range s.layout.Columns {
+		if c.Role == r {
+			return c.Name
+		}
+	}
+	return ""
+}
+
+func keptList() string { return strings.ReplaceAll(listRoles(keptRoles[:]), ", ", " ") }
+
+// listRoles names roles for people.
+func listRoles(roles []Role) string {
+	names := make([]string, len(roles))
+	for i, r := range roles {
 		names[i] = r.String()
 	}
-	return strings.Join(names, " ")
+	return strings.Join(names, ", ")
 }
 
 // trimEmpty takes off what a delimiter at the end of a header line leaves.

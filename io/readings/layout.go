@@ -164,6 +164,8 @@ type Layout struct {
 	Columns []Column
 	// Heads is true if z was called head: heads of unlike wells are never merged.
 	Heads bool
+	// Down is true if depths were counted from Options.DepthFrom.
+	Down bool
 	// Note is what was assumed, in words; empty if nothing was.
 	Note string
 

@@ -238,6 +238,9 @@ func grouped(t []byte, decimal byte) bool {
 	return groups > 0 && n == 3
 }
 
+// ExpectedNumber says what belongs in place of a text of a kind, for messages.
+func ExpectedNumber(kind Kind, decimal Decimal) string { return expectedNumber(kind, byte(decimal)) }
+
 // expectedNumber says what belongs in place of a text of a kind.
 func expectedNumber(kind Kind, decimal byte) string {
 	example := "12.4"

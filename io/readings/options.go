@@ -6,6 +6,8 @@ import (
 	"math"
 	"strconv"
 	"strings"
+
+	"github.com/paulmach/orb"
 )
 
 // A Source is one input: a file, standard input, a piece of memory.
@@ -42,6 +44,23 @@ type Options struct {
 	Select Selection
 	Spots  Spots // Scan does not look at it
 
+	// Reduce, if not nil, makes readings of rows that lack a place or a value.
+	Reduce Reducer
+	// DepthFrom, if not nil, is what depths are counted down from: soundings below a
+	// water level or a datum.
+	DepthFrom *DepthFrom
+	// Transform, if not nil, turns each place and value, as written, into what is to be
+	// used: another unit, another grid. It is called by several goroutines. Places of
+	// Select.Exclude are compared with what it returns.
+	Transform func(orb.Point, float64) (orb.Point, float64)
+	// Account keeps what was read of rows that are not used, and the work of a Reducer.
+	// Reading is slower and takes more memory.
+	Account bool
+
+	// OneOf are roles in which all used readings must have one text, Zone only where
+	// values are heads. Scan does not look at it.
+	OneOf []Role
+
 	// Workers is how many lines are parsed at a time; 0 is one per processor. The
 	// result does not depend on it.
 	Workers int
@@ -55,6 +74,17 @@ type Options struct {
 	// For tests: the size of a chunk if not 0, and to read every line the careful way.
 	chunk   int
 	careful bool
+}
+
+// DepthFrom is an elevation from which depths are counted down.
+type DepthFrom struct {
+	Value    float64
+	Decimals int // that it is written with
+}
+
+// below returns the elevation at a depth, as the decimals of both have it.
+func (d *DepthFrom) below(depth float64, decimals int) float64 {
+	return asWritten(d.Value-depth, max(d.Decimals, decimals)) + 0
 }
 
 // A SpotRule says what becomes of several readings at one place.

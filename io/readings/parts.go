@@ -13,7 +13,8 @@ type Part struct {
 	Name string
 	Set  *Set
 	// Err, if not nil, is why the part has no set: readings at one place that may
-	// not be merged (*SpotError). The other parts stand.
+	// not be merged (*SpotError), or of several zones (*MixedError). The other parts
+	// stand.
 	Err error
 }
 
@@ -102,6 +103,9 @@ func (p *parts) take(b *Block) {
 		blk.Points = append(blk.Points, b.Points[i])
 		blk.Z = append(blk.Z, b.Z[i])
 		blk.Lines = append(blk.Lines, b.Lines[i])
+		if b.work != nil {
+			blk.work = append(blk.work, b.work[i])
+		}
 		for slot := range b.texts {
 			if b.texts[slot].len() > 0 {
 				from, to := b.texts[slot].bounds(i)
@@ -147,7 +151,11 @@ func (p *parts) finish(ctx context.Context, summary *Summary) ([]Part, error) {
 		c.joinNumbers()
 		set.DecimalsXY, set.DecimalsZ = p.decimalsXY, p.decimalsZ
 		part := Part{Name: name, Set: set}
-		if err := c.mergeSpots(ctx); err != nil {
+		err := c.mixed()
+		if err == nil {
+			err = c.mergeSpots(ctx)
+		}
+		if err != nil {
 			if ctx.Err() != nil {
 				return nil, err
 			}

@@ -22,6 +22,10 @@ type plan struct {
 	missingZ    []missingValue
 	// raw keeps every record as it is written (positions).
 	raw bool
+	// reduce has the reducer make readings of the rows; down takes a depth for z.
+	reduce  bool
+	reducer Reducer
+	down    *DepthFrom
 }
 
 // act is what becomes of a field.
@@ -44,6 +48,7 @@ type need uint8
 const (
 	needPlace need = 2 // x and y
 	needValue need = 3 // x, y and z
+	needTable need = 4 // what the caller names
 )
 
 // newPlan turns a layout into a plan.
@@ -57,8 +62,11 @@ func newPlan(l Layout, d *Declared, f format, n need) *plan {
 		switch {
 		case c.Role == NoRole:
 			continue
+		case n == needTable:
 		case c.Role == X, c.Role == Y, c.Role == Z && n == needValue:
 			p.acts[i] = act{number, int8(c.Role - X)}
+		case c.Role == Depth && l.Down:
+			p.acts[i] = act{number, 2}
 		case c.Role.Kept() && n == needValue:
 			p.acts[i] = act{text, textSlot[c.Role]}
 		}
@@ -75,6 +83,14 @@ func newPlan(l Layout, d *Declared, f format, n need) *plan {
 		}
 	}
 	return p
+}
+
+// roleOf is the role of the column that is read into slot 0, 1 or 2.
+func (p *plan) roleOf(slot int8) Role {
+	if slot == 2 && p.down != nil {
+		return Depth
+	}
+	return X + Role(slot)
 }
 
 // missingValue is a mark that is a number.

@@ -134,6 +134,9 @@ func (w *worker) quickRow(b []byte, p int, blk *Block) (next int) {
 	if w.missing(v[2]) != "" {
 		return 0
 	}
+	if w.down != nil || w.transform != nil {
+		v = w.settled(v, decimals[2])
+	}
 	if w.choosing {
 		for slot, s := range spans {
 			w.current[slot] = b[s.from:s.to]

@@ -15,7 +15,7 @@ import (
 //
 // Errors: *PositionError for a file that cannot be read, *BadLines for lines that
 // cannot (unless Options.Lenient), *SpotError for readings at one place that may
-// not be merged, *OptionError, ctx.Err(). No Set comes with an error.
+// not be merged, *MixedError, *OptionError, ctx.Err(). No Set comes with an error.
 //
 // Cost: see the package comment. Memory: 28 bytes a reading and its texts with four
 // bytes each, twice that while the columns are put together.
@@ -45,6 +45,9 @@ func Read(ctx context.Context, sources []Source, o Options) (*Set, error) {
 	}
 	set := &Set{Counts: summary.Counts, Layouts: summary.Layouts, Warnings: summary.Warnings, Refused: refused}
 	c := collected{Set: set, blocks: blocks, o: &o, sources: sources}
+	if err := c.mixed(); err != nil {
+		return nil, err
+	}
 	c.joinNumbers()
 	if err := c.mergeSpots(ctx); err != nil {
 		return nil, err

@@ -35,11 +35,14 @@ type worker struct {
 	reasons       map[string]string // reasons met, each kept once
 	current       [textSlots][]byte // texts of the record
 
-	stop     [256]bool // bytes at which a plain text ends
-	slots    []int8    // of the text columns
-	choosing bool      // by patterns or exclusions
-	careful  bool      // never be quick
-	perRow   float64   // bytes a reading took in the last block
+	reduced   Row       // the row that is being reduced
+	stop      [256]bool // bytes at which a plain text ends
+	slots     []int8    // of the text columns
+	choosing  bool      // by patterns or exclusions
+	careful   bool      // never be quick
+	account   bool      // keep what was read of rows that are not used
+	transform func(orb.Point, float64) (orb.Point, float64)
+	perRow    float64 // bytes a reading took in the last block
 }
 
 func newWorker(p *plan, o *Options, hit []atomic.Bool) *worker {
@@ -55,10 +58,19 @@ func newWorker(p *plan, o *Options, hit []atomic.Bool) *worker {
 			w.slots = append(w.slots, a.slot)
 		}
 	}
-	w.byCode, w.part = o.Select.Code, o.part
+	w.part = o.part
+	if p.reduce {
+		for slot, r := range keptRoles {
+			if p.fieldOf[r] < 0 && p.reducer.Provides(r) {
+				w.slots = append(w.slots, int8(slot))
+			}
+		}
+	}
+	w.account, w.transform = o.Account, o.Transform
+	w.byCode = o.Select.Code
 	w.choosing = len(w.only)+len(w.without) > 0 || w.byCode != nil || w.exclude != nil
 	// With one comma for both, numbers stand in quotes, which quick does not read.
-	w.careful = p.raw || o.careful || p.delimiter == p.decimal
+	w.careful = p.raw || o.careful || o.Account || p.reduce || p.delimiter == p.decimal
 	return w
 }
 
@@ -147,8 +159,12 @@ func (w *worker) record(b []byte, p, next int) {
 		w.refuse(b, p, p, &PositionError{Kind: LongText, What: "row", Expected: "at most 65,535 bytes"})
 		return
 	}
+	if w.reduce {
+		w.reduceRecord(b, p)
+		return
+	}
 	var trouble *PositionError
-	troubleAt := 0
+	troubleAt, why := 0, ""
 	complain := func(i int, e *PositionError) {
 		if trouble == nil {
 			e.Field, trouble, troubleAt = i+1, e, found[i].start
@@ -167,7 +183,7 @@ func (w *worker) record(b []byte, p, next int) {
 	w.placed = true
 	if trouble == nil {
 		// Chosen by text first: a line without a value may be left out by its status.
-		if why := w.chosen(); why != "" {
+		if why = w.chosen(); why != "" && !w.account {
 			w.leaveOut(why)
 			return
 		}
@@ -175,46 +191,70 @@ func (w *worker) record(b []byte, p, next int) {
 	var v [3]float64
 	var decimals [3]int
 	missing := ""
-	placed := true
+	placed, valued := true, true
 	for i, a := range w.acts {
 		if a.kind != number {
 			continue
 		}
-		role := X + Role(a.slot)
+		role := w.roleOf(a.slot)
 		t := trimSpaces(found[i].text)
 		if len(w.missingText) > 0 {
 			if mark, ok := w.missingText[markKey(string(t))]; ok {
 				missing = fmt.Sprintf("%s is %s", role, mark)
-				placed = placed && role == Z
+				placed, valued = placed && a.slot == 2, false
 				continue
 			}
 		}
 		value, d, kind := parseNumber(t, w.decimal)
 		if kind != 0 {
-			placed = placed && role == Z
+			placed, valued = placed && a.slot == 2, false
 			complain(i, &PositionError{Kind: kind, What: role.String(), Seen: shorten(string(t)), Expected: expectedNumber(kind, w.decimal)})
 			continue
 		}
-		if mark := w.missing(value); mark != "" && role == Z {
-			missing = fmt.Sprintf("z is %s", mark)
+		if mark := w.missing(value); mark != "" && a.slot == 2 {
+			missing, valued = fmt.Sprintf("%s is %s", role, mark), false
 			continue
 		}
 		v[a.slot], decimals[a.slot] = value, d
 	}
-	if placed && w.exclude != nil {
+	v = w.settled(v, decimals[2])
+	if why == "" && placed && w.exclude != nil {
 		if k := w.exclude.find(w.current[textSlot[ID]], orb.Point{v[0], v[1]}, w.hit); k >= 0 {
-			w.leaveOut(w.exclude.reasonOf(k))
-			return
+			why = w.exclude.reasonOf(k)
 		}
 	}
-	switch {
-	case trouble != nil:
+	if why == "" && trouble != nil {
+		trouble.ID = string(w.current[idSlot])
 		w.refuse(b, p, troubleAt, trouble)
-	case missing != "":
-		w.leaveOut(missing)
+		return
+	}
+	if why == "" {
+		why = missing
+	}
+	switch {
+	case why != "":
+		w.leaveOut(why)
+		if w.account {
+			k := w.blk.LeftOut[len(w.blk.LeftOut)-1].Row
+			k.Placed, k.Valued, k.Point, k.Z = placed, placed && valued, orb.Point{v[0], v[1]}, v[2]
+		}
 	default:
 		w.accept(v, decimals, b[p:next])
 	}
+}
+
+// settled turns a place and a value as they are written into what they stand for:
+// a depth into an elevation, one unit into another.
+func (w *worker) settled(v [3]float64, decimals int) [3]float64 {
+	if w.down != nil {
+		v[2] = w.down.below(v[2], decimals)
+	}
+	if w.transform != nil {
+		var p orb.Point
+		p, v[2] = w.transform(orb.Point{v[0], v[1]}, v[2])
+		v[0], v[1] = p[0], p[1]
+	}
+	return v
 }
 
 // accept adds a reading to the block.
@@ -249,7 +289,10 @@ func (w *worker) leaveOut(why string) {
 		w.placed = true // quick has looked at the texts, too
 		w.blk.leftParts = append(w.blk.leftParts, w.partOfRecord())
 	}
-	w.blk.LeftOut = append(w.blk.LeftOut, LeftOut{Line: uint32(w.line), ID: string(w.current[textSlot[ID]]), Reason: kept})
+	w.blk.LeftOut = append(w.blk.LeftOut, LeftOut{Line: uint32(w.line), ID: string(w.current[idSlot]), Reason: kept})
+	if w.account {
+		w.blk.LeftOut[len(w.blk.LeftOut)-1].Row = w.keptRow()
+	}
 }
 
 // refuse notes a bad line. The trouble stands at b[at], the record at b[p].

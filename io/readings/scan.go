@@ -175,6 +175,9 @@ func (s *scanner) begin(f *file, size int64, l Layout) *PositionError {
 	skipped := f.chunks.start(size, s.o.SkipRows)
 	sniff := newSniffer(&s.o.Declared, s.need, l)
 	sniff.line, sniff.counts.Skipped = skipped, skipped
+	if s.need == needValue {
+		sniff.reducer, sniff.depthFrom = s.o.Reduce, s.o.DepthFrom
+	}
 	for {
 		for !f.chunks.ended && f.chunks.have < maxRecord && lastLineEnd(f.chunks.buf[:f.chunks.have], 0, true) == 0 {
 			f.chunks.grow()
@@ -212,7 +215,7 @@ func (s *scanner) begin(f *file, size int64, l Layout) *PositionError {
 func (s *scanner) rolesToChooseBy(p *plan) *PositionError {
 	for _, list := range [][]Pattern{s.o.Select.Only, s.o.Select.Without} {
 		for _, pattern := range list {
-			if p.fieldOf[pattern.Role] < 0 {
+			if p.fieldOf[pattern.Role] < 0 && !(p.reduce && p.reducer.Provides(pattern.Role)) {
 				return &PositionError{File: p.layout.File, Line: p.layout.HeaderLine, Kind: MissingRole,
 					What: "no column for " + pattern.Role.String(), Expected: "one to choose " + pattern.String() + " by"}
 			}
@@ -352,6 +355,9 @@ func (s *scanner) take(f *file, blk *Block, size int) error {
 	for i := range blk.LeftOut {
 		blk.LeftOut[i].File = int32(f.number)
 		blk.LeftOut[i].Line += uint32(f.line + 1)
+	}
+	for _, w := range blk.warnings {
+		s.warn(Warning{layout.File, w.Line + f.line + 1, w.Text})
 	}
 	for _, e := range blk.Refused {
 		place(e)

@@ -25,6 +25,18 @@ func ParsePattern(option, text string) (Pattern, error) {
 	return p, p.check(option)
 }
 
+// Literal returns a pattern that fits one text and no other.
+func Literal(role Role, text string) Pattern {
+	var b strings.Builder
+	for _, r := range text {
+		if strings.ContainsRune(`*?[]\^-`, r) {
+			b.WriteByte('\\')
+		}
+		b.WriteRune(r)
+	}
+	return Pattern{role, b.String()}
+}
+
 func (p Pattern) String() string { return p.Role.String() + "=" + p.Text }
 
 func (p Pattern) check(option string) error {

@@ -127,9 +127,9 @@ Z,,,leave out,never seen
 	for _, careful := range []bool{false, true} {
 		s := mustRead(t, text, Options{careful: careful, Select: Selection{Exclude: x}})
 		want := []LeftOut{
-			{0, 3, "B", "pumping (left.csv:2)"},
-			{0, 6, "E", "hit by the roller, twice (left.csv:5)"},
-			{0, 7, "B", "pumping (left.csv:2)"},
+			{0, 3, "B", "pumping (left.csv:2)", nil, nil},
+			{0, 6, "E", "hit by the roller, twice (left.csv:5)", nil, nil},
+			{0, 7, "B", "pumping (left.csv:2)", nil, nil},
 		}
 		if !slices.Equal(s.LeftOut, want) || s.Len() != 3 {
 			t.Errorf("left out %+v", s.LeftOut)

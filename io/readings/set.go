@@ -40,6 +40,7 @@ type Set struct {
 
 	fileStart []int // first used reading of each source
 	texts     [textSlots]texts
+	work      []any
 }
 
 // Counts account for lines.
@@ -74,6 +75,8 @@ type Merged struct {
 	// Code and LineName are its texts in the roles code and line: a line through it
 	// runs through the reading that stands for it.
 	Code, LineName string
+	// Row is the rest of it, if Options.Account is set.
+	Row *KeptRow
 }
 
 // A LeftOut reading is readable but not used.
@@ -82,6 +85,8 @@ type LeftOut struct {
 	Line   uint32
 	ID     string
 	Reason string
+	Check  *Check   // what it says of the surface all the same, if anything
+	Row    *KeptRow // if Options.Account is set
 }
 
 // A Warning is something that a person should know and that stopped nothing.
@@ -109,6 +114,15 @@ func (s *Set) Text(r Role, i int) string {
 		return ""
 	}
 	return s.texts[textSlot[r]].at(i)
+}
+
+// Work returns the work of the Reducer that made used reading i; nil without one, or
+// without Options.Account.
+func (s *Set) Work(i int) any {
+	if s.work == nil {
+		return nil
+	}
+	return s.work[i]
 }
 
 // ID returns the name of used reading i, empty if it has none.

@@ -29,6 +29,11 @@ type sniffer struct {
 	// decided is true once it is known whether lines may be comments; hashed if
 	// that was taken from the # that the first line begins with.
 	decided, hashed bool
+
+	reducer    Reducer    // nil: rows without a value are an error
+	depthFrom  *DepthFrom // what depths are counted from, if it is one number
+	tableNeeds []Role     // with needTable
+	reduce     bool       // this file's rows
 }
 
 func newSniffer(d *Declared, n need, l Layout) *sniffer {
@@ -118,6 +123,12 @@ func (s *sniffer) sniff(b []byte, atEnd bool) (p *plan, passed int, err *Positio
 		passed++ // a last line without a line end
 	}
 	p = newPlan(s.layout, s.declared, s.format, s.need)
+	if p.reduce = s.reduce; p.reduce {
+		p.reducer = s.reducer
+	}
+	if s.layout.Down {
+		p.down = s.depthFrom
+	}
 	switch {
 	case headers > 0:
 		p.source = "as in the header"
@@ -378,5 +389,15 @@ func (s *sniffer) decimal(b []byte, rows []row) *PositionError {
 
 // isNumeric reports whether a role is read as a number.
 func (s *sniffer) isNumeric(r Role) bool {
-	return r == X || r == Y || r == Z && s.need == needValue
+	switch r {
+	case X, Y:
+		return true
+	case Z:
+		return s.need != needPlace
+	case Depth:
+		return s.reducer != nil || s.depthFrom != nil || s.need == needTable
+	case MeasuringPoint, Product, ProductDepth, SpecificGravity, Ground, ScreenTop, ScreenBottom:
+		return s.reducer != nil && s.reducer.Uses(r) || s.need == needTable
+	}
+	return false
 }

@@ -53,8 +53,12 @@ func (s *collected) mergeSpots(ctx context.Context) error {
 		stays := s.representative(m, o.Spots.Rule)
 		for _, i := range m {
 			if i != stays {
-				merged = append(merged, Merged{File: int32(s.Source(int(i))), Line: s.Lines[i], Point: s.Points[i], Z: s.Z[i],
-					ID: strings.Clone(s.text(idSlot, i)), Code: strings.Clone(s.text(codeSlot, i)), LineName: strings.Clone(s.text(lineSlot, i))})
+				m := Merged{File: int32(s.Source(int(i))), Line: s.Lines[i], Point: s.Points[i], Z: s.Z[i],
+					ID: strings.Clone(s.text(idSlot, i)), Code: strings.Clone(s.text(codeSlot, i)), LineName: strings.Clone(s.text(lineSlot, i))}
+				if o.Account {
+					m.Row = s.keptRow(i)
+				}
+				merged = append(merged, m)
 				into = append(into, stays)
 				gone = append(gone, i)
 			}
@@ -77,6 +81,15 @@ func (s *collected) mergeSpots(ctx context.Context) error {
 	s.Counts.Used -= len(merged)
 	s.remove(gone)
 	return nil
+}
+
+// keptRow copies what was read of a reading.
+func (s *collected) keptRow(i int32) *KeptRow {
+	k := &KeptRow{Placed: true, Valued: true, Point: s.Points[i], Z: s.Z[i], Work: s.work[i]}
+	for slot := range k.texts {
+		k.texts[slot] = strings.Clone(s.text(slot, i))
+	}
+	return k
 }
 
 var idSlot, codeSlot, lineSlot, zoneSlot = int(textSlot[ID]), int(textSlot[Code]), int(textSlot[Line]), int(textSlot[Zone])
