@@ -10,6 +10,7 @@ import (
 
 	"isofacet/cmd/internal/memory"
 	"isofacet/cmd/internal/option"
+	"isofacet/cmd/internal/record"
 	"isofacet/cmd/internal/status"
 	"isofacet/grid"
 	"isofacet/grid/decimal"
@@ -95,7 +96,10 @@ var kindHints = map[readings.Kind]string{
 	readings.TooManyBad:    "the layout is probably not what was detected: say --columns, --delimiter, --decimal",
 	readings.NoHeader:      "say what the columns hold, as in --columns id,x,y,z",
 	readings.UnknownHeader: "say what the columns hold, as in --columns x=East,y=North,z=4",
-	readings.DepthOrLevel:  "if it is an elevation, say so with --columns, as in z=...; depths are not read yet",
+	readings.DepthOrLevel:  "say which with --columns: z=... for an elevation, depth=... for a depth below a measuring point",
+	readings.DepthAlone:    "name a table of wells with --wells, or for soundings say with --depth-from what they are counted from",
+	readings.UnknownStatus: "explain the word in a file for --status-table, or skip the column with - in --columns; --lenient leaves such lines out",
+	readings.Impossible:    "look it up in the field book; --lenient leaves such lines out and lists them",
 	readings.TwoColumns:    "say which column it is with --columns",
 	readings.MissingRole:   "say which column it is with --columns, as in --columns x=East,y=North,z=Elev",
 	readings.UnusedRole:    "put - in its place in --columns",
@@ -112,6 +116,13 @@ func explainReadings(err error) (status.Code, string, bool) {
 	if e, ok := errors.AsType[*checkpointsError](err); ok {
 		code, hint, known := explainReadings(e.error)
 		return code, strings.ReplaceAll(hint, "--columns", "--checkpoints-columns"), known
+	}
+	if e, ok := errors.AsType[*besideError](err); ok {
+		code, hint, known := explainReadings(e.error)
+		return code, besideHint(err, e.option, hint), known
+	}
+	if e, ok := errors.AsType[*readings.MixedError](err); ok {
+		return status.WrongData, mixedHint(e), true
 	}
 	if e, ok := errors.AsType[*readings.SpotError](err); ok {
 		return status.WrongData, spotHint(e), true
@@ -133,6 +144,31 @@ func explainReadings(err error) (status.Code, string, bool) {
 		return status.WrongData, "say with --same-spot which of them counts", true
 	}
 	return 0, "", false
+}
+
+// besideHint is the way out of a fault in a file that stands beside the readings.
+func besideHint(err error, option, hint string) string {
+	if e, ok := errors.AsType[*readings.PositionError](err); ok {
+		switch {
+		case option == "status-table":
+			return "the file has a header with status and meaning, and a row a word"
+		case e.Kind == readings.NotNumber || e.Kind == readings.Impossible:
+			return "mend the file; --missing names texts that mean no value"
+		}
+	}
+	return strings.ReplaceAll(hint, "--columns", "--"+option)
+}
+
+// mixedHint says how to choose a round or a zone.
+func mixedHint(e *readings.MixedError) string {
+	one := e.Texts[len(e.Texts)-1]
+	if one == "" {
+		one = e.Texts[0]
+	}
+	if e.Role == readings.Round {
+		return "--round " + record.Shell([]string{one}) + " takes one; --only 'round=*' takes all of them for one surface"
+	}
+	return "--only " + record.Shell([]string{"zone=" + one}) + " takes one; --only 'zone=*' takes all of them for one surface"
 }
 
 // spotHint says which rule would settle what stands at one place.

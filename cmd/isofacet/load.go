@@ -5,6 +5,8 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"slices"
+	"strings"
 
 	"github.com/paulmach/orb"
 
@@ -59,7 +61,7 @@ func (p *program) stand(ctx context.Context, r *reading, list []*input, set *rea
 	l.measure()
 	p.tellReadings(list, set)
 	if set.Len() == 0 {
-		return nil, status.With(status.WrongData, fmt.Errorf("0 of %s used: expected at least three that are not in line", counted(set.Counts.Read, "reading")),
+		return nil, status.With(status.WrongData, fmt.Errorf("0 of %s used%s: expected at least three that are not in line", counted(set.Counts.Read, "reading"), fewReasons(set)),
 			"look at what was left out: isofacet inspect lists all; --only, --without, --missing and --exclude choose")
 	}
 	need := uint64(set.Len()) * bytesReading
@@ -72,6 +74,7 @@ func (p *program) stand(ctx context.Context, r *reading, list []*input, set *rea
 	if err != nil {
 		return nil, l.whichReading(list, err)
 	}
+	p.checkBounds(l)
 	return l, nil
 }
 
@@ -116,6 +119,9 @@ func (p *program) withSources(ctx context.Context, r *reading, list []*input, wo
 	}
 	if err := p.readCodes(ctx, &r.edges, &opt.Select); err != nil {
 		return err
+	}
+	if err := p.reduce(r, &opt); err != nil {
+		return nil, err
 	}
 	report, finish := p.display.Stage("reading")
 	defer finish()
@@ -195,8 +201,8 @@ func (l *loaded) needsTriangles() error {
 	if m.NumVertices() < 3 {
 		why = "fewer than three places"
 	}
-	return status.With(status.WrongData, fmt.Errorf("%s at %s, %s: no surface: expected at least three places that are not in line",
-		counted(l.set.Len(), "reading"), counted(m.NumVertices(), "place"), why),
+	return status.With(status.WrongData, fmt.Errorf("%s at %s, %s%s: no surface: expected at least three places that are not in line",
+		counted(l.set.Len(), "reading"), counted(m.NumVertices(), "place"), why, fewReasons(l.set)),
 		"two readings give a slope along one line only; add readings to its side")
 }
 
@@ -223,13 +229,7 @@ func (p *program) tellReadings(list []*input, set *readings.Set) {
 	for _, w := range set.Warnings {
 		p.report.Warn("reading", w.String(), "file", w.File, "line", w.Line)
 	}
-	for n, u := range p.notUsed(list, set) {
-		if n == p.listMost {
-			p.report.Note(fmt.Sprintf("and %d more; inspect lists all", set.Counts.Read-set.Counts.Used-n))
-			break
-		}
-		p.report.Note(fmt.Sprintf("%s: %s:%d: %s", u.What, u.File, u.Line, u.Reason), "file", u.File, "line", u.Line, "id", u.ID, "reason", u.Reason)
-	}
+	p.tellNotUsed(p.notUsed(list, set), set.Heads())
 	c := set.Counts
 	p.report.Note(fmt.Sprintf("readings: %d read, %d used, %d merged, %d left out, %d refused", c.Read, c.Used, c.Merged, c.LeftOut, c.Refused),
 		"read", c.Read, "used", c.Used, "merged", c.Merged, "left_out", c.LeftOut, "refused", c.Refused)
@@ -237,6 +237,42 @@ func (p *program) tellReadings(list []*input, set *readings.Set) {
 		p.report.Note(fmt.Sprintf("same spot: %s with several readings, largest spread of z %v", counted(set.SpotCount, "place"), set.SpotSpread),
 			"places", set.SpotCount, "spread", set.SpotSpread)
 	}
+}
+
+// tellNotUsed names readings that are not used: all of them, or else the first few,
+// and those that the command line chose not to use by their number.
+func (p *program) tellNotUsed(all []record.NotUsed, heads bool) {
+	told := 0
+	var patterns []string
+	byPattern := map[string]int{}
+	for _, u := range all {
+		if p.listMost < len(all) && isChoice(u.Reason) {
+			if byPattern[u.Reason]++; byPattern[u.Reason] == 1 {
+				patterns = append(patterns, u.Reason)
+			}
+			continue
+		}
+		if told++; told > p.listMost {
+			continue
+		}
+		who := ""
+		if heads && u.ID != "" {
+			who = u.ID + ": "
+		}
+		p.report.Note(fmt.Sprintf("%s: %s:%d: %s%s", u.What, u.File, u.Line, who, u.Reason), "file", u.File, "line", u.Line, "id", u.ID, "reason", u.Reason)
+	}
+	if told > p.listMost {
+		p.report.Note(fmt.Sprintf("and %d more; inspect lists all", told-p.listMost))
+	}
+	slices.Sort(patterns)
+	for _, reason := range patterns {
+		p.report.Note(fmt.Sprintf("left out: %s, %s", counted(byPattern[reason], "reading"), reason), "readings", byPattern[reason], "reason", reason)
+	}
+}
+
+// isChoice reports whether a reading is left out by --only, --without or --round.
+func isChoice(reason string) bool {
+	return strings.HasPrefix(reason, "not among ") || strings.HasPrefix(reason, "among ")
 }
 
 // notUsed lists every reading that the surface does not have: merged, left out,

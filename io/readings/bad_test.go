@@ -162,7 +162,7 @@ func TestBadInput(t *testing.T) {
 	}
 	// What no small text can bring about: other tests do, or 2^31 readings would.
 	met[0], met[Unreadable], met[TooManyBad], met[TooMany] = true, true, true, true
-	for _, k := range []Kind{DepthAlone, UnknownStatus, NoWell, Impossible} { // those of a Reducer
+	for _, k := range []Kind{DepthAlone, UnknownStatus, Impossible} { // those of a Reducer
 		met[k] = true
 	}
 	for k, ok := range met {

@@ -42,7 +42,6 @@ const (
 	WhichDecimal  // "1,234" everywhere: 1.234 or 1234?
 	DepthAlone    // a depth, and nothing that it is counted from
 	UnknownStatus // a word of the status that no table explains
-	NoWell        // an id that the well table does not have
 	Impossible    // numbers that contradict each other
 	WhichComment  // every line begins with the comment mark
 	kindCount

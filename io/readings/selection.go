@@ -29,7 +29,7 @@ func ParsePattern(option, text string) (Pattern, error) {
 func Literal(role Role, text string) Pattern {
 	var b strings.Builder
 	for _, r := range text {
-		if strings.ContainsRune(`*?[]\^-`, r) {
+		if strings.ContainsRune(`*?[\`, r) {
 			b.WriteByte('\\')
 		}
 		b.WriteRune(r)
