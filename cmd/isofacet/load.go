@@ -121,7 +121,7 @@ func (p *program) withSources(ctx context.Context, r *reading, list []*input, wo
 		return err
 	}
 	if err := p.reduce(r, &opt); err != nil {
-		return nil, err
+		return err
 	}
 	report, finish := p.display.Stage("reading")
 	defer finish()
