@@ -25,6 +25,9 @@ type Clip struct {
 	from     *Surface
 	segments [][]int32 // of the mesh's segments, those of the old mesh that they lie along
 	rings    int       // the first so many are pieces of rings
+
+	whole    *triangulate.Mesh // the old one, hidden triangles shown
+	supports []support         // of the mesh's inputs after the old vertices
 }
 
 // SegmentsAlong returns the numbers of the old mesh's segments (its breaklines)
@@ -96,7 +99,7 @@ func (s *Surface) Clip(ctx context.Context, r *triangulate.Region, opt triangula
 	for i := len(pts) - 1; i >= 0; i-- { // an old vertex has the last word
 		z[mesh.VertexOf(i)] = c.valueAt(i, pts[i])
 	}
-	clip := &Clip{from: s, segments: of, rings: rings}
+	clip := &Clip{from: s, segments: of, rings: rings, whole: c.whole, supports: c.supports}
 	outside := clip.outside(mesh, r, c)
 	mesh = mesh.Hide(func(t triangulate.Triangle) bool { return outside[t] || c.wasHidden(mesh, t) })
 	clip.Surface, err = New(mesh, z)

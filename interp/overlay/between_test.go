@@ -259,3 +259,16 @@ func TestApart(t *testing.T) {
 		}
 	}
 }
+
+func constrained(t testing.TB, pts []orb.Point, segs []triangulate.Segment, z []float64) *interp.Surface {
+	t.Helper()
+	m, err := triangulate.Constrained(context.Background(), pts, segs, triangulate.Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	s, err := interp.FromInputs(m, z)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return s
+}
