@@ -48,6 +48,7 @@ var explanations = []func(error) (code status.Code, hint string, ok bool){
 	explainGrid,
 	explainRaster,
 	explainContour,
+	explainProfile,
 	explainFiles,
 }
 

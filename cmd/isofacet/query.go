@@ -2,14 +2,11 @@ package main
 
 import (
 	"errors"
-	"fmt"
 	"slices"
-	"strings"
 
 	"github.com/spf13/cobra"
 
 	"isofacet/cmd/internal/manual"
-	"isofacet/cmd/internal/option"
 	"isofacet/cmd/internal/status"
 	"isofacet/io/readings"
 )
@@ -62,9 +59,8 @@ type queryCommand struct {
 	*program
 	reading
 	writing
-	at        option.At
-	atColumns parsed[readings.Columns]
-	explain   manual.Switch
+	asking
+	explain manual.Switch
 }
 
 func (q *queryCommand) run(cmd *cobra.Command, files []string) error {
@@ -80,11 +76,9 @@ func (q *queryCommand) run(cmd *cobra.Command, files []string) error {
 	if err != nil {
 		return err
 	}
-	var asked *input
-	if len(q.at.Files) > 0 {
-		if asked, err = q.input(q.at.Files[0]); err != nil {
-			return err
-		}
+	asked, err := q.askedInput(q.program)
+	if err != nil {
+		return err
 	}
 	out, err := q.open(cmd.Context(), &q.writing, dests, q.paths())
 	if err != nil {
@@ -94,7 +88,7 @@ func (q *queryCommand) run(cmd *cobra.Command, files []string) error {
 
 	// The places are read first: they are few, and a fault in them should not
 	// show only after the readings have been worked on.
-	places, err := q.places(cmd, asked)
+	places, err := q.asking.places(cmd.Context(), q.program, asked, bool(q.lenient), append(slices.Clone(answerNames), explainNames()...))
 	if err != nil {
 		return err
 	}
@@ -111,55 +105,8 @@ func (q *queryCommand) run(cmd *cobra.Command, files []string) error {
 
 // check refuses what can be refused before anything is read.
 func (q *queryCommand) check(files []string) error {
-	switch {
-	case len(q.at.Places)+len(q.at.Files) == 0:
+	if len(q.at.Places)+len(q.at.Files) == 0 {
 		return status.Usage(errors.New("--at is missing: expected a place X,Y or a file of places"), "as in --at 431250,5621500")
-	case len(q.at.Files) > 1, len(q.at.Files) == 1 && len(q.at.Places) > 0:
-		return status.Usage(fmt.Errorf("--at %s: expected places X,Y, or one file of places: one table has one set of columns", q.at.String()),
-			"put all places into one file, or run the command once for each")
-	case len(q.at.Files) == 0 && q.atColumns.text != "":
-		return status.Usage(errors.New("--at-columns without a file of places: expected --at FILE"), "leave --at-columns out: typed places are X,Y")
-	case len(q.at.Files) == 1 && q.at.Files[0] == "-" && (len(files) == 0 || slices.Contains(files, "-")):
-		return status.Usage(errors.New(`--at "-": standard input holds the readings: expected one of the two from a file`), "name the file of readings")
 	}
-	return nil
+	return q.asking.check(len(files) == 0 || slices.Contains(files, "-"))
 }
-
-// places returns the places that are asked about.
-func (q *queryCommand) places(cmd *cobra.Command, asked *input) (*places, error) {
-	if asked == nil {
-		return typedPlaces(q.at.Places), nil
-	}
-	found, err := readings.ReadPositions(cmd.Context(), asked.Source, readings.Options{
-		Declared: readings.Declared{Columns: q.atColumns.value},
-		Lenient:  bool(q.lenient),
-		Workers:  q.workers(),
-	})
-	if err != nil {
-		return nil, &placesError{err}
-	}
-	asked.file.Layout = found.Layout.String()
-	q.report.Note("places: "+asked.Name+": "+found.Layout.String(), "file", asked.Name, "layout", found.Layout.String())
-	for _, w := range found.Warnings {
-		q.report.Warn("places", w.String(), "file", w.File, "line", w.Line)
-	}
-	for _, e := range found.Refused {
-		q.report.Note("refused: "+e.Error(), "file", e.File, "line", e.Line)
-	}
-	if found.Counts.LeftOut > 0 {
-		q.report.Warn("places-left-out", fmt.Sprintf("%s: %s without coordinates left out", asked.Name, counted(found.Counts.LeftOut, "row")))
-	}
-	for _, name := range found.Names {
-		if slices.Contains(answerNames, name) || slices.Contains(explainNames(), name) {
-			return nil, status.With(status.WrongData, fmt.Errorf("%s: column %q: expected names other than those of the answers", asked.Name, name),
-				"rename the column, or take it out: the answers are "+strings.Join(answerNames, ", "))
-		}
-	}
-	return filePlaces(found), nil
-}
-
-// placesError is a fault in the file of places: its columns are declared with
-// another option than those of the readings.
-type placesError struct{ error }
-
-func (e *placesError) Unwrap() error { return e.error }

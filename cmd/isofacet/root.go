@@ -30,6 +30,7 @@ func (p *program) commands() []*cobra.Command {
 		newQuery(p),
 		newTriangles(p),
 		newAccuracy(p),
+		newProfile(p),
 		newSamples(p),
 		newCompletion(p),
 		newVersion(p),

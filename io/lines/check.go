@@ -19,6 +19,7 @@ import (
 type checker struct {
 	what   string // line or ring
 	rings  bool
+	plane  bool // heights do not matter
 	zeros  Zeros
 	set    *Set
 	faults Faults
@@ -32,6 +33,9 @@ func newChecker(what string, z Zeros) *checker {
 // keep adds a line to the set if nothing is wrong with it.
 func (c *checker) keep(l *Line) {
 	c.set.Vertices += len(l.Points)
+	if c.plane {
+		l.Z = nil
+	}
 	f := c.heights(l)
 	if f == nil {
 		f = c.dropRepeats(l)
@@ -125,7 +129,7 @@ func (c *checker) heights(l *Line) *Fault {
 }
 
 func (c *checker) withoutHeights(l *Line) *Fault {
-	if c.rings {
+	if c.rings || c.plane {
 		return nil
 	}
 	return c.fault(l, 0, NoHeights, "a height at every vertex of a breakline; only boundaries and voids go without", "has no heights")

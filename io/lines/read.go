@@ -30,6 +30,15 @@ func Rings(ctx context.Context, sources []readings.Source, o Options) (*Set, err
 	return read(ctx, sources, o, newChecker("ring", o.Zeros))
 }
 
+// Paths reads lines in the plane, such as those that profiles follow: every kind of line
+// will do, closed or not. Heights that they have are read and dropped. Errors are those of
+// Breaklines.
+func Paths(ctx context.Context, sources []readings.Source, o Options) (*Set, error) {
+	c := newChecker("line", o.Zeros)
+	c.plane = true
+	return read(ctx, sources, o, c)
+}
+
 func read(ctx context.Context, sources []readings.Source, o Options, c *checker) (*Set, error) {
 	for _, src := range sources {
 		data, err := whole(ctx, src, sizeMost)

@@ -163,11 +163,6 @@ func (m *Map) head() {
 	}
 }
 
-// words writes a line of text. anchor is start, middle or end.
-func (m *Map) words(x, y, size float64, anchor, text string) {
-	m.put(`<text x="`, mm(x), `" y="`, mm(y), `" font-size="`, mm(size), `" text-anchor="`, anchor, `" fill="`, ink, `">`, escape(text), "</text>\n")
-}
-
 // group closes the open group and opens another, unless it is the same.
 func (m *Map) group(what, attributes, title string) {
 	if what == m.open {

@@ -94,6 +94,11 @@ func separated(dst []byte, n int32) []byte {
 	return appendHundredths(dst, n)
 }
 
+// words writes a line of text. anchor is start, middle or end.
+func (c *canvas) words(x, y, size float64, anchor, text string) {
+	c.put(`<text x="`, mm(x), `" y="`, mm(y), `" font-size="`, mm(size), `" text-anchor="`, anchor, `" fill="`, ink, `">`, escape(text), "</text>\n")
+}
+
 // escape returns text for use in elements and attributes. Characters that XML 1.0 does not allow, and bytes that are no
 // UTF-8, become U+FFFD.
 func escape(text string) string {
