@@ -10,7 +10,6 @@ import (
 	"golang.org/x/sync/errgroup"
 
 	"isofacet/interp"
-	"isofacet/triangulate"
 )
 
 // Show says what of a surface a raster shows.
@@ -30,8 +29,8 @@ type Options struct {
 	// Workers is the largest number of goroutines; 0 means one per CPU. It
 	// never changes a bit of the result.
 	Workers int
-	// Progress, when not nil, is told from several goroutines how many of the
-	// triangles are done.
+	// Progress, when not nil, is told from several goroutines how many parts of the
+	// raster are done.
 	Progress func(done, total int)
 }
 
@@ -46,7 +45,7 @@ type Options struct {
 // ends first. Call spec.Check first where the size comes from outside: the
 // values take 8 bytes a node.
 //
-// Time O(nodes + triangles x rows that each spans).
+// Time O(nodes + triangles x rows that each spans); 8 bytes a triangle while it works.
 func Fill(ctx context.Context, spec Spec, s *interp.Surface, opt Options) (*Grid, error) {
 	g, err := newUnset(spec)
 	if err != nil {
@@ -56,32 +55,32 @@ func Fill(ctx context.Context, spec Spec, s *interp.Surface, opt Options) (*Grid
 	if workers <= 0 {
 		workers = runtime.GOMAXPROCS(0)
 	}
-	if err := g.setNoData(ctx, s.Mesh(), workers); err != nil {
+	f := newScan(g, s, opt.Show)
+	f.setBlocks(workers)
+	start, list, err := f.byBlock(ctx, workers)
+	if err != nil {
 		return nil, err
 	}
-	f := newScan(g, s, opt.Show)
-	total := s.Mesh().NumTriangles()
+	blocks := f.numBlocks()
 	var next, done atomic.Int64
 	group, ctx := errgroup.WithContext(ctx)
-	for range workers {
+	for range min(workers, blocks) {
 		group.Go(func() error {
-			w := &writer{scan: f}
-			for {
-				lo := int(next.Add(trianglesAtOnce)) - trianglesAtOnce
-				if lo >= total {
-					return nil
+			w := f.newWriter()
+			for b := int(next.Add(1)) - 1; b < blocks; b = int(next.Add(1)) - 1 {
+				w.begin(f.block(b))
+				for _, t := range list[start[b]:start[b+1]] {
+					f.triangle(w, t)
 				}
-				hi := min(lo+trianglesAtOnce, total)
-				for t := lo; t < hi; t++ {
-					f.triangle(w, triangulate.Triangle(t))
-				}
+				w.end()
 				if err := ctx.Err(); err != nil {
 					return err
 				}
 				if opt.Progress != nil {
-					opt.Progress(int(done.Add(int64(hi-lo))), total)
+					opt.Progress(int(done.Add(1)), blocks)
 				}
 			}
+			return nil
 		})
 	}
 	if err := group.Wait(); err != nil {
@@ -90,8 +89,8 @@ func Fill(ctx context.Context, spec Spec, s *interp.Surface, opt Options) (*Grid
 	return g, nil
 }
 
-// trianglesAtOnce is how many neighbouring triangles a worker takes at a time:
-// enough to make taking them cheap, few enough to share out a small mesh.
+// trianglesAtOnce is how many triangles are looked at between two looks at the
+// context.
 const trianglesAtOnce = 4096
 
 // newUnset is New without the no-data.
@@ -103,71 +102,6 @@ func newUnset(spec Spec) (*Grid, error) {
 		return nil, spec.Check(math.MaxInt64 / 8)
 	}
 	return &Grid{Spec: spec, Values: make([]float64, spec.NumNodes())}, nil
-}
-
-// setNoData makes NaN of every value that the surface may leave alone: all but
-// those well inside its outline, which the triangles write.
-func (g *Grid) setNoData(ctx context.Context, m *triangulate.Mesh, workers int) error {
-	inside := g.wellInside(m)
-	var group errgroup.Group
-	for w := range workers {
-		group.Go(func() error {
-			for row := w * len(inside) / workers; row < (w+1)*len(inside)/workers; row++ {
-				if err := ctx.Err(); err != nil {
-					return err
-				}
-				values, in := g.Row(row), inside[row]
-				for i := range values[:in.from] {
-					values[i] = math.NaN()
-				}
-				for i := in.to; i < len(values); i++ {
-					values[i] = math.NaN()
-				}
-			}
-			return nil
-		})
-	}
-	return group.Wait()
-}
-
-// wellInside returns, for every row, columns whose nodes are certainly in a
-// triangle: more than a cell away from the hull. Where triangles are hidden there
-// may be gaps anywhere, and it knows of none.
-func (g *Grid) wellInside(m *triangulate.Mesh) []columnSpan {
-	inside := make([]columnSpan, g.Spec.Rows)
-	if m.NumTriangles() == 0 || m.NumTriangles() < m.Whole().NumTriangles() {
-		return inside
-	}
-	for i := range inside {
-		inside[i] = columnSpan{-1, -1}
-	}
-	// Counter-clockwise, edges to the west of the surface run south, those to
-	// its east north; what runs neither way shuts the row.
-	ys := g.Spec.Ys()
-	hull := m.Hull()
-	for i, v := range hull {
-		a, b := m.Position(v), m.Position(hull[(i+1)%len(hull)])
-		g.eachRowNear(a, b, func(row int, span columnSpan) {
-			in := &inside[row]
-			switch y := ys[row]; {
-			case b[1] < y && y < a[1]:
-				in.from = max(in.from, span.to)
-			case a[1] < y && y < b[1]:
-				if in.to < 0 {
-					in.to = span.from
-				}
-				in.to = min(in.to, span.from)
-			default:
-				in.from, in.to = g.Spec.Cols, 0
-			}
-		})
-	}
-	for i, in := range inside {
-		if in.from < 0 || in.to < 0 || in.from >= in.to {
-			inside[i] = columnSpan{0, 0}
-		}
-	}
-	return inside
 }
 
 // String returns the word that options use.

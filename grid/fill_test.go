@@ -112,6 +112,58 @@ func TestFillEqualsQuery(t *testing.T) {
 	}
 }
 
+// Blocks are filled apart: triangles that cross many of them and triangles far smaller
+// than a cell give what a query gives (P4), for any number of workers.
+func TestFillAcrossBlocks(t *testing.T) {
+	for _, c := range []struct {
+		name string
+		pts  []orb.Point
+	}{
+		{"two triangles", []orb.Point{{-3, -2}, {803, 11}, {790, 301}, {1, 296}}},
+		{"corners on nodes and rims of blocks", []orb.Point{{0, 0}, {256, 0}, {512, 128}, {256, 128}, {0, 299}, {799, 299}, {799, 0}}},
+		{"smaller than cells", scaled(pointsets.Uniform(20000, 3), 780, 290)},
+	} {
+		s := surfaceOf(t, c.pts, wave(c.pts, 100))
+		one := decimal.FromInt(1)
+		spec := grid.Spec{CellX: one, CellY: one, Cols: 800, Rows: 300}
+		places := make([]orb.Point, 0, spec.NumNodes())
+		for row := range spec.Rows {
+			for col := range spec.Cols {
+				places = append(places, orb.Point{spec.X(col), spec.Y(row)})
+			}
+		}
+		want, err := s.Query(context.Background(), places, 0)
+		if err != nil {
+			t.Fatal(err)
+		}
+		for _, workers := range []int{1, 2, 7} {
+			g, err := grid.Fill(context.Background(), spec, s, grid.Options{Workers: workers})
+			if err != nil {
+				t.Fatal(err)
+			}
+			values := 0
+			for i, got := range g.Values {
+				if math.Float64bits(got) != math.Float64bits(want[i].Z) && !(math.IsNaN(got) && math.IsNaN(want[i].Z)) {
+					t.Fatalf("%s, %d workers, %v: %v, query says %v", c.name, workers, places[i], got, want[i].Z)
+				}
+				if !math.IsNaN(got) {
+					values++
+				}
+			}
+			if values < len(places)/2 {
+				t.Errorf("%s: %d of %d nodes have a value", c.name, values, len(places))
+			}
+		}
+	}
+}
+
+func scaled(pts []orb.Point, x, y float64) []orb.Point {
+	for i, p := range pts {
+		pts[i] = orb.Point{float64(p[0] * x), float64(p[1] * y)}
+	}
+	return pts
+}
+
 func BenchmarkFill(b *testing.B) {
 	for _, d := range []struct {
 		name string

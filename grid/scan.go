@@ -28,16 +28,19 @@ type scan struct {
 	g    *Grid
 	s    *interp.Surface
 	m    *triangulate.Mesh
+	pos  []orb.Point // of the vertices
 	show Show
 	xs   []float64 // of the columns, rising
 	ys   []float64 // of the rows counted from the south, rising
 
 	x0, y0, perX, perY float64
 	tolU, tolV         float64 // how far rounding can move a place from its u, v
+
+	blockRowsLog, acrossBlocks int // of the rows in a block; how many blocks from west to east
 }
 
 func newScan(g *Grid, s *interp.Surface, show Show) *scan {
-	f := &scan{g: g, s: s, m: s.Mesh(), show: show, xs: g.Spec.Xs(), ys: g.Spec.Ys()}
+	f := &scan{g: g, s: s, m: s.Mesh(), pos: s.Mesh().Positions(), show: show, xs: g.Spec.Xs(), ys: g.Spec.Ys()}
 	for i, j := 0, len(f.ys)-1; i < j; i, j = i+1, j-1 {
 		f.ys[i], f.ys[j] = f.ys[j], f.ys[i]
 	}
@@ -62,68 +65,45 @@ func tolerance(nodes []float64, low, high, per float64) float64 {
 	return 4 * e * per * (float64(4*span) + size)
 }
 
-// triangle writes the nodes that t owns. w is scratch of the caller's.
+// corners returns where the corners of t are, counter-clockwise. Pointers, because
+// arrays would be copied to the stack, which is a quarter of the work here.
+func (f *scan) corners(t triangulate.Triangle) (p, q, r *orb.Point) {
+	e := triangulate.HalfEdge(3 * t)
+	return &f.pos[f.m.Origin(e)], &f.pos[f.m.Origin(e+1)], &f.pos[f.m.Origin(e+2)]
+}
+
+// triangle writes the nodes of the writer's block that t owns.
 func (f *scan) triangle(w *writer, t triangulate.Triangle) {
-	k := f.m.Corners(t)
-	p, q, r := f.m.Position(k[0]), f.m.Position(k[1]), f.m.Position(k[2])
-	ua, va := (p[0]-f.x0)*f.perX, (p[1]-f.y0)*f.perY
-	ub, vb := (q[0]-f.x0)*f.perX, (q[1]-f.y0)*f.perY
-	uc, vc := (r[0]-f.x0)*f.perX, (r[1]-f.y0)*f.perY
-	// From the lowest to the highest; each exchange mirrors the turn.
-	shortRight := true
-	if vb < va {
-		ua, va, ub, vb, shortRight = ub, vb, ua, va, !shortRight
-	}
-	if vc < vb {
-		ub, vb, uc, vc, shortRight = uc, vc, ub, vb, !shortRight
-		if vb < va {
-			ua, va, ub, vb, shortRight = ub, vb, ua, va, !shortRight
-		}
-	}
-	top := float64(len(f.ys) - 1)
-	if vc < -f.tolV || va > top+f.tolV {
-		return
-	}
-	right := float64(len(f.xs) - 1)
-	uMin, uMax := ua, ua
-	if ub < uMin {
-		uMin = ub
-	} else if ub > uMax {
-		uMax = ub
-	}
-	if uc < uMin {
-		uMin = uc
-	} else if uc > uMax {
-		uMax = uc
-	}
-	if uMax < -f.tolU || uMin > right+f.tolU {
-		return
-	}
-	first, last := 0, len(f.ys)-1
-	if va > f.tolV {
-		first = int(va-f.tolV) + 1
-	}
-	if vc+f.tolV < top {
-		last = int(vc + f.tolV)
-	}
+	p, q, r := f.corners(t)
+	v0, v1, v2 := float64((p[1]-f.y0)*f.perY), float64((q[1]-f.y0)*f.perY), float64((r[1]-f.y0)*f.perY)
+	// From the lowest to the highest, by rank: which branch to take would be a guess
+	// that the processor gets wrong half of the time.
+	r0 := one(v1 < v0) + one(v2 < v0)
+	r1 := one(v0 <= v1) + one(v2 < v1)
+	r2 := one(v0 <= v2) + one(v1 <= v2)
+	var us, vs [4]float64
+	us[r0&3], vs[r0&3] = float64((p[0]-f.x0)*f.perX), v0
+	us[r1&3], vs[r1&3] = float64((q[0]-f.x0)*f.perX), v1
+	us[r2&3], vs[r2&3] = float64((r[0]-f.x0)*f.perX), v2
+	ua, va, ub, vb, uc, vc := us[0], vs[0], us[1], vs[1], us[2], vs[2]
+	shortRight := (r1-r0+3)%3 == 1 // an even exchange of corners does not mirror the turn
+	first, last := max(f.after(va, f.tolV), w.south), min(f.before(vc, f.tolV, len(f.ys)), w.north-1)
 	if first > last {
 		return
 	}
-	long := (uc - ua) / (vc - va)
-	low := (ub - ua) / (vb - va)
-	high := (uc - ub) / (vc - vb)
-	tolV := 4 * f.tolV
-	tolLong := f.tolU + float64(math.Abs(long)*tolV)
-	tolLow := f.tolU + float64(math.Abs(low)*tolV)
-	tolHigh := f.tolU + float64(math.Abs(high)*tolV)
-	inView := uMin > 1 && uMax < right-1
-
 	w.prepare(t)
+	uMin, uMax := min(ua, ub, uc), max(ua, ub, uc)
+	long := f.lineThrough(ua, va, uc, vc)
+	low := f.lineThrough(ua, va, ub, vb)
+	high := f.lineThrough(ub, vb, uc, vc)
+	// Then columns are whole parts without a look at the margins.
+	inView := uMin > 1 && uMax < float64(len(f.xs)-2)
 	for row := first; row <= last; row++ {
 		v := float64(row)
-		if v <= va+f.tolV || v >= vc-f.tolV {
+		switch {
+		case v <= va+f.tolV || v >= vc-f.tolV:
 			lo, hi := math.Inf(1), math.Inf(-1)
-			for _, e := range [3]struct{ u, v, tol float64 }{{ua, va, tolLong + tolLow}, {ub, vb, tolLow + tolHigh}, {uc, vc, tolLong + tolHigh}} {
+			for _, e := range [3]struct{ u, v, tol float64 }{{ua, va, long.tol + low.tol}, {ub, vb, low.tol + high.tol}, {uc, vc, long.tol + high.tol}} {
 				if math.Abs(e.v-v) <= 2*f.tolV {
 					lo, hi = min(lo, e.u), max(hi, e.u)
 					// Not a number where an edge lies in the row, then both ends do.
@@ -134,112 +114,115 @@ func (f *scan) triangle(w *writer, t triangulate.Triangle) {
 					}
 				}
 			}
-			w.exactly(row, f.column(max(lo, uMin)-2*f.tolU), f.column(min(hi, uMax)+2*f.tolU))
-			continue
-		}
-		l, tolL := ua+float64((v-va)*long), tolLong
-		s, tolS := ua+float64((v-va)*low), tolLow
-		if v > vb-f.tolV {
-			if v > vb+f.tolV {
-				s, tolS = ub+float64((v-vb)*high), tolHigh
-			} else {
-				s, tolS = ub, f.tolU+float64(f.tolV*(uMax-uMin))
-				if t := max(tolLow, tolHigh); t > tolS {
-					tolS = min(t, uMax-uMin)
-				}
+			w.exactly(row, f.column(max(lo, uMin)-2*f.tolU+1), f.column(min(hi, uMax)+2*f.tolU+1))
+		case v > vb-f.tolV && v <= vb+f.tolV:
+			mid := line{from: ub, tol: f.tolU + float64(f.tolV*(uMax-uMin))}
+			if t := max(low.tol, high.tol); t > mid.tol {
+				mid.tol = min(t, uMax-uMin)
 			}
-		}
-		if !shortRight {
-			l, tolL, s, tolS = s, tolS, l, tolL
-		}
-		// Whole numbers in (l-tol, l+tol], (l+tol, s-tol], (s-tol, s+tol].
-		var nearL, inner, nearS, end int
-		if inView && tolL < 1 && tolS < 1 {
-			nearL, inner, nearS, end = int(l-tolL+1), int(l+tolL+1), int(s-tolS+1), int(s+tolS+1)
-		} else {
-			nearL, inner, nearS, end = f.column(l-tolL), f.column(l+tolL), f.column(s-tolS), f.column(s+tolS)
-		}
-		if inner >= nearS {
-			w.exactly(row, nearL, end)
-			continue
-		}
-		if nearL < inner {
-			w.exactly(row, nearL, inner)
-		}
-		w.inside(row, inner, nearS)
-		if nearS < end {
-			w.exactly(row, nearS, end)
+			w.rows(row, row, long, mid, shortRight, inView)
+		case v < vb:
+			end := min(last, lastBelow(vb-f.tolV))
+			w.rows(row, end, long, low, shortRight, inView)
+			row = end
+		default:
+			end := min(last, lastBelow(vc-f.tolV))
+			w.rows(row, end, long, high, shortRight, inView)
+			row = end
 		}
 	}
+	w.finish()
 }
 
-// column returns the first column east of u, from 0 to the number of columns.
+// line is an edge's line: in row v, u is from + slope v, and uncertain by tol.
+type line struct{ from, slope, tol float64 }
+
+// lineThrough returns the line through two corners. Leading it back to row 0 rounds
+// at the size of |slope| rows, of which tolV holds sixteen times as much.
+func (f *scan) lineThrough(ua, va, ub, vb float64) line {
+	slope := (ub - ua) / (vb - va)
+	return line{ua - float64(va*slope), slope, f.tolU + float64(math.Abs(slope)*(4*f.tolV))}
+}
+
+// rows finds the nodes in rows that pass between the same two edges, at some
+// distance from the corners.
+func (w *writer) rows(first, last int, l, s line, shortRight, inView bool) {
+	if !shortRight {
+		l, s = s, l
+	}
+	// Whole numbers in (l-tol, l+tol], (l+tol, s-tol], (s-tol, s+tol].
+	nearL, inner, nearS, end := l.from-l.tol+1, l.from+l.tol+1, s.from-s.tol+1, s.from+s.tol+1
+	if !inView || !(l.tol < 1 && s.tol < 1) {
+		for row := first; row <= last; row++ {
+			v := float64(row)
+			l, s := float64(v*l.slope), float64(v*s.slope)
+			w.columns(row, w.column(nearL+l), w.column(inner+l), w.column(nearS+s), w.column(end+s))
+		}
+		return
+	}
+	n, runs, west, east := len(w.runs), w.runs[:cap(w.runs)], w.west, w.east
+	into := (first-w.south)<<blockColsLog - west
+	for row := first; row <= last; row++ {
+		v := float64(row)
+		l, s := float64(v*l.slope), float64(v*s.slope)
+		nearL, inner, nearS, end := int(nearL+l), int(inner+l), int(nearS+s), int(end+s)
+		if nearL != inner || nearS != end {
+			w.runs = runs[:n]
+			w.columns(row, nearL, inner, nearS, end)
+			n = len(w.runs)
+		} else {
+			// Written in any case and kept if there is a node, without a branch.
+			from := max(inner, west)
+			count := min(nearS, east) - from
+			runs[n] = interp.Run{Row: int32(row), Col: int32(from), N: int32(count), Into: int32(into + from)}
+			n += one(count > 0)
+		}
+		into += 1 << blockColsLog
+	}
+	w.runs = runs[:n]
+}
+
+// one is 1 for true, without a branch.
+func one(b bool) int {
+	i := 0
+	if b {
+		i = 1
+	}
+	return i
+}
+
+// after returns the first whole number above x - tol, at least 0.
+func (f *scan) after(x, tol float64) int {
+	if x > tol {
+		return int(x-tol) + 1
+	}
+	return 0
+}
+
+// before returns the last whole number up to x + tol, below n.
+func (f *scan) before(x, tol float64, n int) int {
+	if x+tol < float64(n-1) {
+		return int(math.Floor(x + tol))
+	}
+	return n - 1
+}
+
+// lastBelow returns the last whole number below x.
+func lastBelow(x float64) int {
+	i := int(x)
+	if float64(i) == x {
+		i--
+	}
+	return i
+}
+
+// column returns the whole part of u, from 0 to the number of columns.
 func (f *scan) column(u float64) int {
 	if !(u >= 0) {
 		return 0
 	}
-	if u >= float64(len(f.xs)-1) {
+	if u >= float64(len(f.xs)) {
 		return len(f.xs)
 	}
-	return int(u) + 1
-}
-
-// writer puts values of one triangle after another into the grid.
-type writer struct {
-	*scan
-	t     triangulate.Triangle
-	plane interp.Plane
-	fixed float64 // the triangle's slope, azimuth or shade
-}
-
-func (w *writer) prepare(t triangulate.Triangle) {
-	w.t = t
-	if w.show == Value {
-		w.s.PlaneInto(&w.plane, t)
-		return
-	}
-	w.fixed = w.show.of(w.s.Gradient(t))
-}
-
-// of returns what is shown of a triangle with this gradient.
-func (s Show) of(dzdx, dzdy float64) float64 {
-	switch s {
-	case Slope:
-		return interp.Slope(dzdx, dzdy)
-	case DownhillAzimuth:
-		return interp.DownhillAzimuth(dzdx, dzdy)
-	}
-	return shade(dzdx, dzdy)
-}
-
-// row returns the values of a row counted from the south.
-func (w *writer) row(row int) []float64 { return w.g.Row(len(w.ys) - 1 - row) }
-
-// inside writes nodes that are strictly inside the triangle.
-func (w *writer) inside(row, from, to int) {
-	values := w.row(row)[from:to]
-	if w.show == Value {
-		w.plane.Span(values, w.xs[from:to], w.ys[row])
-		return
-	}
-	for i := range values {
-		values[i] = w.fixed
-	}
-}
-
-// exactly writes those of the nodes that the triangle owns.
-func (w *writer) exactly(row, from, to int) {
-	values := w.row(row)
-	for col := from; col < to; col++ {
-		p := orb.Point{w.xs[col], w.ys[row]}
-		loc := w.m.LocateIn(w.t, p)
-		if loc.Place == triangulate.Outside {
-			continue
-		}
-		if w.show == Value {
-			values[col] = w.s.Value(loc, p)
-		} else {
-			values[col] = w.fixed
-		}
-	}
+	return int(u)
 }

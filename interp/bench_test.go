@@ -86,12 +86,19 @@ func BenchmarkSampler(b *testing.B) {
 
 func BenchmarkPlane(b *testing.B) {
 	pts := []orb.Point{{500000, 4600000}, {500100, 4600000}, {500000, 4600100}}
-	for name, offset := range map[string]orb.Point{"near": {}, "far": {-500000, -4600000}} {
+	for name, k := range map[string]struct {
+		offset orb.Point
+		z      []float64
+	}{
+		"gentle": {orb.Point{}, []float64{201, 202, 204}},
+		"near":   {orb.Point{}, []float64{1, 2, 4}},
+		"far":    {orb.Point{-500000, -4600000}, []float64{1, 2, 4}},
+	} {
 		moved := make([]orb.Point, 3)
 		for i, p := range pts {
-			moved[i] = orb.Point{p[0] + offset[0], p[1] + offset[1]}
+			moved[i] = orb.Point{p[0] + k.offset[0], p[1] + k.offset[1]}
 		}
-		s := surfaceOf(b, moved, []float64{1, 2, 4})
+		s := surfaceOf(b, moved, k.z)
 		plane := s.Plane(0)
 		xs, dst := make([]float64, 1024), make([]float64, 1024)
 		for i := range xs {
@@ -110,12 +117,18 @@ func BenchmarkPlane(b *testing.B) {
 			}
 			rate(b, len(xs), "nodes/s")
 		})
-		b.Run("span/"+name, func(b *testing.B) {
-			for b.Loop() {
-				plane.Span(dst, xs, moved[0][1]+17)
-			}
-			rate(b, len(xs), "nodes/s")
-		})
+		runs := map[string][]Run{"one-run/": {{N: int32(len(xs))}}}
+		for i := int32(0); int(i) < len(xs); i += 2 {
+			runs["runs-of-two/"] = append(runs["runs-of-two/"], Run{Col: i, N: 2, Into: i})
+		}
+		for runsName, runs := range runs {
+			b.Run(runsName+name, func(b *testing.B) {
+				for b.Loop() {
+					plane.Runs(dst, xs, []float64{moved[0][1] + 17}, runs)
+				}
+				rate(b, len(xs), "nodes/s")
+			})
+		}
 		b.Run("floor/"+name, func(b *testing.B) {
 			for b.Loop() {
 				copy(dst, xs)

@@ -35,14 +35,30 @@ import (
 //	2e Z + 3e R (near)   2e Z + 4e R (elsewhere)
 //
 // with Z the largest |z|; and e Z <= ulp(Z).
+//
+// Gentle triangles, nearly all of those over ground, need less work for the same
+// accuracy. The gradient (gx, gy) gives z(p) = zi + gy (y-yi) + gx (x-xi). Let w and
+// h be the triangle's extent in x and y, and s = w h / D: 1 for half of its box,
+// large for slivers. If it is near, differences of coordinates are exact. A product
+// (zj-zi)(yk-yi) is at most R h and off by 2e of that, their difference by e more; D
+// by 2e, its reciprocal and the product with it by e each. So gx (x-xi), at most s R,
+// is off by 10e s R with its own rounding, and gy (y-yi) likewise; the sums are
+// rounded at sizes of at most Z + s R and Z. A value is off by at most
+//
+//	2e Z + 21e s R
+//
+// and a triangle is gentle if it is near and 8 s R <= Z, so that this is below 4.7e Z.
+// Which way a triangle is done depends on its three readings only.
 type Plane struct {
 	xi, yi, xj, yj, xk, yk float64
 	zi, gj, gk             float64 // zi, (zj-zi)/D, (zk-zi)/D
+	gx, gy                 float64 // the gradient, of gentle ones
 	zLow, zHigh            float64 // the range of the heights
 	// near: on each axis the corners have one sign and lie within a factor of two.
 	// Then every place in the triangle does, and all differences are exact
 	// (Sterbenz). It only saves looking: the general way gives the same bits.
-	near bool
+	near   bool
+	gentle bool
 }
 
 // Plane prepares triangle t, which takes as long as some ten values.
@@ -64,15 +80,34 @@ func (s *Surface) planeThrough(p *Plane, i, j, k triangulate.Vertex) {
 	pi, pj, pk := &s.pos[i], &s.pos[j], &s.pos[k]
 	xi, yi, xj, yj, xk, yk := pi[0], pi[1], pj[0], pj[1], pk[0], pk[1]
 	zi, zj, zk := s.z[i], s.z[j], s.z[k]
-	d, rest := exact.Area2Parts(xi, yi, xj, yj, xk, yk)
-	inverse := 1 / d
 	p.xi, p.yi, p.xj, p.yj, p.xk, p.yk = xi, yi, xj, yj, xk, yk
 	p.zi = zi
-	p.gj = quotient(zj, zi, d, rest, inverse)
-	p.gk = quotient(zk, zi, d, rest, inverse)
 	p.zLow = min(zi, zj, zk)
 	p.zHigh = max(zi, zj, zk)
 	p.near = withinTwo(xi, xj, xk) && withinTwo(yi, yj, yk)
+	if p.gentle = p.near && p.gradient(zj, zk); p.gentle {
+		return
+	}
+	d, rest := exact.Area2Parts(xi, yi, xj, yj, xk, yk)
+	inverse := 1 / d
+	p.gj = quotient(zj, zi, d, rest, inverse)
+	p.gk = quotient(zk, zi, d, rest, inverse)
+}
+
+// gradient prepares a triangle that is near, and reports whether it is gentle.
+func (p *Plane) gradient(zj, zk float64) bool {
+	xj, yj, xk, yk := p.xj-p.xi, p.yj-p.yi, p.xk-p.xi, p.yk-p.yi
+	d := differenceOfProducts(xj, yk, yj, xk)
+	w := max(xj, xk) // i has the smallest x
+	h := max(yj, yk, 0) - min(yj, yk, 0)
+	if !(float64(8*float64(w*h))*(p.zHigh-p.zLow) <= float64(max(math.Abs(p.zLow), math.Abs(p.zHigh))*d)) {
+		return false
+	}
+	hj, hk := zj-p.zi, zk-p.zi
+	inverse := 1 / d
+	p.gx = float64((float64(hj*yk) - float64(hk*yj)) * inverse)
+	p.gy = float64((float64(hk*xj) - float64(hj*xk)) * inverse)
+	return true
 }
 
 // quotient returns (a-b)/(d+rest), off by e of itself: a first quotient and its
@@ -93,6 +128,9 @@ func withinTwo(a, b, c float64) bool {
 
 // At returns the value at (x, y), which must lie in the triangle.
 func (p *Plane) At(x, y float64) float64 {
+	if p.gentle {
+		return p.within(p.zi + float64(p.gy*(y-p.yi)) + float64(p.gx*(x-p.xi)))
+	}
 	var wj, wk float64
 	if p.near {
 		ax, ay := p.xi-x, p.yi-y
@@ -105,9 +143,40 @@ func (p *Plane) At(x, y float64) float64 {
 	return p.blend(wj, wk)
 }
 
-// Span stores At(xs[n], y) in dst[n] for places along one row; dst is at least as
-// long as xs. It is faster than as many calls of At.
-func (p *Plane) Span(dst, xs []float64, y float64) {
+// Run is some places next to each other in a row of a lattice, and where their
+// values go: columns Col to Col+N-1 of row Row, and from Into on.
+type Run struct{ Row, Col, N, Into int32 }
+
+// Runs stores At(xs[c], ys[row]) of every place of every run in dst; no run may be
+// empty. It is faster than as many calls of At.
+func (p *Plane) Runs(dst, xs, ys []float64, runs []Run) {
+	if !p.gentle {
+		for _, r := range runs {
+			p.span(dst[r.Into:][:r.N], xs[r.Col:][:r.N], ys[r.Row])
+		}
+		return
+	}
+	// Writing to dst could change *p for all the compiler knows: keep copies.
+	xi, yi, zi, gx, gy, low, high := p.xi, p.yi, p.zi, p.gx, p.gy, p.zLow, p.zHigh
+	for _, r := range runs {
+		row := zi + float64(gy*(ys[r.Row]-yi))
+		dst, xs := dst[r.Into:][:r.N], xs[r.Col:][:r.N]
+		// How many places a run has is anybody's guess, the processor's too, and a
+		// wrong guess costs more than three places: write the first three whether
+		// there are so many or not, the last one again instead of what is missing.
+		last := len(dst) - 1
+		i1, i2 := min(1, last), min(2, last)
+		dst[0] = within(row+float64(gx*(xs[0]-xi)), low, high)
+		dst[i1] = within(row+float64(gx*(xs[i1]-xi)), low, high)
+		dst[i2] = within(row+float64(gx*(xs[i2]-xi)), low, high)
+		for i := 3; i < len(dst); i++ {
+			dst[i] = within(row+float64(gx*(xs[i]-xi)), low, high)
+		}
+	}
+}
+
+// span stores At(xs[n], y) in dst[n], for a triangle that is not gentle.
+func (p *Plane) span(dst, xs []float64, y float64) {
 	dst = dst[:len(xs)]
 	if !p.near {
 		for n, x := range xs {
@@ -115,7 +184,6 @@ func (p *Plane) Span(dst, xs []float64, y float64) {
 		}
 		return
 	}
-	// Writing to dst could change *p for all the compiler knows: keep copies.
 	xi, xj, xk := p.xi, p.xj, p.xk
 	ay, by, cy := p.yi-y, p.yj-y, p.yk-y
 	zi, gj, gk, low, high := p.zi, p.gj, p.gk, p.zLow, p.zHigh
@@ -123,26 +191,24 @@ func (p *Plane) Span(dst, xs []float64, y float64) {
 		ax := xi - x
 		wj := differenceOfProducts(xk-x, ay, cy, ax)
 		wk := differenceOfProducts(ax, by, ay, xj-x)
-		z := math.FMA(wk, gk, math.FMA(wj, gj, zi))
-		if z < low {
-			z = low
-		}
-		if z > high {
-			z = high
-		}
-		dst[n] = z
+		dst[n] = within(math.FMA(wk, gk, math.FMA(wj, gj, zi)), low, high)
 	}
 }
 
-// blend adds the parts of j and k to the value of i and keeps the sum, whose
-// rounding may lead out, within the range of the three.
+// blend adds the parts of j and k to the value of i.
 func (p *Plane) blend(wj, wk float64) float64 {
-	z := math.FMA(wk, p.gk, math.FMA(wj, p.gj, p.zi))
-	if z < p.zLow {
-		return p.zLow
+	return p.within(math.FMA(wk, p.gk, math.FMA(wj, p.gj, p.zi)))
+}
+
+// within keeps a value, whose rounding may lead out, within the range of the heights.
+func (p *Plane) within(z float64) float64 { return within(z, p.zLow, p.zHigh) }
+
+func within(z, low, high float64) float64 {
+	if z < low {
+		return low
 	}
-	if z > p.zHigh {
-		return p.zHigh
+	if z > high {
+		return high
 	}
 	return z
 }

@@ -110,9 +110,18 @@ func (s *Surface) Z() []float64 { return s.z }
 // order first. Every computation over a triangle takes them in this order, so that
 // results do not depend on how the mesh numbers things.
 func (s *Surface) canonical(t triangulate.Triangle) (i, j, k triangulate.Vertex) {
-	c := s.mesh.Corners(t)
-	i, j, k = c[0], c[1], c[2]
+	e := triangulate.HalfEdge(3 * t)
+	i, j, k = s.mesh.Origin(e), s.mesh.Origin(e+1), s.mesh.Origin(e+2)
 	pi, pj, pk := &s.pos[i], &s.pos[j], &s.pos[k]
+	xi, xj, xk := pi[0], pj[0], pk[0]
+	if xi != xj && xj != xk && xk != xi {
+		// Which corner comes first is anybody's guess, so no branch decides: the
+		// three comparisons choose a row of a table.
+		at := bit(xj < xi) | bit(xk < xj)<<1 | bit(xk < xi)<<2
+		turn := [8]uint8{0, 1, 0, 2, 0, 1, 2, 2}[at&7]
+		c := [8]triangulate.Vertex{i, j, k, i, j}
+		return c[turn], c[turn+1], c[turn+2]
+	}
 	if before(pj, pi) {
 		if before(pk, pj) {
 			return k, i, j
@@ -123,6 +132,15 @@ func (s *Surface) canonical(t triangulate.Triangle) (i, j, k triangulate.Vertex)
 		return k, i, j
 	}
 	return i, j, k
+}
+
+// bit is 1 for true.
+func bit(b bool) uint8 {
+	var i uint8
+	if b {
+		i = 1
+	}
+	return i
 }
 
 func before(p, q *orb.Point) bool {

@@ -226,36 +226,70 @@ func TestWeightsExplainTheValue(t *testing.T) {
 	}
 }
 
-// TestSpanIsAt: a row at a time gives the bits of one by one, on all kinds.
-func TestSpanIsAt(t *testing.T) {
+// TestRunsAreAt: runs of any length give the bits of one by one, on all kinds, and
+// touch nothing beside them.
+func TestRunsAreAt(t *testing.T) {
 	r := rand.New(rand.NewPCG(11, 12))
-	far := 0
-	for range 2000 {
+	const triangles = 4000
+	far, gentle := 0, 0
+	for range triangles {
 		c, kind := someTriangle(r)
-		plane := oneTriangle(t, c, someHeights(r)).Plane(0)
+		z := someHeights(r)
+		if r.IntN(2) == 0 {
+			for i := range z {
+				z[i] = 100 + z[i]/64
+			}
+		}
+		plane := oneTriangle(t, c, z).Plane(0)
 		if !plane.near {
 			far++
 		}
-		y := (c[0][1] + c[1][1] + c[2][1]) / 3
-		xs := []float64{c[0][0], c[1][0], c[2][0], (c[0][0] + c[1][0] + c[2][0]) / 3}
-		dst := make([]float64, len(xs))
-		plane.Span(dst, xs, y)
-		for n, x := range xs {
-			if at := plane.At(x, y); math.Float64bits(at) != math.Float64bits(dst[n]) {
-				t.Fatalf("%s: Span %x, At %x", kind, dst[n], at)
+		if plane.gentle {
+			gentle++
+		}
+		u, v := (c[0][0]+c[1][0]+c[2][0])/3, (c[0][1]+c[1][1]+c[2][1])/3
+		xs := []float64{c[0][0], c[1][0], u, c[2][0], u, c[1][0]}
+		ys := []float64{c[0][1], v, c[2][1]}
+		dst := make([]float64, len(xs)*len(ys)+2)
+		for i := range dst {
+			dst[i] = math.Inf(1)
+		}
+		var runs []Run
+		for row := range ys {
+			col := r.IntN(len(xs))
+			n := 1 + r.IntN(len(xs)-col)
+			runs = append(runs, Run{Row: int32(row), Col: int32(col), N: int32(n), Into: int32(1 + row*len(xs) + col)})
+		}
+		plane.Runs(dst, xs, ys, runs)
+		written := 0
+		for _, run := range runs {
+			for n := range run.N {
+				got, at := dst[run.Into+n], plane.At(xs[run.Col+n], ys[run.Row])
+				if math.Float64bits(at) != math.Float64bits(got) {
+					t.Fatalf("%s: Runs %x, At %x", kind, got, at)
+				}
+				dst[run.Into+n] = math.Inf(1)
+				written++
+			}
+		}
+		for i := range dst {
+			if !math.IsInf(dst[i], 1) {
+				t.Fatalf("%s: value %d was written and is in no run", kind, i)
 			}
 		}
 		// near is a short cut and no other method.
-		if plane.near {
+		if plane.near && !plane.gentle {
 			general := plane
 			general.near = false
-			if a, b := plane.At(xs[3], y), general.At(xs[3], y); a != b {
+			if a, b := plane.At(u, v), general.At(u, v); a != b {
 				t.Fatalf("%s: %x with exact differences, %x in general", kind, a, b)
 			}
 		}
 	}
-	if far == 0 || far == 2000 {
-		t.Errorf("%d of 2000 triangles were far: one way is not tested", far)
+	for what, n := range map[string]int{"far": far, "near": triangles - far, "gentle": gentle, "not gentle": triangles - gentle} {
+		if n < triangles/50 {
+			t.Errorf("%d of %d triangles were %s: that way is not tested", n, triangles, what)
+		}
 	}
 }
 

@@ -201,6 +201,9 @@ func (g *gridCommand) lattice(l *loaded) (grid.Spec, error) {
 // mesh (68) and the surface's values (8).
 const bytesVertex = 120
 
+// bytesFilling is what a reading's two triangles take while a raster is filled.
+const bytesFilling = 16
+
 // A picture has at most so many pixels a side; it takes 8 bytes for each value that it
 // shows and 4 a pixel, legend included.
 const (
@@ -211,7 +214,7 @@ const (
 // fits states what the raster needs and refuses what would not fit beside the
 // surface.
 func (g *gridCommand) fits(l *loaded, spec grid.Spec, dests []*destination) error {
-	taken := uint64(l.set.Len()) * bytesVertex
+	taken := uint64(l.set.Len()) * (bytesVertex + bytesFilling)
 	left := int64(g.budget.Bytes) - int64(taken)
 	if err := spec.Check(max(left, 0)); err != nil {
 		return err
