@@ -135,16 +135,16 @@ func (p *program) draw(ctx context.Context, r *reading, l *loaded, opt triangula
 	}
 	d.lines = append(d.lines, strung.Lines...)
 	p.tellLines("strings of readings", "line", strung)
-	files, err := p.readLines(ctx, e.breaklines.values, e, "line", lines.Breaklines)
+	files, err := p.readLines(ctx, e.breaklines.values, r, "line", lines.Breaklines)
 	if err != nil {
 		return err
 	}
 	d.lines = append(d.lines, files.Lines...)
-	boundary, err := p.readLines(ctx, e.boundary.values, e, "ring", lines.Rings)
+	boundary, err := p.readLines(ctx, e.boundary.values, r, "ring", lines.Rings)
 	if err != nil {
 		return err
 	}
-	voids, err := p.readLines(ctx, e.voids.values, e, "ring", lines.Rings)
+	voids, err := p.readLines(ctx, e.voids.values, r, "ring", lines.Rings)
 	if err != nil {
 		return err
 	}
@@ -169,7 +169,7 @@ func (p *program) draw(ctx context.Context, r *reading, l *loaded, opt triangula
 }
 
 // readLines reads the files of one option, lines or rings.
-func (p *program) readLines(ctx context.Context, names []string, e *edges, kind string, read func(context.Context, []readings.Source, lines.Options) (*lines.Set, error)) (*lines.Set, error) {
+func (p *program) readLines(ctx context.Context, names []string, r *reading, kind string, read func(context.Context, []readings.Source, lines.Options) (*lines.Set, error)) (*lines.Set, error) {
 	if len(names) == 0 {
 		return &lines.Set{}, nil
 	}
@@ -181,10 +181,11 @@ func (p *program) readLines(ctx context.Context, names []string, e *edges, kind 
 		}
 		sources = append(sources, in.Source)
 	}
-	set, err := read(ctx, sources, lines.Options{Zeros: e.linesZ.value, Workers: p.workers()})
+	set, err := read(ctx, sources, lines.Options{Zeros: r.linesZ.value, Workers: p.workers()})
 	if err != nil {
 		return nil, err
 	}
+	r.measureLines(set)
 	p.tellLines(strings.Join(names, ", "), kind, set)
 	return set, nil
 }

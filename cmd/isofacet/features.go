@@ -26,7 +26,7 @@ func (p *program) featureOptions(labels grid.Labels, xyDigits, zDigits int) geoj
 		opt.CoordinatesIn = labels.HorizontalDatum
 	}
 	for _, m := range []struct{ name, label string }{
-		{"horizontal_datum", labels.HorizontalDatum}, {"vertical_datum", labels.VerticalDatum},
+		{"xy_unit", labels.XYUnit}, {"z_unit", labels.ZUnit}, {"horizontal_datum", labels.HorizontalDatum}, {"vertical_datum", labels.VerticalDatum},
 	} {
 		if m.label != "" {
 			opt.Members = append(opt.Members, geojson.Property{Name: m.name, Value: geojson.String(m.label)})

@@ -157,7 +157,7 @@ func (f *finding) writeText(w io.Writer, l *loaded, r *reading) error {
 	line("x", "%v to %v, across %v", e.XMin, e.XMax, across(e.XMin, e.XMax))
 	line("y", "%v to %v, across %v", e.YMin, e.YMax, across(e.YMin, e.YMax))
 	line("z", "%v to %v, across %v", e.ZMin, e.ZMax, across(e.ZMin, e.ZMax))
-	line("units", "unstated; nothing is converted")
+	line("units", "%s", r.unitsLine())
 	for _, label := range [][2]string{{"system", r.crs.String()}, {"datum xy", r.horizontalDatum.String()}, {"datum z", r.verticalDatum.String()}} {
 		if label[1] != "" {
 			line(label[0], "%s", label[1])

@@ -139,6 +139,9 @@ func (g *gridCommand) run(cmd *cobra.Command, files []string) error {
 		return err
 	}
 	g.tellSurface(l)
+	if err := l.guardCell(min(g.cell.X.Float64(), g.cell.Y.Float64()), cellText(g.cell.X, g.cell.Y)); err != nil {
+		return err
+	}
 	if !g.extent.IsSet() {
 		if spec, err = g.lattice(l); err != nil {
 			return err

@@ -64,6 +64,9 @@ func (p *program) stand(ctx context.Context, r *reading, list []*input, set *rea
 		return nil, status.With(status.WrongData, fmt.Errorf("0 of %s used%s: expected at least three that are not in line", counted(set.Counts.Read, "reading"), fewReasons(set)),
 			"look at what was left out: isofacet inspect lists all; --only, --without, --missing and --exclude choose")
 	}
+	if err := p.guardReadings(r, l); err != nil {
+		return nil, err
+	}
 	need := uint64(set.Len()) * bytesReading
 	if err := p.announce("a surface of "+counted(set.Len(), "reading"), need); err != nil {
 		return nil, err
@@ -120,6 +123,10 @@ func (p *program) withSources(ctx context.Context, r *reading, list []*input, wo
 	if err := p.readCodes(ctx, &r.edges, &opt.Select); err != nil {
 		return err
 	}
+	if err := p.settleUnits(&r.measures); err != nil {
+		return err
+	}
+	opt.Transform = r.transform()
 	if err := p.reduce(r, &opt); err != nil {
 		return err
 	}
@@ -209,6 +216,8 @@ func (l *loaded) needsTriangles() error {
 // labels returns what the numbers are, for every output.
 func (r *reading) labels(show string) grid.Labels {
 	return grid.Labels{
+		XYUnit:          r.xyOut(),
+		ZUnit:           r.zOut(),
 		CRS:             r.crs.String(),
 		HorizontalDatum: r.horizontalDatum.String(),
 		VerticalDatum:   r.verticalDatum.String(),
