@@ -5,11 +5,9 @@ import (
 	"errors"
 	"fmt"
 	"math"
-	"math/rand/v2"
 	"testing"
 
 	"github.com/paulmach/orb"
-	"gonum.org/v1/gonum/stat"
 
 	"isofacet/triangulate"
 	"isofacet/triangulate/pointsets"
@@ -186,35 +184,6 @@ func TestLeaveOneOutIsTheSame(t *testing.T) {
 	}
 	if one.Predicted != many.Predicted || one.Joined != many.Joined || one.Lined != many.Lined {
 		t.Errorf("counts %+v, %+v", one, many)
-	}
-}
-
-// TestSummarise against gonum and a case worked by hand.
-func TestSummarise(t *testing.T) {
-	s := Summarise([]float64{3, math.NaN(), -1, 2, 0})
-	for _, c := range []struct {
-		what      string
-		got, want float64
-	}{
-		{"count", float64(s.Count), 4}, {"mean", s.Mean, 1}, {"median", s.Median, 1}, {"sd", s.SD, math.Sqrt(10. / 3)},
-		{"rmse", s.RMSE, math.Sqrt(14. / 4)}, {"p95", s.P95, 2.85}, {"min", s.Min, -1}, {"max", s.Max, 3},
-	} {
-		near(t, c.what, c.got, c.want, 1e-15)
-	}
-	r := rand.New(rand.NewPCG(1, 2))
-	x := make([]float64, 1001)
-	for i := range x {
-		x[i] = r.NormFloat64()
-	}
-	s = Summarise(x)
-	mean, sd := stat.MeanStdDev(x, nil)
-	near(t, "mean", s.Mean, mean, 1e-14)
-	near(t, "sd", s.SD, sd, 1e-14)
-	if none := Summarise(nil); none.Count != 0 || !math.IsNaN(none.Mean) || !math.IsNaN(none.SD) {
-		t.Errorf("of nothing: %+v", none)
-	}
-	if one := Summarise([]float64{7}); one.Mean != 7 || !math.IsNaN(one.SD) || one.P95 != 7 {
-		t.Errorf("of one: %+v", one)
 	}
 }
 

@@ -125,6 +125,37 @@ func (r *Reduction) Without(v Vertex) Left {
 	return left
 }
 
+// WithoutAll appends to dst where each of vs would lie without all of them, and leaves
+// them in. What is on the outline or has constrained edges is not taken out, and Outside
+// is returned for it; what has been taken out before is found where it is.
+func (r *Reduction) WithoutAll(dst []Left, vs []Vertex) []Left {
+	r.copyMesh()
+	stays := func(v Vertex) bool { return r.OnOutline(v) || !r.Removed(v) && r.star(v) }
+	from := len(dst)
+	for _, v := range vs {
+		if stays(v) {
+			dst = append(dst, leftNowhere)
+			continue
+		}
+		dst = append(dst, Left{Place: Inside})
+		if !r.Removed(v) && r.at[v] != NoHalfEdge {
+			r.clear(v)
+			r.at[v] = NoHalfEdge
+		}
+	}
+	for i, v := range vs {
+		switch {
+		case dst[from+i].Place == Outside:
+		case r.Removed(v):
+			dst[from+i] = r.locateFrom(v, r.anyChanged(v))
+		default:
+			dst[from+i] = r.around(v)
+		}
+	}
+	r.undo()
+	return dst
+}
+
 // Remove takes v out and returns where it lies in what is left. A vertex on the
 // outline stays.
 func (r *Reduction) Remove(v Vertex) Left {
@@ -143,12 +174,32 @@ func (r *Reduction) Remove(v Vertex) Left {
 
 // Locate returns where v, which has been taken out, lies in what is left by now.
 func (r *Reduction) Locate(v Vertex) Left {
-	near := v
-	for r.Removed(near) {
-		near = r.ghost[near]
+	return r.locateFrom(v, r.nearGhost(v))
+}
+
+// nearGhost is a triangle near v, which has been taken out.
+func (r *Reduction) nearGhost(v Vertex) Triangle {
+	for r.Removed(v) {
+		v = r.ghost[v]
 	}
-	r.view.m = &Mesh{pos: r.pos, half: r.half, shown: len(r.half)}
-	place, h := r.view.walk(r.at[near].Triangle(), r.pos[v])
+	return r.at[v].Triangle()
+}
+
+// anyChanged is a triangle among those that were noted, if there are any.
+func (r *Reduction) anyChanged(v Vertex) Triangle {
+	for i := range r.saved.list {
+		if t := r.saved.list[i].t; r.half[3*t].origin != NoVertex {
+			return t
+		}
+	}
+	return r.nearGhost(v)
+}
+
+func (r *Reduction) locateFrom(v Vertex, t Triangle) Left {
+	if r.view.m == nil {
+		r.view.m = &Mesh{pos: r.pos, half: r.half, shown: len(r.half)}
+	}
+	place, h := r.view.walk(t, r.pos[v])
 	if place == OnEdge {
 		return r.onEdge(r.half[h].origin, r.dest(h))
 	}

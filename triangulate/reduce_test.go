@@ -245,3 +245,68 @@ func TestRemove(t *testing.T) {
 		}
 	}
 }
+
+// TestWithoutAll: several vertices are taken out together and stay in.
+func TestWithoutAll(t *testing.T) {
+	rng := rand.New(rand.NewPCG(3, 9))
+	for k := range 60 {
+		pts, segs := randomScene(rng, 20+rng.IntN(60), rng.IntN(8), 5+rng.IntN(30))
+		m, err := triangulate.Constrained(context.Background(), pts, segs, triangulate.Options{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		edges, lined := edgesOf(m), map[triangulate.Vertex]bool{}
+		for _, e := range edges {
+			lined[e[0]], lined[e[1]] = true, true
+		}
+		r := m.Reduction()
+		before := map[triangulate.Vertex]bool{}
+		for range 3 { // some are out for good
+			if v := triangulate.Vertex(rng.IntN(m.NumVertices())); !r.OnOutline(v) && !lined[v] && !before[v] {
+				r.Remove(v)
+				before[v] = true
+			}
+		}
+		for range 10 {
+			var vs []triangulate.Vertex
+			out := map[triangulate.Vertex]bool{}
+			for v := range before {
+				out[v] = true
+			}
+			for _, i := range rng.Perm(m.NumVertices())[:1+rng.IntN(m.NumVertices()/2)] {
+				v := triangulate.Vertex(i)
+				vs = append(vs, v)
+				if !r.OnOutline(v) && !lined[v] {
+					out[v] = true
+				}
+			}
+			rest, err := rebuilt(t, m, out, edges, nil)
+			if err != nil {
+				t.Fatal(err)
+			}
+			locator := rest.Locator()
+			for i, left := range r.WithoutAll(nil, vs) {
+				if !out[vs[i]] {
+					if left.Place != triangulate.Outside {
+						t.Fatalf("scene %d: %v stays, but lies %v", k, m.Position(vs[i]), left.Place)
+					}
+					continue
+				}
+				loc := locator.Locate(m.Position(vs[i]))
+				var c []orb.Point
+				switch loc.Place {
+				case triangulate.Inside:
+					for _, x := range rest.Corners(loc.Triangle) {
+						c = append(c, rest.Position(x))
+					}
+				case triangulate.OnEdge:
+					c = []orb.Point{rest.Position(rest.Origin(loc.Edge)), rest.Position(rest.Dest(loc.Edge))}
+				}
+				slices.SortFunc(c, byXY)
+				if left.Place != loc.Place || !slices.Equal(c, cornersOfLeft(m, left)) {
+					t.Fatalf("scene %d: %v lies %v of %v, want %v of %v", k, m.Position(vs[i]), left.Place, cornersOfLeft(m, left), loc.Place, c)
+				}
+			}
+		}
+	}
+}
