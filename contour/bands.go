@@ -22,42 +22,43 @@ type Band struct {
 // Bands returns the parts of s between neighbouring levels as polygons, in order of band, then of the first points of
 // outer rings. Levels need not lie in the range of the values.
 //
-// The rings run along isolines (their points are those of Lines) and along the outline; neighbours have the
-// very same points on their common border. Together the polygons are the surface: they neither overlap nor leave gaps,
-// and their areas add up to its area but for the rounding of crossings on the outline: within (1e-12 x area) +
-// (perimeter x ulp of the largest coordinate). Every polygon is valid by OGC simple features: parts of a band that
-// touch in a point are polygons of their own, and parts without area (a ridge that just reaches the level) are left
-// out. All this is decided by exact signs for the coordinates as given out.
+// The rings run along isolines and along the outline, and neighbours have the very same points on their common border: those
+// of Lines, and readings. Together the polygons are the surface: they neither overlap nor leave gaps, and their areas add
+// up to its area but for the rounding of crossings on the outline: within (1e-12 x area) + (perimeter x ulp of the
+// largest coordinate). Every polygon is valid by OGC simple features: parts of a band that touch in a point are polygons of
+// their own, and parts without area (a ridge that just reaches the level) are left out. All this is decided by exact
+// signs for the coordinates as given out.
 //
-// A reading's place lies in or on a polygon of its band; if its value equals a level that the surface just reaches there, of the
-// band below; and if bands are narrower there than coordinates can show, of one that the surface has that near.
+// A reading's place lies in or on a polygon of its band; or if its value equals a level, of the band below, where the level is
+// only just reached. The readings for which rounding left none are in the report, which also says how far borders are
+// off.
 //
 // It returns a *PiecesError, an error wrapping ErrTooMany for more than 1e9 points, or ctx.Err() with no bands.
 //
 // Time O(n log n) for n points of lines and outline, some 150 bytes a point.
-func Bands(ctx context.Context, s *interp.Surface, levels Levels, opt Options) ([]Band, error) {
+func Bands(ctx context.Context, s *interp.Surface, levels Levels, opt Options) ([]Band, BandReport, error) {
 	return bands(ctx, newTriangles(s), levels, opt)
 }
 
 // RasterBands is Bands for a raster. The surface is that of RasterLines: squares whose four nodes have values.
-func RasterBands(ctx context.Context, g *grid.Grid, levels Levels, opt Options) ([]Band, error) {
+func RasterBands(ctx context.Context, g *grid.Grid, levels Levels, opt Options) ([]Band, BandReport, error) {
 	src, err := newRaster(g)
 	if err != nil {
-		return nil, err
+		return nil, BandReport{}, err
 	}
 	return bands(ctx, src, levels, opt)
 }
 
-func bands(ctx context.Context, src source, levels Levels, opt Options) ([]Band, error) {
+func bands(ctx context.Context, src source, levels Levels, opt Options) ([]Band, BandReport, error) {
 	n, err := netOf(ctx, src, levels, opt)
 	if err != nil {
-		return nil, err
+		return nil, BandReport{}, err
 	}
-	polygons, err := n.polygons(ctx, opt.workers())
+	polygons, report, err := n.polygons(ctx, src, levels.values(), opt.workers())
 	if err != nil {
-		return nil, err
+		return nil, BandReport{}, err
 	}
-	return bandsFrom(polygons, levels), nil
+	return bandsFrom(polygons, levels), report, nil
 }
 
 // netOf returns the net of all lines and the outline.
@@ -98,22 +99,43 @@ func bandsFrom(polygons []bandPolygon, levels Levels) []Band {
 	return out
 }
 
-// polygons returns the polygons of the bands between the paths.
-func (n *net) polygons(ctx context.Context, workers int) ([]bandPolygon, error) {
+// polygons returns the polygons of the bands between the paths, which came from src.
+func (n *net) polygons(ctx context.Context, src source, zs []float64, workers int) ([]bandPolygon, BandReport, error) {
 	if len(n.paths) == 0 {
-		return nil, nil
+		return nil, BandReport{}, nil
 	}
-	tree, _, err := n.splitAll(ctx, workers)
-	if err != nil {
-		return nil, err
+	var polygons []bandPolygon
+	var report BandReport
+	var fresh func(int) bool // all at first
+	near := lookNear(n, src, zs, workers)
+	defer near.wait()
+	for round := range leadsMost {
+		tree, _, err := n.splitAll(ctx, workers, fresh)
+		if err != nil {
+			return nil, BandReport{}, err
+		}
+		f, err := newFaces(n, tree)
+		if err != nil {
+			return nil, BandReport{}, err
+		}
+		if err := ctx.Err(); err != nil {
+			return nil, BandReport{}, err
+		}
+		made, err := f.polygons()
+		if err != nil {
+			return nil, BandReport{}, err
+		}
+		r := f.report(tree, src, zs, near, workers)
+		if round > 0 && len(r.TooNarrow) >= len(report.TooNarrow) {
+			break // the polygons before were as good
+		}
+		polygons, report = made, r
+		leads := f.leads(tree, r, zs)
+		if len(leads) == 0 {
+			break
+		}
+		changed := n.insert(leads)
+		fresh = func(path int) bool { return changed[path] }
 	}
-	chains, nodes := n.chains()
-	f, err := newFaces(n, tree, chains, nodes)
-	if err != nil {
-		return nil, err
-	}
-	if err := ctx.Err(); err != nil {
-		return nil, err
-	}
-	return f.polygons()
+	return polygons, report, ctx.Err()
 }

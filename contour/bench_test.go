@@ -108,7 +108,7 @@ func BenchmarkBands(b *testing.B) {
 			points := 0
 			b.ReportAllocs()
 			for b.Loop() {
-				bands, err := Bands(context.Background(), s, levels, Options{})
+				bands, _, err := Bands(context.Background(), s, levels, Options{})
 				if err != nil {
 					b.Fatal(err)
 				}

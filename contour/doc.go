@@ -12,7 +12,7 @@
 //	for _, l := range lines {
 //		fmt.Println(l.Level.Number, l.Level.Rank, l.Closed, l.Depression, l.Length(), l.Points)
 //	}
-//	bands, err := contour.Bands(ctx, s, levels, contour.Options{})
+//	bands, narrow, err := contour.Bands(ctx, s, levels, contour.Options{})
 //
 // # Conventions
 //
@@ -54,9 +54,15 @@
 // Bands: valid polygons by OGC simple features whose rings do not touch themselves; neighbours have the very same points on
 // their common border; together they are the surface, without overlap or gap, their areas adding up to within
 // (1e-12 x area) + (perimeter x ulp of the largest coordinate). Where lines cross by rounding, one of them is led through
-// an end of the other (nodes.go). A part of the surface thinner than coordinates can show has no polygon; so a reading lies in
-// or on a polygon of its band unless the band is that narrow there. Surfaces with several rims (voids, trimmed edges) are
-// no exception to any of this.
+// an end of the other (nodes.go). Surfaces with several rims (voids, trimmed edges) are no exception to any of this.
+//
+// With d as above but for E the width and height of the surface together, and what lines were led aside, borders are off by
+// BandReport.Off, which has never been seen above 3d. A place further than that from the exact border of its band
+// lies in a polygon of the band, and where a polygon is, its band is no further away than that (narrow.go says why). So a
+// band, or a part of one, that is nowhere wider than 2 Off may have no polygon. A reading lies in or on a polygon of its
+// band (for a value equal to a level, perhaps only of the one below), or it is listed in the BandReport: each is looked
+// for, by exact signs. Where a border came out on the wrong side of a reading, it is led through the reading if that
+// helps.
 //
 // Not checked: that values of a Surface or grid are what they are said to be.
 //

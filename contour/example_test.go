@@ -41,7 +41,7 @@ func Example() {
 	for _, l := range lines {
 		fmt.Printf("%v %v closed %v length %.3f\n", l.Level.Number, l.Level.Rank, l.Closed, l.Length())
 	}
-	bands, err := contour.Bands(ctx, s, levels, contour.Options{})
+	bands, _, err := contour.Bands(ctx, s, levels, contour.Options{})
 	if err != nil {
 		fmt.Println(err)
 		return

@@ -25,6 +25,7 @@ type faces struct {
 	starts []int32   // of every edge, a half of it
 	sets   unions    // of edges that have one face
 	above  []jump    // of every edge's face, as jump.band takes it
+	bands  []int32   // of every edge's face, once polygons were made
 }
 
 // half returns which points a half runs through: the first two of them, and whether it runs as its chain does.
@@ -44,8 +45,13 @@ func (f *faces) origin(h int32) int32 {
 	return f.chains[h/2].to
 }
 
-// newFaces finds the faces between chains and their bands.
-func newFaces(n *net, tree *boxes, chains []chain, nodes int) (*faces, error) {
+// newFaces finds the faces between the paths of a net, which are split, and their bands.
+func newFaces(n *net, tree *boxes) (*faces, error) {
+	chains, nodes := n.chains()
+	return facesBetween(n, tree, chains, nodes)
+}
+
+func facesBetween(n *net, tree *boxes, chains []chain, nodes int) (*faces, error) {
 	f := &faces{net: n, chains: chains, around: make([][]int32, nodes)}
 	halves := int32(2 * len(chains))
 	for h := range halves {
@@ -176,10 +182,7 @@ func (f *faces) nest(tree *boxes) error {
 		outer := f.edge[g.half]
 		// What is met to the west is of a group with a smaller point: its faces are known.
 		if s := tree.westOf(g.west, func(s int32) bool { return f.chainOf(s) >= 0 }); s >= 0 {
-			h := f.chainOf(s) * 2
-			if f.net.points[s+1][1] > f.net.points[s][1] {
-				h++ // the segment runs north: the half that runs south has the east on its left
-			}
+			h := f.eastHalf(s)
 			f.sets.join(outer, f.edge[h])
 			f.above[outer] = f.above[f.edge[h]]
 		}

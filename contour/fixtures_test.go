@@ -128,11 +128,11 @@ func TestValidityFixtures(t *testing.T) {
 		t.Run(name, func(t *testing.T) {
 			s := surfaceOf(t, in.pts, in.z, 0)
 			levels := in.levelSet()
-			bands, err := Bands(context.Background(), s, levels, Options{})
+			bands, report, err := Bands(context.Background(), s, levels, Options{})
 			if err != nil {
 				t.Fatal(err)
 			}
-			if err := checkBands(s, levels, bands); err != nil {
+			if err := checkBands(s, levels, bands, report); err != nil {
 				t.Fatal(err)
 			}
 			area, perimeter, largest := exactArea(s)

@@ -172,7 +172,7 @@ func TestOneAnswerP2(t *testing.T) {
 		if err != nil {
 			return err
 		}
-		wantBands, err := Bands(context.Background(), s, levels, Options{Workers: 1})
+		wantBands, wantNarrow, err := Bands(context.Background(), s, levels, Options{Workers: 1})
 		if err != nil {
 			return err
 		}
@@ -185,12 +185,15 @@ func TestOneAnswerP2(t *testing.T) {
 			if !sameLines(got, want) || r.WithoutLength != wantReport.WithoutLength {
 				return fmt.Errorf("%d workers, shuffled: other lines", workers)
 			}
-			bands, err := Bands(context.Background(), s2, levels, opt)
+			bands, report, err := Bands(context.Background(), s2, levels, opt)
 			if err != nil {
 				return err
 			}
 			if !sameBands(bands, wantBands) {
 				return fmt.Errorf("%d workers, shuffled: other bands", workers)
+			}
+			if report.Off != wantNarrow.Off || !slices.Equal(report.TooNarrow, wantNarrow.TooNarrow) {
+				return fmt.Errorf("%d workers, shuffled: other report of bands, %+v and %+v", workers, report, wantNarrow)
 			}
 		}
 		return nil

@@ -38,6 +38,8 @@ type path struct {
 type net struct {
 	points []orb.Point
 	paths  []path
+	shifts []shift // by splitting, in order of segment
+	moved  float64 // the most of all shifts
 }
 
 // pointsMost bounds the points of a net, so that they can be numbered with 32 bits.

@@ -39,10 +39,10 @@ type split struct {
 	at      orb.Point
 }
 
-// splitAll splits segments until any two have at most ends in common or are the same. It returns the boxes of the
-// segments as they are then, and how many splits it took.
-func (n *net) splitAll(ctx context.Context, workers int) (tree *boxes, count int, err error) {
-	var fresh func(int) bool
+// splitAll splits segments until any two have at most ends in common or are the same; fresh tells of a path whether it has
+// to be compared with the others, nil means that all have. It returns the boxes of the segments as they are then, and how many
+// splits it took.
+func (n *net) splitAll(ctx context.Context, workers int, fresh func(path int) bool) (tree *boxes, count int, err error) {
 	var splits []split
 	for range roundsMost {
 		tree = newBoxes(n, fresh)
@@ -164,23 +164,52 @@ func detour(i, j int32, a, b, c, d orb.Point) split {
 	return best
 }
 
+// shift tells how far at most a segment is from where its path ran before it was split.
+type shift struct {
+	segment int32
+	by      float64
+}
+
 // insert puts the splits into the paths and tells which paths changed.
 func (n *net) insert(splits []split) []bool {
 	changed := make([]bool, len(n.paths))
 	points := make([]orb.Point, 0, len(n.points)+len(splits))
+	was := n.shifts
+	n.shifts = nil
 	for i := range n.paths {
 		p := &n.paths[i]
 		first := int32(len(points))
 		for k := p.first; k <= p.last; k++ {
+			part := len(points)
 			points = append(points, n.points[k])
+			by, off := 0.0, 0.0
+			if len(was) > 0 && was[0].segment == k {
+				by = was[0].by
+				was = was[1:]
+			}
 			for len(splits) > 0 && splits[0].segment == k {
 				points = append(points, splits[0].at)
+				off = max(off, n.distance(splits[0]))
 				splits = splits[1:]
 				changed[i] = true
+			}
+			// Every part lies between two places no further than off from the segment.
+			if by += off; by > 0 {
+				for ; part < len(points); part++ {
+					n.shifts = append(n.shifts, shift{int32(part), by})
+				}
+				n.moved = max(n.moved, by)
 			}
 		}
 		p.first, p.last = first, int32(len(points)-1)
 	}
 	n.points = points
 	return changed
+}
+
+// distance returns how far the place of a split is from the segment, above which it lies.
+func (n *net) distance(s split) float64 {
+	a, b := n.points[s.segment], n.points[s.segment+1]
+	dx, dy := b[0]-a[0], b[1]-a[1]
+	return math.Abs(exact.Area2(a[0], a[1], b[0], b[1], s.at[0], s.at[1])) / math.Sqrt(float64(dx*dx)+float64(dy*dy))
 }

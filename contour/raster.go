@@ -254,3 +254,46 @@ func (s *raster) outline(zs []float64, use func(a, b orb.Point, ra, rb int, at f
 	}
 	return nil
 }
+
+func (s *raster) reading(node int32) (orb.Point, float64) { return s.place(int(node)), s.values[node] }
+
+func (s *raster) near(within float64, zs []float64, workers int) []int32 {
+	parts := make([][]int32, max(1, workers))
+	inRanges(s.cells(), workers, func(w, from, to int) {
+		for cell := from; cell < to; cell++ {
+			parts[w] = s.nearIn(cell, within, zs, parts[w])
+		}
+	})
+	return sortedOnce(parts)
+}
+
+// nearIn appends the corners of a cell to which a line or the rim may come within some distance. A piece of line cuts
+// off at least a share of a corner's two sides; the distance from the corner is no less than that of the shorter over
+// the root of two.
+func (s *raster) nearIn(cell int, within float64, zs []float64, found []int32) []int32 {
+	r, ok := s.cornerRanks(cell)
+	if !ok {
+		return found
+	}
+	c := s.corners(cell)
+	sw, ne := s.place(c[0]), s.place(c[2])
+	short := min(ne[0]-sw[0], ne[1]-sw[1])
+	z := [4]float64{s.values[c[0]], s.values[c[1]], s.values[c[2]], s.values[c[3]]}
+	spread := 0.0
+	if r[0] != r[1] || r[0] != r[2] || r[0] != r[3] {
+		spread = max(z[0], z[1], z[2], z[3]) - min(z[0], z[1], z[2], z[3])
+	}
+	for side := range 4 {
+		if s.begins(passage(4*cell + side)) {
+			found = append(found, int32(c[side]), int32(c[(side+1)%4]))
+		}
+		gap := math.Inf(1)
+		if spread > 0 {
+			gap = levelGap(z[side], r[side], zs)
+		}
+		if !keeps(short, gap, spread, 2*within) {
+			found = append(found, int32(c[side]))
+		}
+	}
+	return found
+}

@@ -20,6 +20,7 @@ func (f *faces) polygons() ([]bandPolygon, error) {
 	for e, above := range f.above {
 		bands[e] = above.band()
 	}
+	f.bands = bands
 	kept := func(c int32) bool { return bands[f.edge[2*c]] != bands[f.edge[2*c+1]] }
 	for c := range int32(len(f.chains)) {
 		if !kept(c) {

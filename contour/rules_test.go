@@ -50,11 +50,11 @@ func bandsOf(t testing.TB, s *interp.Surface, levels ...float64) []Band {
 	for _, z := range levels {
 		set = append(set, levelAt(z))
 	}
-	bands, err := Bands(context.Background(), s, set, Options{})
+	bands, report, err := Bands(context.Background(), s, set, Options{})
 	if err != nil {
 		t.Fatal(err)
 	}
-	if err := checkBands(s, set, bands); err != nil {
+	if err := checkBands(s, set, bands, report); err != nil {
 		t.Fatal(err)
 	}
 	return bands
@@ -376,7 +376,7 @@ func TestRefusals(t *testing.T) {
 		if lines, _, err := Lines(ctx, s, levels, opt); !errors.Is(err, context.Canceled) || lines != nil {
 			t.Errorf("error %v with %d lines, want a cancelled context", err, len(lines))
 		}
-		if bands, err := Bands(ctx, s, levels, opt); !errors.Is(err, context.Canceled) || bands != nil {
+		if bands, _, err := Bands(ctx, s, levels, opt); !errors.Is(err, context.Canceled) || bands != nil {
 			t.Errorf("error %v with %d bands, want a cancelled context", err, len(bands))
 		}
 		cancel()

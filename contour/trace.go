@@ -111,6 +111,10 @@ type source interface {
 	// outline calls use for every side of the outline, from a to b with the surface on its left, with the ranks of its ends
 	// and the place where level k crosses it.
 	outline(zs []float64, use func(a, b orb.Point, ra, rb int, at func(k int) orb.Point) error) error
+	// near returns the numbers of the vertices or nodes to which a line or the rim may come within some distance, after rank.
+	near(within float64, zs []float64, workers int) []int32
+	// reading returns the place and the value of one of them.
+	reading(v int32) (orb.Point, float64)
 	// release frees the marks that following through seeds left.
 	release(seeds []int32, m *marks)
 }

@@ -16,6 +16,7 @@ type triangles struct {
 	z    []float64
 	// ranks holds, for every vertex, how many levels are not above its value: it is above level k if ranks > k.
 	ranks []int32
+	rim   []int32 // the vertices on the outline, once it was gone along
 	probe *probe
 }
 
@@ -184,10 +185,62 @@ func (s *triangles) outline(zs []float64, use func(a, b orb.Point, ra, rb int, a
 			continue
 		}
 		a, b := s.mesh.Origin(h), s.mesh.Dest(h)
+		s.rim = append(s.rim, int32(a))
 		at := func(k int) orb.Point { return Crossing(s.pos[a], s.z[a], s.pos[b], s.z[b], zs[k]) }
 		if err := use(s.pos[a], s.pos[b], int(s.ranks[a]), int(s.ranks[b]), at); err != nil {
 			return err
 		}
 	}
 	return nil
+}
+
+func (s *triangles) reading(v int32) (orb.Point, float64) { return s.pos[v], s.z[v] }
+
+func (s *triangles) near(within float64, zs []float64, workers int) []int32 {
+	parts := make([][]int32, max(1, workers), max(1, workers)+1)
+	inRanges(s.mesh.NumTriangles(), workers, func(w, from, to int) {
+		found := parts[w]
+		for t := from; t < to; t++ {
+			v := s.mesh.Corners(triangulate.Triangle(t))
+			p, q, r := &s.pos[v[0]], &s.pos[v[1]], &s.pos[v[2]]
+			ux, uy, vx, vy := q[0]-p[0], q[1]-p[1], r[0]-p[0], r[1]-p[1]
+			area := float64(ux*vy) - float64(uy*vx)
+			// No side is longer: the altitudes are area/longest at least. Twice the distance makes up for what is lost
+			// to rounding.
+			longest := math.Abs(ux) + math.Abs(uy) + math.Abs(vx) + math.Abs(vy)
+			least := float64(2 * within * longest)
+			k := s.ranks[v[0]]
+			if area > least && k == s.ranks[v[1]] && k == s.ranks[v[2]] {
+				continue // high, and no level crosses it
+			}
+			found = s.nearIn(v, area, least, within, zs, found)
+		}
+		parts[w] = found
+	})
+	return sortedOnce(append(parts, s.rim))
+}
+
+// nearIn appends the corners of a triangle to which a line or a side may come within some distance; area is twice
+// its area, and least what its altitudes times its sides, and so on, are compared with.
+func (s *triangles) nearIn(v [3]triangulate.Vertex, area, least, within float64, zs []float64, found []int32) []int32 {
+	z := [3]float64{s.z[v[0]], s.z[v[1]], s.z[v[2]]}
+	gap := [3]float64{math.Inf(1), math.Inf(1), math.Inf(1)}
+	spread := 0.0
+	if s.ranks[v[0]] != s.ranks[v[1]] || s.ranks[v[0]] != s.ranks[v[2]] {
+		spread = max(z[0], z[1], z[2]) - min(z[0], z[1], z[2])
+		for i := range 3 {
+			gap[i] = levelGap(z[i], s.ranks[v[i]], zs)
+		}
+	}
+	if keeps(area, min(gap[0], gap[1], gap[2]), spread, least) {
+		return found
+	}
+	for i := range 3 {
+		a, b := s.pos[v[(i+1)%3]], s.pos[v[(i+2)%3]]
+		dx, dy := b[0]-a[0], b[1]-a[1]
+		if !keeps(area, gap[i], spread, float64(2*within*math.Sqrt(float64(dx*dx)+float64(dy*dy)))) {
+			found = append(found, int32(v[i]))
+		}
+	}
+	return found
 }

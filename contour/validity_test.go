@@ -171,13 +171,15 @@ func bandNumber(b Band, levels Levels) int {
 }
 
 // checkBands checks P6 for the bands of s.
-func checkBands(s *interp.Surface, levels Levels, bands []Band) error {
+func checkBands(s *interp.Surface, levels Levels, bands []Band, r BandReport) error {
 	numbers, err := checkTiling(s, levels, bands)
 	if err != nil {
 		return err
 	}
-	_, _, largest := exactArea(s)
-	return checkReadings(s, levels, bands, numbers, largest)
+	if err := checkReadings(s, levels, bands, numbers, r); err != nil {
+		return err
+	}
+	return checkPlaces(s, levels, bands, numbers, r)
 }
 
 // checkTiling checks that bands are valid polygons that tile s. It returns the number of every band.
@@ -245,116 +247,6 @@ func exactArea(s *interp.Surface) (area, perimeter, largest float64) {
 		}
 	}
 	return sum.Value() / 2, perimeter, largest
-}
-
-// checkReadings looks for the polygon that holds each reading's place, or comes within a few steps between doubles of it:
-// three, and more in a corner of the outline that is thinner than two steps at first. It is one of the reading's own band, or
-// of the band below for a value equal to a level (where the level is only just reached, the band above has no area).
-// Failing that, bands are narrower at the reading than coordinates can show: one of a band that the surface has
-// within that distance, give or take what the borders of bands are rounded by. Where all triangles at the reading are thinner
-// than three steps, there need be none.
-func checkReadings(s *interp.Surface, levels Levels, bands []Band, numbers []int, largest float64) error {
-	m := s.Mesh()
-	zs := levels.values()
-	for v := range m.Vertices() {
-		p, z := m.Position(v), s.Z()[v]
-		if m.NumTriangles() == 0 {
-			return nil
-		}
-		within := ulp(largest) * (3 + 2/math.Sin(min(angleAt(m, v), math.Pi/2)))
-		want := below(zs, z)
-		equal := want > 0 && zs[want-1] == z
-		found, others := false, []int(nil)
-		for i := range bands {
-			if !holds(bands[i].Polygon, p, within) {
-				continue
-			}
-			others = append(others, numbers[i])
-			if n := numbers[i]; n == want || equal && n == want-1 {
-				found = true
-				break
-			}
-		}
-		if found {
-			continue
-		}
-		found = len(others) == 0 && thin(m, v, 3*ulp(largest))
-		low, high := around(s, p, within+2*ulp(largest))
-		for _, n := range others {
-			found = found || below(zs, low) <= n && n <= below(zs, high)
-		}
-		if !found {
-			return fmt.Errorf("reading %v at (%v, %v), band %d: in polygons of bands %v", z, p[0], p[1], want, others)
-		}
-	}
-	return nil
-}
-
-// angleAt returns the angle of the surface at a vertex, 2 pi inside.
-func angleAt(m *triangulate.Mesh, v triangulate.Vertex) float64 {
-	angle := 0.0
-	p := m.Position(v)
-	for h := range m.Around(v) {
-		q, r := m.Position(m.Dest(h)), m.Position(m.Apex(h))
-		area := exact.Area2(p[0], p[1], q[0], q[1], r[0], r[1])
-		dot := (q[0]-p[0])*(r[0]-p[0]) + (q[1]-p[1])*(r[1]-p[1])
-		angle += math.Atan2(area, dot)
-	}
-	return angle
-}
-
-// thin reports whether all triangles at v are at most so high over their longest sides.
-func thin(m *triangulate.Mesh, v triangulate.Vertex, most float64) bool {
-	p := m.Position(v)
-	for h := range m.Around(v) {
-		q, r := m.Position(m.Dest(h)), m.Position(m.Apex(h))
-		longest := max(math.Hypot(q[0]-p[0], q[1]-p[1]), math.Hypot(r[0]-p[0], r[1]-p[1]), math.Hypot(r[0]-q[0], r[1]-q[1]))
-		if exact.Area2(p[0], p[1], q[0], q[1], r[0], r[1]) > most*longest {
-			return false
-		}
-	}
-	return true
-}
-
-// around returns the range of values of s on the sides of triangles within some distance of p.
-func around(s *interp.Surface, p orb.Point, within float64) (low, high float64) {
-	m := s.Mesh()
-	low, high = math.Inf(1), math.Inf(-1)
-	for h := range triangulate.HalfEdge(m.NumHalfEdges()) {
-		a, b := m.Position(m.Origin(h)), m.Position(m.Dest(h))
-		if distance(a, b, p) > within {
-			continue
-		}
-		za, zb := s.Z()[m.Origin(h)], s.Z()[m.Dest(h)]
-		const steps = 64 // along the side, those within the distance
-		length := math.Hypot(b[0]-a[0], b[1]-a[1])
-		at := ((p[0]-a[0])*(b[0]-a[0]) + (p[1]-a[1])*(b[1]-a[1])) / length
-		for k := range steps + 1 {
-			f := (at + within*(2*float64(k)/steps-1)) / length
-			z := za + max(0, min(1, f))*(zb-za)
-			low, high = min(low, z), max(high, z)
-		}
-	}
-	return low, high
-}
-
-// holds reports whether q lies in the polygon, on its border, or within a distance of it.
-func holds(p orb.Polygon, q orb.Point, within float64) bool {
-	in := sideOfRing(p[0], q) >= 0
-	for _, hole := range p[1:] {
-		in = in && sideOfRing(hole, q) <= 0
-	}
-	if in {
-		return true
-	}
-	for _, ring := range p {
-		for k := 1; k < len(ring); k++ {
-			if distance(ring[k-1], ring[k], q) <= within {
-				return true
-			}
-		}
-	}
-	return false
 }
 
 // distance of q from the segment from a to b.

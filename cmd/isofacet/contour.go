@@ -28,7 +28,8 @@ them an index level, or those of --levels. They are computed as decimal numbers:
 the third multiple of 0.1 is 0.3.
 
 With --bands, or --out bands=FILE, the surface is cut into polygons between
-neighbouring levels, the lowest open below and the highest open above.
+neighbouring levels, the lowest open below and the highest open above. A reading
+that no polygon of its band holds, for want of width, is listed.
 
 Formats by extension: .geojson, .csv and .svg. In GeoJSON a line has its level as
 height and the properties level, rank (index or intermediate), closed and

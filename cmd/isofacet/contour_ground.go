@@ -88,7 +88,7 @@ func (g *ground) eachLine(ctx context.Context, levels contour.Levels, opt contou
 }
 
 // bands returns the parts between the levels.
-func (g *ground) bands(ctx context.Context, levels contour.Levels, opt contour.Options) ([]contour.Band, error) {
+func (g *ground) bands(ctx context.Context, levels contour.Levels, opt contour.Options) ([]contour.Band, contour.BandReport, error) {
 	if g.raster != nil {
 		return contour.RasterBands(ctx, g.raster, levels, opt)
 	}
@@ -99,7 +99,7 @@ func (g *ground) bands(ctx context.Context, levels contour.Levels, opt contour.O
 func (g *ground) rims(ctx context.Context, opt contour.Options) ([]orb.Ring, error) {
 	if g.raster != nil {
 		// Without levels there is one band, which is everything.
-		all, err := contour.RasterBands(ctx, g.raster, nil, opt)
+		all, _, err := contour.RasterBands(ctx, g.raster, nil, opt)
 		var rims []orb.Ring
 		for i := range all {
 			rims = append(rims, all[i].Polygon...)

@@ -43,6 +43,16 @@ type bandsResult struct {
 	Polygons int `json:"polygons"`
 	Rings    int `json:"rings"`
 	Points   int `json:"points"`
+	// Off is how far borders are from where they exactly are, at most.
+	Off       float64       `json:"off"`
+	TooNarrow []narrowPlace `json:"too_narrow"`
+}
+
+// narrowPlace is a reading, or a node of a raster, that no polygon of its band holds.
+type narrowPlace struct {
+	X number  `json:"x"`
+	Y number  `json:"y"`
+	Z float64 `json:"z"` // all digits: it may differ from a level in the last one
 }
 
 // What following lines and making bands takes in memory at most, by piece: a line's
@@ -124,12 +134,16 @@ func (d *drawing) stage(opt *contour.Options, name string) (finish func()) {
 func (d *drawing) makeBands(ctx context.Context) error {
 	opt := d.options(bytesBandPiece)
 	finish := d.stage(&opt, "filling bands")
-	made, err := d.g.bands(ctx, d.levels, opt)
+	made, narrow, err := d.g.bands(ctx, d.levels, opt)
 	finish()
 	if err != nil {
 		return d.tooManyPieces(err, bytesBandPiece)
 	}
-	r := &bandsResult{Polygons: len(made)}
+	r := &bandsResult{Polygons: len(made), Off: narrow.Off, TooNarrow: make([]narrowPlace, 0, len(narrow.TooNarrow))}
+	for _, n := range narrow.TooNarrow {
+		r.TooNarrow = append(r.TooNarrow, narrowPlace{number{n.At[0], d.xy}, number{n.At[1], d.xy}, n.Z})
+	}
+	d.tellTooNarrow(r.TooNarrow)
 	for i := range made {
 		r.Rings += len(made[i].Polygon)
 		for _, ring := range made[i].Polygon {
@@ -143,6 +157,22 @@ func (d *drawing) makeBands(ctx context.Context) error {
 	d.report.Note(fmt.Sprintf("bands: %s, %s, %s", counted(r.Polygons, "polygon"), counted(r.Rings, "ring"), counted(r.Points, "point")),
 		"polygons", r.Polygons, "rings", r.Rings, "points", r.Points)
 	return nil
+}
+
+// tellTooNarrow lists the readings that no polygon of their band holds.
+func (d *drawing) tellTooNarrow(places []narrowPlace) {
+	what := "reading"
+	if d.g.raster != nil {
+		what = "node"
+	}
+	for i, p := range places {
+		if i == d.listMost {
+			d.report.Note(fmt.Sprintf("and %d more too narrow; a run record lists all", len(places)-i))
+			break
+		}
+		d.report.Note(fmt.Sprintf("too narrow: %s at %v,%v, value %v: its band has no width there that coordinates can show, so no polygon of it holds the %s", what, p.X, p.Y, p.Z, what),
+			"x", p.X, "y", p.Y, "z", p.Z)
+	}
 }
 
 // write writes one output.

@@ -111,7 +111,7 @@ func (s scene) draw(t testing.TB, levels contour.Levels, opt picture.MapOptions,
 			opt.Bands = append(opt.Bands, l.Number.String())
 		}
 		var err error
-		if made, err = contour.Bands(context.Background(), s.surface, levels, contour.Options{Workers: 1}); err != nil {
+		if made, _, err = contour.Bands(context.Background(), s.surface, levels, contour.Options{Workers: 1}); err != nil {
 			t.Fatal(err)
 		}
 	}
