@@ -22,6 +22,9 @@ const (
 	mostBlockRowsLog  = 7
 	leastBlockRowsLog = 3
 	blocksPerWorker   = 8
+
+	// Rows a power of two apart would share a few places of the cache.
+	blockStride = 1<<blockColsLog + 8
 )
 
 // setBlocks chooses the size of blocks.
@@ -41,46 +44,30 @@ func (f *scan) block(b int) block {
 }
 
 // byBlock lists the triangles that may own nodes of each block: those of block b
-// are list[start[b]:start[b+1]]. It takes 4 bytes a triangle for the list and as many
-// while making it, and little more.
+// are list[start[b]:start[b+1]]. It takes 4 bytes a triangle, and 8 a vertex while it
+// works.
 func (f *scan) byBlock(ctx context.Context, workers int) (start []int, list []triangulate.Triangle, err error) {
-	total := f.m.NumTriangles()
-	home := make([]uint32, total) // the only block, or one of
-	const none, several = ^uint32(0), ^uint32(0) - 1
-	counts := make([][]int, workers) // of each worker's triangles, then where they go
-	share := func(pass func(w, lo, hi int)) error {
-		group, ctx := errgroup.WithContext(ctx)
-		for w := range workers {
-			group.Go(func() error {
-				for lo := w * total / workers; lo < (w+1)*total/workers; lo += trianglesAtOnce {
-					pass(w, lo, min(lo+trianglesAtOnce, (w+1)*total/workers))
-					if err := ctx.Err(); err != nil {
-						return err
-					}
-				}
-				return nil
-			})
+	between := make([][2]int32, len(f.pos))
+	err = share(ctx, workers, len(f.pos), func(_, lo, hi int) {
+		for v, p := range f.pos[lo:hi] {
+			between[lo+v] = [2]int32{
+				nodesAround(float64((p[0]-f.x0)*f.perX), f.tolU, len(f.xs)),
+				nodesAround(float64((p[1]-f.y0)*f.perY), f.tolV, len(f.ys)),
+			}
 		}
-		return group.Wait()
+	})
+	if err != nil {
+		return nil, nil, err
 	}
+	counts := make([][]int, workers) // of each worker's triangles, then where they go
 	for w := range counts {
 		counts[w] = make([]int, f.numBlocks())
 	}
-	err = share(func(w, lo, hi int) {
+	total := f.m.NumTriangles()
+	err = share(ctx, workers, total, func(w, lo, hi int) {
 		n := counts[w]
 		for t := lo; t < hi; t++ {
-			in, some := f.blocksOf(triangulate.Triangle(t))
-			if !some {
-				home[t] = none
-				continue
-			}
-			if in.south == in.north && in.west == in.east {
-				b := in.south*f.acrossBlocks + in.west
-				home[t] = uint32(b)
-				n[b]++
-				continue
-			}
-			home[t] = several
+			in := f.blocksOf(triangulate.Triangle(t), between)
 			for r := in.south; r <= in.north; r++ {
 				for c := in.west; c <= in.east; c++ {
 					n[r*f.acrossBlocks+c]++
@@ -100,45 +87,71 @@ func (f *scan) byBlock(ctx context.Context, workers int) (start []int, list []tr
 		start[b+1] = at
 	}
 	list = make([]triangulate.Triangle, start[f.numBlocks()])
-	err = share(func(w, lo, hi int) {
+	err = share(ctx, workers, total, func(w, lo, hi int) {
 		to := counts[w]
 		for t := lo; t < hi; t++ {
-			switch b := home[t]; b {
-			case none:
-			case several:
-				in, _ := f.blocksOf(triangulate.Triangle(t))
-				for r := in.south; r <= in.north; r++ {
-					for c := in.west; c <= in.east; c++ {
-						b := r*f.acrossBlocks + c
-						list[to[b]] = triangulate.Triangle(t)
-						to[b]++
-					}
+			in := f.blocksOf(triangulate.Triangle(t), between)
+			for r := in.south; r <= in.north; r++ {
+				for c := in.west; c <= in.east; c++ {
+					b := r*f.acrossBlocks + c
+					list[to[b]] = triangulate.Triangle(t)
+					to[b]++
 				}
-			default:
-				list[to[b]] = triangulate.Triangle(t)
-				to[b]++
 			}
 		}
 	})
 	return start, list, err
 }
 
+// share gives every worker its part of total, in pieces between which it looks at
+// the context.
+func share(ctx context.Context, workers, total int, pass func(w, lo, hi int)) error {
+	const atOnce = 4096
+	group, ctx := errgroup.WithContext(ctx)
+	for w := range workers {
+		group.Go(func() error {
+			end := (w + 1) * total / workers
+			for lo := w * total / workers; lo < end; lo += atOnce {
+				pass(w, lo, min(lo+atOnce, end))
+				if err := ctx.Err(); err != nil {
+					return err
+				}
+			}
+			return nil
+		})
+	}
+	return group.Wait()
+}
+
+// nodesAround says in one number between which nodes x is, known up to tol, of n
+// from 0 on: 2k at node k, 2k+1 between it and the next, and as if one step out where
+// it is further out. The first node from x on is (nodesAround+1)/2, the last
+// up to x is nodesAround/2, rounded down; both rise with x.
+func nodesAround(x, tol float64, n int) int32 {
+	if x+tol < 0 {
+		return -1
+	}
+	if x > float64(n) {
+		return int32(2*n - 1)
+	}
+	k := int32(x + tol)
+	if float64(k) >= x-tol {
+		return 2 * k
+	}
+	return 2*k + 1
+}
+
 // blockRange holds the blocks from south to north and west to east, all included.
 type blockRange struct{ south, north, west, east int }
 
 // blocksOf returns the blocks with nodes in the rectangle around t.
-func (f *scan) blocksOf(t triangulate.Triangle) (in blockRange, some bool) {
-	p, q, r := f.corners(t)
-	west, east := float64((min(p[0], q[0], r[0])-f.x0)*f.perX), float64((max(p[0], q[0], r[0])-f.x0)*f.perX)
-	south, north := float64((min(p[1], q[1], r[1])-f.y0)*f.perY), float64((max(p[1], q[1], r[1])-f.y0)*f.perY)
-	cols, rows := len(f.xs), len(f.ys)
-	if west > float64(cols) || south > float64(rows) || east < -1 || north < -1 {
-		return in, false
+func (f *scan) blocksOf(t triangulate.Triangle, between [][2]int32) blockRange {
+	e := triangulate.HalfEdge(3 * t)
+	p, q, r := &between[f.m.Origin(e)], &between[f.m.Origin(e+1)], &between[f.m.Origin(e+2)]
+	west, east := int(min(p[0], q[0], r[0])+1)>>1, min(int(max(p[0], q[0], r[0]))>>1, len(f.xs)-1)
+	south, north := int(min(p[1], q[1], r[1])+1)>>1, min(int(max(p[1], q[1], r[1]))>>1, len(f.ys)-1)
+	if west > east || south > north {
+		return blockRange{0, -1, 0, -1}
 	}
-	c0, c1 := f.after(west, f.tolU), f.before(east, f.tolU, cols)
-	r0, r1 := f.after(south, f.tolV), f.before(north, f.tolV, rows)
-	if c0 > c1 || r0 > r1 {
-		return in, false
-	}
-	return blockRange{r0 >> f.blockRowsLog, r1 >> f.blockRowsLog, c0 >> blockColsLog, c1 >> blockColsLog}, true
+	return blockRange{south >> f.blockRowsLog, north >> f.blockRowsLog, west >> blockColsLog, east >> blockColsLog}
 }

