@@ -90,6 +90,9 @@ func Fill(ctx context.Context, spec Spec, s *interp.Surface, opt Options) (*Grid
 	return g, nil
 }
 
+// mostAlong is the most columns or rows: places between nodes are numbered in 32 bits.
+const mostAlong = 1<<30 - 1
+
 // newUnset is New without the no-data.
 func newUnset(spec Spec) (*Grid, error) {
 	if err := spec.Validate(); err != nil {
@@ -97,6 +100,9 @@ func newUnset(spec Spec) (*Grid, error) {
 	}
 	if spec.NumNodes() > math.MaxInt/8 {
 		return nil, spec.Check(math.MaxInt64 / 8)
+	}
+	if spec.Cols > mostAlong || spec.Rows > mostAlong {
+		return nil, &SpecError{What: "columns and rows", Seen: fmt.Sprintf("%d x %d", spec.Cols, spec.Rows), Expected: fmt.Sprintf("at most %d of each", mostAlong)}
 	}
 	return &Grid{Spec: spec, Values: make([]float64, spec.NumNodes())}, nil
 }
