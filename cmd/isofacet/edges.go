@@ -37,6 +37,8 @@ type edges struct {
 	codes *lines.Codes
 }
 
+const groupEdges = "Lines and limits"
+
 // edgeOptions returns the options of every command that makes a surface.
 func (e *edges) edgeOptions() []manual.Option {
 	zero := decimal.FromInt(0)
@@ -48,7 +50,7 @@ func (e *edges) edgeOptions() []manual.Option {
 	e.touchWithin, e.maxEdge = option.Number{Least: &zero}, option.Number{Least: &zero}
 	e.codeTable = typed{form: "FILE"}
 	e.linesZ = parsed[lines.Zeros]{form: "use", parse: lines.ParseZeros}
-	const group = "Lines and limits"
+	const group = groupEdges
 	return []manual.Option{
 		{Group: group, Name: "breaklines", Value: &e.breaklines, Repeatable: true,
 			Text: "lines along which the slope may change, with heights: GeoJSON, or text with the columns line, x, y and z"},

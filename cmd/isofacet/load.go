@@ -126,7 +126,7 @@ func (p *program) withSources(ctx context.Context, r *reading, list []*input, wo
 	if err := p.settleUnits(&r.measures); err != nil {
 		return err
 	}
-	opt.Transform = r.transform()
+	opt.Transform, opt.Account = r.transform(), r.account
 	if err := p.reduce(r, &opt); err != nil {
 		return err
 	}
@@ -289,22 +289,14 @@ func isChoice(reason string) bool {
 func (p *program) notUsed(list []*input, set *readings.Set) []record.NotUsed {
 	all := make([]record.NotUsed, 0, set.Counts.Read-set.Counts.Used)
 	for _, m := range set.Merged {
-		into := list[set.Source(m.Into)].Name
-		reason := fmt.Sprintf("at the place of line %d", set.Lines[m.Into])
-		if int(m.File) != set.Source(m.Into) {
-			reason = fmt.Sprintf("at the place of %s:%d", into, set.Lines[m.Into])
-		}
+		reason := mergedInto(set, &m, list[set.Source(m.Into)].Name)
 		all = append(all, record.NotUsed{File: list[m.File].Name, Line: int(m.Line), ID: m.ID, What: "merged", Reason: reason})
 	}
 	for _, o := range set.LeftOut {
 		all = append(all, record.NotUsed{File: list[o.File].Name, Line: int(o.Line), ID: o.ID, What: "left out", Reason: o.Reason})
 	}
 	for _, e := range set.Refused {
-		reason := e.What
-		if e.Seen != "" {
-			reason = fmt.Sprintf("%s %q", e.What, e.Seen)
-		}
-		all = append(all, record.NotUsed{File: e.File, Line: e.Line, What: "refused", Reason: reason + ": expected " + e.Expected})
+		all = append(all, record.NotUsed{File: e.File, Line: e.Line, What: "refused", Reason: refusal(e)})
 	}
 	return all
 }

@@ -32,6 +32,8 @@ type reading struct {
 	measures
 	guards
 
+	account bool // keep what was read of readings that are not used
+
 	crs             option.System
 	horizontalDatum option.Label
 	verticalDatum   option.Label

@@ -25,6 +25,7 @@ type program struct {
 func (p *program) commands() []*cobra.Command {
 	return []*cobra.Command{
 		newInspect(p),
+		newReadings(p),
 		newGrid(p),
 		newContour(p),
 		newQuery(p),
