@@ -133,7 +133,7 @@ func mergedInto(set *readings.Set, m *readings.Merged, file string) string {
 // refusal says why a line was refused.
 func refusal(e *readings.PositionError) string {
 	reason := e.What
-	if e.Seen != "" {
+	if e.Seen != "" || e.Kind == readings.Blank {
 		reason = fmt.Sprintf("%s %q", e.What, e.Seen)
 	}
 	return reason + ": expected " + e.Expected

@@ -224,8 +224,16 @@ func (d *reduction) find() bool {
 		return true
 	}
 	said := d.row.Text(readings.Time)
+	if d.row.Layout.Has(readings.Z) {
+		// A head needs no measuring point, only what does not change with it.
+		d.k = len(d.well.rows) - 1
+		if when, ok := ParseTime(said); ok {
+			d.k = max(d.well.valid(when), 0)
+		}
+		return true
+	}
 	if said == "" {
-		return d.leaveOut("no date: %s has measuring points valid from %s on, and the reading has no time", id, d.well.rows[len(d.well.rows)-1].said)
+		return d.leaveOut("no date: %s has %s, and the reading has no time", id, d.well.dates())
 	}
 	when, ok := ParseTime(said)
 	if !ok {

@@ -160,3 +160,11 @@ func (w *well) zone(k int) string {
 	}
 	return ""
 }
+
+// dates says in words which dates the measuring points have.
+func (w *well) dates() string {
+	if len(w.rows) == 1 {
+		return "a measuring point valid from " + w.rows[0].said
+	}
+	return fmt.Sprintf("%d measuring points of unlike dates", len(w.rows))
+}
