@@ -1,9 +1,16 @@
 package rule
 
 import (
+	"context"
 	"errors"
 	"math"
 	"testing"
+
+	"github.com/paulmach/orb"
+
+	"isofacet/interp"
+	"isofacet/interp/profile"
+	"isofacet/triangulate"
 )
 
 func near(t *testing.T, what string, got, want, relative float64) {
@@ -109,5 +116,60 @@ func TestErrors(t *testing.T) {
 	}
 	if _, err := FourCorners([][]float64{{1, 2}, {3}}, 1); !errors.Is(err, ErrSections) {
 		t.Error(err)
+	}
+}
+
+// Sections of a pyramid over level ground: base 20 x 20, 6 high. Across its middle the
+// section is a triangle of 60; each is that of the closed form. Source: elementary
+// geometry.
+func TestSections(t *testing.T) {
+	pts := []orb.Point{{0, 0}, {20, 0}, {20, 20}, {0, 20}, {10, 10}, {-10, 5}, {30, 5}}
+	m, err := triangulate.Constrained(context.Background(), pts, []triangulate.Segment{{From: 0, To: 1}, {From: 1, To: 2}, {From: 2, To: 3}, {From: 3, To: 0}}, triangulate.Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	s, err := interp.FromInputs(m, []float64{0, 0, 0, 0, 6, 0, 0})
+	if err != nil {
+		t.Fatal(err)
+	}
+	line, err := profile.NewAlignment([]orb.Point{{0, 10}, {20, 10}}, 0)
+	if err != nil {
+		t.Fatal(err)
+	}
+	list, err := Sections(context.Background(), s, line, 2.5, 12, 12, 0)
+	if err != nil {
+		t.Fatal(err)
+	}
+	var at, fill []float64
+	for _, x := range list {
+		at, fill = append(at, x.Station), append(fill, x.Fill)
+		if x.Cut != 0 {
+			t.Errorf("cut %v at %v", x.Cut, x.Station)
+		}
+	}
+	if len(list) != 9 || list[8].Station != 20 {
+		t.Fatalf("%d sections", len(list))
+	}
+	// At distance d from the middle the pyramid is 6 min(1-|y|/10, 1-d/10) high: a
+	// plateau 2d wide with slopes beside it.
+	for _, x := range list {
+		d := math.Abs(x.Station - 10)
+		top := 6 * (1 - d/10)
+		want := top*2*d + top*(10-d)
+		if math.Abs(x.Fill-want) > 1e-12 {
+			t.Errorf("at %v: %v, want %v", x.Station, x.Fill, want)
+		}
+	}
+	average, err := AverageEndArea(at, fill)
+	if err != nil {
+		t.Error(err)
+	}
+	prismoidal, _, err := Prismoidal(at, fill)
+	if err != nil {
+		t.Error(err)
+	}
+	near(t, "prismoidal", prismoidal, 800, 1e-12)
+	if !(average < 800 && average > 780) {
+		t.Errorf("average end area %v", average)
 	}
 }
