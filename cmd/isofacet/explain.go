@@ -47,6 +47,7 @@ var explanations = []func(error) (code status.Code, hint string, ok bool){
 	explainReadings,
 	explainGrid,
 	explainRaster,
+	explainTriangles,
 	explainContour,
 	explainProfile,
 	explainFiles,

@@ -30,6 +30,7 @@ func (p *program) commands() []*cobra.Command {
 		newContour(p),
 		newQuery(p),
 		newTriangles(p),
+		newVolume(p),
 		newAccuracy(p),
 		newProfile(p),
 		newSamples(p),

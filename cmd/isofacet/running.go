@@ -30,6 +30,7 @@ type running struct {
 	listMost int      // how many readings that are not used are named one by one
 	rec      *record.Record
 	opened   []*input // every file that is read, in the order of opening
+	again    bool     // a file that was opened before may be read again
 	root     *cobra.Command
 	report   *report.Reporter
 	display  *progress.Display

@@ -79,6 +79,9 @@ func (p *program) input(name string) (*input, error) {
 	}
 	for _, other := range p.opened {
 		if sameInput(in, other) {
+			if p.again && other.file.Name != "-" {
+				return other, nil
+			}
 			return nil, status.Usage(fmt.Errorf("%q: named twice: expected every input once", name),
 				"a reading counts once; standard input can be read once")
 		}

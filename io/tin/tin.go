@@ -47,11 +47,12 @@ func (s *Set) noteDecimals(p orb.Point, z float64) {
 	if len(s.Points) > decimalsFrom {
 		return
 	}
-	s.DecimalsXY = max(s.DecimalsXY, decimals(p[0]), decimals(p[1]))
-	s.DecimalsZ = max(s.DecimalsZ, decimals(z))
+	s.DecimalsXY = max(s.DecimalsXY, Decimals(p[0]), Decimals(p[1]))
+	s.DecimalsZ = max(s.DecimalsZ, Decimals(z))
 }
 
-func decimals(v float64) int {
+// Decimals returns the digits after the point of the shortest text of v, at most 12.
+func Decimals(v float64) int {
 	text := strconv.FormatFloat(v, 'f', -1, 64)
 	if i := strings.IndexByte(text, '.'); i >= 0 {
 		return min(len(text)-i-1, 12)

@@ -8,8 +8,9 @@ import (
 )
 
 // Reader returns r hashed into f: when r is read to its end, f has the size and
-// the hash.
+// the hash. A file that is read again is counted again.
 func (f *File) Reader(r io.ReadCloser) io.ReadCloser {
+	f.Bytes = 0
 	return &hashedReader{r, f, sha256.New()}
 }
 
