@@ -27,6 +27,9 @@ type measures struct {
 	fitModel          option.Choice
 	fitWithin         option.Number
 
+	// mixedSettled is set where a command deals with z in another unit than x and y.
+	mixedSettled bool
+
 	xy, z units.Conversion
 	local *localgrid.Fit
 }
@@ -99,7 +102,7 @@ func (p *program) settleUnits(m *measures) error {
 			p.report.Note(fmt.Sprintf("units: %s from %s to %s: times %d/%d, exactly", u.name, u.from, u.to, by, over), "axis", u.name, "from", u.from.String(), "to", u.to.String())
 		}
 	}
-	if xy, z := m.xyOut(), m.zOut(); xy != z && xy != "" && z != "" {
+	if xy, z := m.xyOut(), m.zOut(); xy != z && xy != "" && z != "" && !m.mixedSettled {
 		p.report.Warn("mixed-units", fmt.Sprintf("x and y are in %s and z is in %s: slopes, areas and volumes mix the two", xy, z), "xy", xy, "z", z)
 	}
 	return p.settleFit(m)

@@ -188,6 +188,7 @@ func (c *volumeCommand) run(cmd *cobra.Command) error {
 	if err := c.check(cmd, dests); err != nil {
 		return err
 	}
+	c.mixedSettled = true // see settleVolumeUnits
 	v := &volumes{volumeCommand: c}
 	if err := v.name(); err != nil {
 		return err
