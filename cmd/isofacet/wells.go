@@ -10,6 +10,7 @@ import (
 	"isofacet/cmd/internal/option"
 	"isofacet/cmd/internal/status"
 	"isofacet/grid/decimal"
+	"isofacet/interp"
 	"isofacet/io/readings"
 	"isofacet/io/wells"
 	"isofacet/triangulate"
@@ -115,12 +116,15 @@ func (e *besideError) Unwrap() error { return e.error }
 // checkBounds warns where the surface lies above what a dry well allows, or below
 // what a flowing one does: bounds are no readings, but they know better.
 func (p *program) checkBounds(l *loaded) {
-	sampler := l.surface.Sampler()
+	var sampler *interp.Sampler
 	for i := range l.set.LeftOut {
 		o := &l.set.LeftOut[i]
 		c := o.Check
 		if c == nil || !l.contains(c.Point) {
 			continue
+		}
+		if sampler == nil { // a surface without wells is spared the time
+			sampler = l.surface.Sampler()
 		}
 		s := sampler.At(c.Point)
 		if s.Location.Place == triangulate.Outside {

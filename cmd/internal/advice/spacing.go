@@ -14,64 +14,91 @@ import (
 // Spacing returns the median length of the edges of m, the lower one of two; NaN
 // if there are no triangles.
 //
-// Lengths are not kept: a first pass counts them by their leading bits, a second
-// one takes out those that share them with the median. Bits of doubles that are not
-// negative rise with their values, and counts can be added up in any order. Every
-// edge is counted twice, an outline edge for itself and an inner one from both its
-// triangles: asking which of two halves counts would be a guess for the processor.
+// Every edge is counted twice, an outline edge for itself and an inner one from both
+// its triangles: asking which of two halves counts would be a guess for the processor.
+// Lengths are not kept either, but those near the median of some triangles here and
+// there; should the median of all lie elsewhere, more are kept until it does not.
 func Spacing(m *triangulate.Mesh, workers int) float64 {
-	counts := make([][]int, workers)
-	inParts(m.NumTriangles(), workers, func(w, from, to int) {
-		count := make([]int, 1<<leadingBits)
-		eachLength(m, from, to, func(square float64) { count[leading(square)]++ })
-		counts[w] = count
-	})
-	edges := 0 // twice
-	sum := make([]int, 1<<leadingBits)
-	for _, part := range counts {
-		for b, n := range part {
-			sum[b] += n
-			edges += n
-		}
-	}
-	if edges == 0 {
+	const looked = 10_000
+	n := m.NumTriangles()
+	if n == 0 {
 		return math.NaN()
 	}
-	k, bucket := (edges-1)/2, 0
-	for ; k >= sum[bucket]; bucket++ {
-		k -= sum[bucket]
+	guess := lengths{low: math.Inf(-1), high: math.Inf(1)}
+	for i := range looked {
+		guess.add(m, i*n/looked, i*n/looked+1)
 	}
-	found := make([][]float64, workers)
-	inParts(m.NumTriangles(), workers, func(w, from, to int) {
-		list := make([]float64, 0, sum[bucket]/workers)
-		eachLength(m, from, to, func(square float64) {
-			if leading(square) == bucket {
-				list = append(list, square)
-			}
-		})
-		found[w] = list
-	})
-	return math.Sqrt(selectKth(slices.Concat(found...), k))
+	slices.Sort(guess.kept)
+	for _, part := range []float64{0.02, 0.1} {
+		all := lengths{
+			low:  guess.kept[int((0.5-part)*float64(len(guess.kept)))],
+			high: guess.kept[int((0.5+part)*float64(len(guess.kept)))],
+		}
+		if square, ok := all.median(m, workers); ok {
+			return math.Sqrt(square)
+		}
+	}
+	guess.kept, guess.edges = nil, 0
+	square, _ := guess.median(m, workers)
+	return math.Sqrt(square)
 }
 
-// leadingBits is how many bits lengths are counted by: the sign, the exponent and
-// four of the fraction, so that a bucket spans a sixteenth of a power of two.
-const leadingBits = 16
+// lengths counts squared lengths of edges and keeps those from low to high.
+type lengths struct {
+	low, high    float64
+	edges, below int
+	kept         []float64
+}
 
-func leading(v float64) int { return int(math.Float64bits(v) >> (64 - leadingBits)) }
+// median returns the median of all edges if it is one of those to keep.
+func (l *lengths) median(m *triangulate.Mesh, workers int) (square float64, ok bool) {
+	parts := make([]lengths, workers)
+	inParts(m.NumTriangles(), workers, func(w, from, to int) {
+		part := lengths{low: l.low, high: l.high}
+		part.add(m, from, to)
+		parts[w] = part
+	})
+	for _, part := range parts {
+		l.edges += part.edges
+		l.below += part.below
+		l.kept = append(l.kept, part.kept...)
+	}
+	k := (l.edges-1)/2 - l.below
+	if k < 0 || k >= len(l.kept) {
+		return 0, false
+	}
+	return selectKth(l.kept, k), true
+}
 
-// eachLength calls do with the squared lengths of the sides of triangles from or
-// later and before to, twice for a side on the outline.
-func eachLength(m *triangulate.Mesh, from, to int, do func(square float64)) {
+// add counts the edges of the triangles from, to (left out).
+func (l *lengths) add(m *triangulate.Mesh, from, to int) {
+	pos := m.Positions()
 	for t := triangulate.Triangle(from); t < triangulate.Triangle(to); t++ {
-		v := m.Corners(t)
-		a, b, c := m.Position(v[0]), m.Position(v[1]), m.Position(v[2])
-		for i, square := range [3]float64{squaredDistance(a, b), squaredDistance(b, c), squaredDistance(c, a)} {
-			do(square)
-			if m.Twin(t.HalfEdge(i)) == triangulate.NoHalfEdge {
-				do(square)
-			}
-		}
+		h := t.HalfEdge(0)
+		a, b, c := &pos[m.Origin(h)], &pos[m.Origin(h+1)], &pos[m.Origin(h+2)]
+		l.addEdge(m, h, squared(b[0]-a[0], b[1]-a[1]))
+		l.addEdge(m, h+1, squared(c[0]-b[0], c[1]-b[1]))
+		l.addEdge(m, h+2, squared(a[0]-c[0], a[1]-c[1]))
+	}
+}
+
+func (l *lengths) addEdge(m *triangulate.Mesh, h triangulate.HalfEdge, square float64) {
+	times := 1
+	if m.Twin(h) == triangulate.NoHalfEdge {
+		times = 2
+	}
+	l.edges += times
+	// One in two lengths is below: counted without a branch to guess.
+	below, upTo := 0, 0
+	if square < l.low {
+		below = times
+	}
+	if square <= l.high {
+		upTo = times
+	}
+	l.below += below
+	for range upTo - below {
+		l.kept = append(l.kept, square)
 	}
 }
 
@@ -86,10 +113,9 @@ func inParts(n, workers int, do func(w, from, to int)) {
 
 // squaredDistance is the same for an edge from either of its ends: the differences
 // only change sign.
-func squaredDistance(a, b orb.Point) float64 {
-	dx, dy := b[0]-a[0], b[1]-a[1]
-	return float64(dx*dx) + float64(dy*dy)
-}
+func squaredDistance(a, b orb.Point) float64 { return squared(b[0]-a[0], b[1]-a[1]) }
+
+func squared(dx, dy float64) float64 { return float64(dx*dx) + float64(dy*dy) }
 
 // LongOutline returns which part of the area of m lies in triangles that have an
 // edge longer than limit and reach the outside through such triangles: what an
