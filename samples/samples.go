@@ -46,6 +46,8 @@ const (
 	LandfillTrueHeads = "landfill/true-heads.csv"
 	// LandfillAnswers holds the planes and mounds that make the true heads, as JSON.
 	LandfillAnswers = "landfill/answers.json"
+	// LandfillJob makes head maps of all rounds: a job file.
+	LandfillJob = "landfill/heads.toml"
 )
 
 // A File is one sample file.
@@ -69,4 +71,5 @@ var Files = []File{
 	{GravelPitAnswers, "gravel pit: what is true"},
 	{LandfillTrueHeads, "landfill: the true heads"},
 	{LandfillAnswers, "landfill: what is true"},
+	{LandfillJob, "landfill: a job that maps all rounds"},
 }

@@ -94,6 +94,7 @@ func (a *accuracyCommand) loadApart(ctx context.Context, list []*input) (*loaded
 	if err != nil {
 		return nil, nil, err
 	}
+	a.remember(&a.reading, l)
 	return l, &checkpoints{of[held], l.names}, nil
 }
 

@@ -236,6 +236,11 @@ func (p *program) join(ctx context.Context, r *reading, l *loaded, opt triangula
 			o.SpotSpreadMax = math.Inf(1)
 		}
 	}
+	if p.step != nil && len(d.lines) == 0 {
+		s, err := p.surfaceOf(ctx, l.set, opt)
+		l.surface, d.report = s, &interp.BreaklineReport{}
+		return err
+	}
 	s, report, err := interp.WithBreaklines(ctx, l.set.Points, l.set.Z, breaklines, o)
 	if err != nil {
 		return p.linesError(l, err)

@@ -43,10 +43,29 @@ type loaded struct {
 // million readings with ids and codes came to 180 each at the peak.
 const bytesReading = 180
 
-// load reads the inputs, says what was found in them, and triangulates.
+// load reads the inputs, says what was found in them, and triangulates; or takes the
+// surface that another step of the same run has made of them.
 func (p *program) load(ctx context.Context, r *reading, list []*input) (*loaded, error) {
+	load := p.loadAlone
+	if p.step != nil {
+		load = func(ctx context.Context, r *reading, list []*input) (*loaded, error) {
+			return p.step.shared.surface(ctx, p, r, list)
+		}
+	}
+	l, err := load(ctx, r, list)
+	if err == nil {
+		p.remember(r, l)
+	}
+	return l, err
+}
+
+// loadAlone makes a surface.
+func (p *program) loadAlone(ctx context.Context, r *reading, list []*input) (*loaded, error) {
 	set, err := p.read(ctx, r, list)
 	if err != nil {
+		return nil, err
+	}
+	if err := p.checkSpan(r, set); err != nil {
 		return nil, err
 	}
 	return p.stand(ctx, r, list, set)
@@ -83,6 +102,13 @@ func (p *program) stand(ctx context.Context, r *reading, list []*input, set *rea
 
 // read reads the readings.
 func (p *program) read(ctx context.Context, r *reading, list []*input) (*readings.Set, error) {
+	if p.step != nil && r.round.set {
+		set, err := p.readRound(ctx, r, list)
+		if err != nil {
+			return nil, err
+		}
+		return set, p.codesKnown(&r.edges, set)
+	}
 	var set *readings.Set
 	err := p.withSources(ctx, r, list, func(sources []readings.Source, opt readings.Options) (err error) {
 		set, err = readings.Read(ctx, sources, opt)

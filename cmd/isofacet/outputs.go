@@ -23,6 +23,11 @@ type writing struct {
 	format   option.Choice
 	decimals option.Decimals
 	record   typed
+	// statement is the file for the paragraph about the method.
+	statement typed
+	names     map[string]string // what stands for {round} and its like
+
+	recordPath, statementPath string // templates filled in
 }
 
 // byExtension is the word for "no format was named".
@@ -41,15 +46,18 @@ func (w *writing) writingOptions(parts, formats []string) []manual.Option {
 	if len(parts) > 1 {
 		out += "; PART=FILE writes one of the parts " + strings.Join(parts, ", ")
 	}
+	w.statement = typed{form: "FILE"}
 	return []manual.Option{
 		{Group: group, Name: "out", Value: &w.outs, Repeatable: true, Default: "-",
-			Text: out + "; {file} in a name stands for the input's name without folder and extension"},
+			Text: out + "; {file} in a name stands for the input's name without folder and extension, {round} for the round, {zone} for the zone"},
 		{Group: group, Name: "format", Value: formatValue{&w.format}, Default: byExtension,
 			Text: "format of the output"},
 		{Group: group, Name: "decimals", Value: &w.decimals,
 			Text: "digits after the point; auto: two more than the readings have; full: the shortest text that reads back to the same number"},
 		{Group: group, Name: "record", Value: &w.record,
 			Text: "file for the run record: inputs with hashes, settings, what was not used and why, ranges, warnings, outputs with hashes"},
+		{Group: group, Name: "method-statement", Value: &w.statement,
+			Text: "file for a paragraph about the method, a caption for the figure, and what they leave open"},
 	}
 }
 
@@ -82,11 +90,11 @@ type destination struct {
 // outputs are all files that a run makes. They are begun before the work, so that
 // a missing folder shows at once, and appear together at its end.
 type outputs struct {
-	ctx    context.Context
-	p      *program
-	set    outfile.Set
-	list   []*destination
-	record *outfile.File
+	ctx               context.Context
+	p                 *program
+	set               outfile.Set
+	list              []*destination
+	record, statement *outfile.File
 	// written counts the bytes of the output being written, for progress.
 	written  int
 	progress func(done, total int)
@@ -118,11 +126,21 @@ func (w *writing) destinations(usual string, files []string, named formatOf, usu
 	if len(outs) == 0 {
 		outs = []option.Out{{File: "-"}}
 	}
+	for _, about := range []struct {
+		option string
+		typed
+		path *string
+	}{{"--record", w.record, &w.recordPath}, {"--method-statement", w.statement, &w.statementPath}} {
+		var err error
+		if *about.path, err = w.expand(about.option, about.text, files); err != nil {
+			return nil, err
+		}
+	}
 	asked := w.format.Word()
 	taken := false
 	var list []*destination
 	for _, out := range outs {
-		path, err := expand(out.File, files)
+		path, err := w.expand("--out", out.File, files)
 		if err != nil {
 			return nil, err
 		}
@@ -176,43 +194,11 @@ func family(format string) string {
 	return head
 }
 
-// expand puts the input's name in place of {file}.
-func expand(path string, files []string) (string, error) {
-	for rest := path; ; {
-		_, after, ok := strings.Cut(rest, "{")
-		if !ok {
-			break
-		}
-		name, behind, ok := strings.Cut(after, "}")
-		if !ok || name != "file" {
-			return "", status.Usage(fmt.Errorf("--out %q: expected {file} between braces", path), "{file} stands for the input's name; other names are for later versions")
-		}
-		rest = behind
-	}
-	if !strings.Contains(path, "{file}") {
-		return path, nil
-	}
-	if len(files) != 1 || files[0] == "-" {
-		return "", status.Usage(fmt.Errorf("--out %q: {file} with %d named inputs: expected one", path, len(files)), "write the name out")
-	}
-	base := filepath.Base(filepath.FromSlash(strings.TrimPrefix(files[0], samplePrefix)))
-	base = strings.TrimSuffix(base, filepath.Ext(base))
-	return strings.ReplaceAll(path, "{file}", safeName(base)), nil
-}
-
-// safeName makes every character that some system does not take in a file name a
-// hyphen.
-func safeName(s string) string {
-	return strings.Map(func(r rune) rune {
-		if r < ' ' || strings.ContainsRune(`<>:"/\|?*{}`, r) {
-			return '-'
-		}
-		return r
-	}, s)
-}
-
 // open begins the outputs. An output that is also an input is refused.
 func (p *program) open(ctx context.Context, w *writing, list []*destination, inputs []string) (*outputs, error) {
+	if p.step != nil && p.step.dry {
+		return nil, p.checkOutputs(w, list)
+	}
 	o := &outputs{ctx: ctx, p: p, list: list}
 	if err := o.begin(w, inputs); err != nil {
 		o.abort()
@@ -238,13 +224,15 @@ func (o *outputs) begin(w *writing, inputs []string) error {
 			d.beside = o.writer(f, record.File{Name: path, Part: d.part, Format: "json"})
 		}
 	}
-	if w.record.set {
-		if w.record.text == "-" {
-			return status.Usage(errors.New(`--record "-": expected a file name: standard output is for results`), "name a file")
-		}
-		o.record, err = o.create("--record", w.record.text, outfile.Options{}, inputs)
+	if w.record.set && w.record.text == "-" {
+		return status.Usage(errors.New(`--record "-": expected a file name: standard output is for results`), "name a file")
 	}
-	return err
+	for _, extra := range w.extras() {
+		if *extra.file(o), err = o.create(extra.option, extra.path, outfile.Options{}, inputs); err != nil {
+			return err
+		}
+	}
+	return nil
 }
 
 // create begins one file.
@@ -318,15 +306,8 @@ func (o *outputs) write(d *destination, one func(*destination) error) error {
 
 // commit writes the run record and makes all files appear.
 func (o *outputs) commit() error {
-	if rec := o.p.rec; rec != nil {
-		for _, h := range o.hashed {
-			h.finish()
-			rec.Stable.Outputs = append(rec.Stable.Outputs, h.entry)
-		}
-		rec.Stable.Warnings = o.p.report.Warnings()
-		if err := rec.Write(o.record); err != nil {
-			return err
-		}
+	if err := o.finishRecord(); err != nil {
+		return err
 	}
 	if err := o.ctx.Err(); err != nil {
 		return err

@@ -31,6 +31,7 @@ type reading struct {
 	edges
 	measures
 	guards
+	rounds
 
 	account bool // keep what was read of readings that are not used
 
@@ -81,7 +82,7 @@ func (r *reading) readingOptions() []manual.Option {
 			Text: "leave out readings whose text matches a shell pattern"},
 		{Group: which, Name: "exclude", Value: &r.exclude,
 			Text: "file of readings to leave out: columns id (or x and y), decision and reason; a row counts if its decision is \"leave out\" and it has a reason"},
-	}, r.depths.depthOptions(), r.measures.measureOptions(), r.guards.guardOptions(), r.edges.edgeOptions(), []manual.Option{
+	}, r.depths.depthOptions(), r.rounds.roundOptions(r), r.measures.measureOptions(), r.guards.guardOptions(), r.edges.edgeOptions(), []manual.Option{
 		{Group: labels, Name: "crs", Value: &r.crs, Text: "coordinate system of x and y"},
 		{Group: labels, Name: "horizontal-datum", Value: &r.horizontalDatum, Text: "what x and y refer to"},
 		{Group: labels, Name: "vertical-datum", Value: &r.verticalDatum, Text: "what z refers to"},

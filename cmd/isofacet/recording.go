@@ -7,7 +7,6 @@ import (
 	"github.com/spf13/cobra"
 	"github.com/spf13/pflag"
 
-	"isofacet/cmd/internal/option"
 	"isofacet/cmd/internal/record"
 )
 
@@ -17,13 +16,19 @@ var changesNothing = []string{"threads", "memory", "progress", "quiet", "log", "
 
 // startRecord begins the run record, if one is wanted.
 func (p *program) startRecord(cmd *cobra.Command, w *writing) {
-	if !w.record.set {
+	if !w.record.set && p.step == nil && !w.statement.set {
 		return
 	}
-	rec := record.New(cmd.Name())
+	p.rec = record.New(cmd.Name())
+	p.fillRecord(cmd, p.rec)
+}
+
+// fillRecord notes the version, the command line and the settings.
+func (p *program) fillRecord(cmd *cobra.Command, rec *record.Record) {
 	v := buildVersion()
 	rec.Stable.Version, rec.Stable.Commit = v.Version, v.Commit
-	rec.Stable.Rerun = record.Shell(append([]string{"isofacet"}, withoutOptions(p.args, changesNothing, switchNames(p.root))...))
+	rec.Stable.Arguments = withoutOptions(p.args, changesNothing, switchNames(p.root))
+	rec.Stable.Rerun = record.Shell(append([]string{"isofacet"}, rec.Stable.Arguments...))
 	cmd.Flags().VisitAll(func(f *pflag.Flag) {
 		if f.Name == "help" || slices.Contains(changesNothing, f.Name) {
 			return
@@ -36,8 +41,7 @@ func (p *program) startRecord(cmd *cobra.Command, w *writing) {
 	})
 	rec.ThisRun.Arguments = p.args
 	rec.ThisRun.Threads = p.workers()
-	rec.ThisRun.Memory = option.Size(p.budget.Bytes).String() + ", " + p.budget.Source
-	p.rec = rec
+	rec.ThisRun.Memory = p.memoryText()
 }
 
 // defaultText is what holds where an option has no value.

@@ -33,6 +33,7 @@ func (p *program) commands() []*cobra.Command {
 		newVolume(p),
 		newAccuracy(p),
 		newProfile(p),
+		newRun(p),
 		newSamples(p),
 		newCompletion(p),
 		newVersion(p),
@@ -85,6 +86,7 @@ func (p *program) newRoot() *cobra.Command {
 		}
 		option.Once(cmd.Flags(), manual.Repeatable(cmd.Flags())...)
 		completeChoices(cmd)
+		p.forEach(cmd)
 	}
 	return root
 }

@@ -9,6 +9,7 @@ import (
 
 	"isofacet/cmd/internal/manual"
 	"isofacet/cmd/internal/memory"
+	"isofacet/cmd/internal/method"
 	"isofacet/cmd/internal/option"
 	"isofacet/cmd/internal/progress"
 	"isofacet/cmd/internal/record"
@@ -26,11 +27,13 @@ type running struct {
 	log      option.Choice
 	warnings option.Choice
 
+	step     *step    // what it is among several, nil for a command by itself
 	args     []string // as given
 	listMost int      // how many readings that are not used are named one by one
 	rec      *record.Record
-	opened   []*input // every file that is read, in the order of opening
-	again    bool     // a file that was opened before may be read again
+	facts    *method.Facts // for a method statement, once they are known
+	opened   []*input      // every file that is read, in the order of opening
+	again    bool          // a file that was opened before may be read again
 	root     *cobra.Command
 	report   *report.Reporter
 	display  *progress.Display
@@ -64,6 +67,11 @@ func (r *running) runningOptions() []manual.Option {
 // 200, 400 or 800 percent took the same time for a million readings.
 func (p *program) begin(cmd *cobra.Command, w *writing) {
 	p.listMost = fewLines
+	w.named(cmd)
+	if p.step != nil {
+		p.beginStep(cmd, w)
+		return
+	}
 	if p.threads > 0 {
 		runtime.GOMAXPROCS(int(p.threads))
 	}
@@ -76,7 +84,12 @@ func (p *program) begin(cmd *cobra.Command, w *writing) {
 }
 
 // workers is the number of goroutines that a stage may use.
-func (r *running) workers() int { return runtime.GOMAXPROCS(0) }
+func (r *running) workers() int {
+	if r.step != nil {
+		return r.step.workers
+	}
+	return runtime.GOMAXPROCS(0)
+}
 
 // largeShare is the part of the budget from which on a piece of work is large
 // enough to say what it needs before it starts.

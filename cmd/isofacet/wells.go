@@ -85,10 +85,13 @@ func (p *program) reduce(r *reading, opt *readings.Options) error {
 			p.report.Warn("wells", w.String(), "file", w.File, "line", w.Line)
 		}
 	}
-	if d.round.set {
+	if d.round.set && !r.apart {
 		opt.Select.Only = append(slices.Clone(opt.Select.Only), readings.Literal(readings.Round, d.round.text))
 	}
 	for _, role := range []readings.Role{readings.Round, readings.Zone} {
+		if role == readings.Round && r.apart {
+			continue
+		}
 		if !slices.ContainsFunc(opt.Select.Only, func(p readings.Pattern) bool { return p.Role == role }) {
 			opt.OneOf = append(opt.OneOf, role)
 		}

@@ -78,7 +78,7 @@ func TestExpand(t *testing.T) {
 		{"{round}.csv", []string{"a.csv"}, "", false},
 		{"{file.csv", []string{"a.csv"}, "", false},
 	} {
-		got, err := expand(row.path, row.files)
+		got, err := (&writing{}).expand("--out", row.path, row.files)
 		if got != row.want || (err == nil) != row.ok {
 			t.Errorf("expand(%q, %q) = %q, %v, want %q", row.path, row.files, got, err, row.want)
 		}

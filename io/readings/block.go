@@ -29,6 +29,7 @@ type Block struct {
 
 	// Under Options.part: the part of each of LeftOut and Refused, nil where it is not known.
 	leftParts, refusedParts []*string
+	decimals                [][2]uint8 // of each reading: coordinates, value
 
 	warnings  []Warning // lines from 0 in the block
 	lines     int       // line ends in the block

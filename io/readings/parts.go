@@ -31,9 +31,8 @@ func ByRole(r Role) Parter {
 // ReadParts reads like Read, once, and puts readings apart. Parts come by name in
 // rising order. Each is a set by itself, as if Read had been given its lines alone:
 // readings of two parts at one place are no readings at one place, and in each part
-// used + merged + left out + refused = read. But DecimalsXY and DecimalsZ are those
-// of all, so that numbers of all parts are written alike, and a line that cannot be
-// taken apart, refused under Options.Lenient, is counted and listed in every part.
+// used + merged + left out + refused = read. But a line that cannot be taken apart,
+// refused under Options.Lenient, is counted and listed in every part.
 //
 // Errors are those of Read, except that of Part.Err.
 func ReadParts(ctx context.Context, sources []Source, o Options, part Parter) ([]Part, error) {
@@ -68,8 +67,12 @@ type parts struct {
 	sources []Source
 	of      map[string]*someBlocks
 	unknown []*PositionError // refused, in no part
+}
 
-	decimalsXY, decimalsZ int
+// noteDecimals keeps how many decimals a reading is written with.
+func (b *Block) noteDecimals(decimals [3]int) {
+	most := func(n int) uint8 { return uint8(min(n, math.MaxUint8)) }
+	b.decimals = append(b.decimals, [2]uint8{most(max(decimals[0], decimals[1])), most(decimals[2])})
 }
 
 // someBlocks are the readings of one part.
@@ -81,7 +84,6 @@ type someBlocks struct {
 
 // take spreads a block over the parts.
 func (p *parts) take(b *Block) {
-	p.decimalsXY, p.decimalsZ = max(p.decimalsXY, b.DecimalsXY), max(p.decimalsZ, b.DecimalsZ)
 	here := map[string]*Block{}
 	into := func(name string) (*someBlocks, *Block) {
 		some := p.of[name]
@@ -103,6 +105,8 @@ func (p *parts) take(b *Block) {
 		blk.Points = append(blk.Points, b.Points[i])
 		blk.Z = append(blk.Z, b.Z[i])
 		blk.Lines = append(blk.Lines, b.Lines[i])
+		blk.DecimalsXY = max(blk.DecimalsXY, int(b.decimals[i][0]))
+		blk.DecimalsZ = max(blk.DecimalsZ, int(b.decimals[i][1]))
 		if b.work != nil {
 			blk.work = append(blk.work, b.work[i])
 		}
@@ -149,7 +153,6 @@ func (p *parts) finish(ctx context.Context, summary *Summary) ([]Part, error) {
 		set.Counts.BlankLines, set.Counts.Skipped = summary.Counts.BlankLines, summary.Counts.Skipped
 		c := collected{Set: set, blocks: some.blocks, o: p.o, sources: p.sources}
 		c.joinNumbers()
-		set.DecimalsXY, set.DecimalsZ = p.decimalsXY, p.decimalsZ
 		part := Part{Name: name, Set: set}
 		err := c.mixed()
 		if err == nil {

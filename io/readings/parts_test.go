@@ -20,7 +20,7 @@ func TestPartsAreTheSetsOfTheirLines(t *testing.T) {
 		whole := header
 		for i := range rapid.IntRange(1, 40).Draw(t, "lines") {
 			name := rapid.SampledFrom(names).Draw(t, "round")
-			z := rapid.SampledFrom([]string{"1", "2.5", "NM", "x1"}).Draw(t, "z")
+			z := rapid.SampledFrom([]string{"1", "2.5", "NM", "x1", "1.250e0"}).Draw(t, "z")
 			line := fmt.Sprintf("W%d,%d,%d,%s,%s,%s\n", i, rapid.IntRange(0, 3).Draw(t, "x"), i%5, z, name, rapid.SampledFrom([]string{"ok", "dry"}).Draw(t, "status"))
 			texts[name] += line
 			whole += line
@@ -67,7 +67,7 @@ func describeSet(s *Set) string {
 		lines = append(lines, fmt.Sprint("refused ", e.What, e.Seen))
 	}
 	c := s.Counts
-	lines = append(lines, fmt.Sprint(c.Read, c.Used, c.Merged, c.LeftOut, c.Refused, s.SpotCount, s.SpotSpread))
+	lines = append(lines, fmt.Sprint(c.Read, c.Used, c.Merged, c.LeftOut, c.Refused, s.SpotCount, s.SpotSpread, s.DecimalsXY, s.DecimalsZ))
 	return strings.Join(lines, "\n")
 }
 

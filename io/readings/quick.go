@@ -159,6 +159,9 @@ func (w *worker) quickRow(b []byte, p int, blk *Block) (next int) {
 	blk.Lines = append(blk.Lines, uint32(w.line))
 	blk.DecimalsXY = max(blk.DecimalsXY, decimals[0], decimals[1])
 	blk.DecimalsZ = max(blk.DecimalsZ, decimals[2])
+	if w.part != nil {
+		blk.noteDecimals(decimals)
+	}
 	for _, slot := range w.slots {
 		blk.texts[slot].addFrom(b, int(spans[slot].from), int(spans[slot].to))
 	}

@@ -272,6 +272,9 @@ func (w *worker) accept(v [3]float64, decimals [3]int, record []byte) {
 	}
 	blk.Z = append(blk.Z, v[2])
 	blk.DecimalsZ = max(blk.DecimalsZ, decimals[2])
+	if w.part != nil {
+		blk.noteDecimals(decimals)
+	}
 	for _, slot := range w.slots {
 		blk.texts[slot].add(w.current[slot])
 	}

@@ -92,7 +92,7 @@ func OptionOf(f *pflag.Flag, repeatable bool) Option {
 	switch {
 	case f.NoOptDefVal != "":
 		o.Kind = Switch
-	case strings.Contains(form, "|") && form == strings.ToLower(form):
+	case form == strings.ToLower(form):
 		o.Kind, o.Words = Words, strings.Split(form, "|")
 	case slices.ContainsFunc(textForms, func(t string) bool { return strings.Contains(form, t) }):
 		o.Kind = Text

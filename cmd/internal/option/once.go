@@ -36,3 +36,11 @@ func (o *once) Set(text string) error {
 
 // IsBoolFlag lets a wrapped switch be named without a value.
 func (o *once) IsBoolFlag() bool { return o.Type() == "bool" }
+
+// Inner returns the value of a flag as it was defined, before Once wrapped it.
+func Inner(v pflag.Value) pflag.Value {
+	if o, ok := v.(*once); ok {
+		return o.Value
+	}
+	return v
+}

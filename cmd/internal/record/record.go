@@ -21,18 +21,34 @@ type Record struct {
 // Stable is the part that depends on nothing but the program, its arguments and
 // its inputs.
 type Stable struct {
-	Program  string    `json:"program"`
-	Version  string    `json:"version"`
-	Commit   string    `json:"commit,omitempty"`
-	Command  string    `json:"command"`
-	Rerun    string    `json:"rerun"` // for a shell
-	Settings []Setting `json:"settings"`
-	Inputs   []*File   `json:"inputs"`
-	Readings *Readings `json:"readings,omitempty"`
+	Program string `json:"program"`
+	Version string `json:"version"`
+	Commit  string `json:"commit,omitempty"`
+	Command string `json:"command"`
+	Rerun   string `json:"rerun"` // for a shell
+	// Arguments are the same, one by one: the command, its options and files, those
+	// left out that change no result.
+	Arguments []string  `json:"arguments"`
+	Settings  []Setting `json:"settings"`
+	Inputs    []*File   `json:"inputs"`
+	Readings  *Readings `json:"readings,omitempty"`
 	// Result is what the command says about its work: ranges, lattice, statistics.
 	Result   any              `json:"result,omitempty"`
 	Warnings []report.Warning `json:"warnings"`
 	Outputs  []*File          `json:"outputs"`
+	// Tasks are those of a run of several, in their order.
+	Tasks []Task `json:"tasks,omitempty"`
+}
+
+// A Task is one of several commands of a run.
+type Task struct {
+	Name  string `json:"name"`
+	State string `json:"state"` // done or failed
+	// Fault is why it failed.
+	Fault string `json:"fault,omitempty"`
+	// Stable is the stable part of its own record, if it is done. It is kept as it
+	// was written when the task was done, maybe by an earlier run.
+	Stable json.RawMessage `json:"stable,omitempty"`
 }
 
 // A Setting is an option as it was in effect.
@@ -81,6 +97,8 @@ type ThisRun struct {
 	Go        string    `json:"go"`
 	Threads   int       `json:"threads"`
 	Memory    string    `json:"memory_limit"`
+	// Unchanged are the tasks that had nothing to do.
+	Unchanged []string `json:"unchanged,omitempty"`
 }
 
 // New begins the record of a run.
@@ -90,7 +108,7 @@ func New(command string) *Record {
 		folder = "unknown"
 	}
 	return &Record{
-		Kind: "isofacet run record",
+		Kind: Kind,
 		Stable: Stable{
 			Program: "isofacet", Command: command,
 			Inputs: []*File{}, Outputs: []*File{}, Warnings: []report.Warning{},

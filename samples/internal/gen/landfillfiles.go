@@ -14,6 +14,7 @@ func landfillFiles() map[string][]byte {
 		"heads-2024-q1.csv": headText(rounds[0].name),
 		"true-heads.csv":    trueHeadText(),
 		"answers.json":      landfillAnswers(),
+		"heads.toml":        []byte(landfillJob),
 	}
 }
 

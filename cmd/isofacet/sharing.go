@@ -1,0 +1,231 @@
+package main
+
+import (
+	"context"
+	"slices"
+	"strings"
+	"sync"
+
+	"github.com/paulmach/orb"
+	"github.com/spf13/cobra"
+	"github.com/spf13/pflag"
+
+	"isofacet/cmd/internal/report"
+	"isofacet/interp"
+	"isofacet/io/readings"
+	"isofacet/triangulate"
+)
+
+// sharedWork is what the steps of one run have in common: inputs that are read once
+// for all rounds, surfaces that several steps ask for, and meshes of equal places.
+type sharedWork struct {
+	mu       sync.Mutex
+	surfaces map[string]*sharedSurface
+	parts    map[string]*sharedParts
+	meshes   []*sharedMesh
+	// left counts the steps that will still ask for a surface, by its key, and for
+	// parts.
+	left map[string]int
+}
+
+func newSharedWork() *sharedWork {
+	return &sharedWork{surfaces: map[string]*sharedSurface{}, parts: map[string]*sharedParts{}, left: map[string]int{}}
+}
+
+// said is what a step said and opened while it made something for all.
+type said struct {
+	events []report.Event
+	files  []*input // opened beside the command's own
+	own    []*input // the command's own, with their hashes
+}
+
+// listen notes what p says and opens from now on.
+func (p *program) listen(list []*input) func() said {
+	opened, stop := len(p.opened), p.report.Keep()
+	return func() said { return said{stop(), slices.Clone(p.opened[opened:]), list} }
+}
+
+// repeat has p say what another step said.
+func (p *program) repeat(s *said, list []*input) {
+	p.report.Replay(s.events)
+	for i := range list {
+		*list[i].file = *s.own[i].file
+	}
+	for _, in := range s.files {
+		p.opened = append(p.opened, in)
+		p.recordInput(in)
+	}
+}
+
+type sharedSurface struct {
+	once sync.Once
+	l    *loaded
+	err  error
+	said said
+	by   *program
+}
+
+// surface returns the surface that a step asks for, made by the first who does.
+func (w *sharedWork) surface(ctx context.Context, p *program, r *reading, list []*input) (*loaded, error) {
+	key := p.step.surface
+	w.mu.Lock()
+	s := w.surfaces[key]
+	if s == nil {
+		s = &sharedSurface{}
+		w.surfaces[key] = s
+	}
+	w.mu.Unlock()
+	s.once.Do(func() {
+		done := p.listen(list)
+		s.by = p
+		s.l, s.err = p.loadAlone(ctx, r, list)
+		s.said = done()
+	})
+	if s.by != p {
+		p.repeat(&s.said, list)
+	}
+	if s.err != nil {
+		return nil, s.err
+	}
+	mine := *s.l // digits may be widened by one step
+	return &mine, nil
+}
+
+// expect counts what will be asked for.
+func (w *sharedWork) expect(s *step) {
+	w.left[s.surface]++
+	w.left[partsKey(s.surface)]++
+}
+
+// done lets go of what no step will ask for any more.
+func (w *sharedWork) done(s *step) {
+	w.mu.Lock()
+	defer w.mu.Unlock()
+	for _, key := range []string{s.surface, partsKey(s.surface)} {
+		if w.left[key]--; w.left[key] <= 0 {
+			delete(w.surfaces, key)
+			delete(w.parts, key)
+		}
+	}
+}
+
+type sharedParts struct {
+	once  sync.Once
+	parts []readings.Part
+	err   error
+	said  said
+	edges edges // with the table of codes
+	by    *program
+}
+
+// rounds returns the readings of all rounds of the inputs, read by the first who
+// asks.
+func (w *sharedWork) rounds(ctx context.Context, p *program, r *reading, list []*input) ([]readings.Part, error) {
+	key := partsKey(p.step.surface)
+	w.mu.Lock()
+	s := w.parts[key]
+	if s == nil {
+		s = &sharedParts{}
+		w.parts[key] = s
+	}
+	w.mu.Unlock()
+	s.once.Do(func() {
+		done := p.listen(list)
+		s.by = p
+		r.apart = true
+		s.parts, s.err = p.readParts(ctx, r, list, readings.ByRole(readings.Round))
+		r.apart = false
+		s.said, s.edges = done(), r.edges
+	})
+	if s.by != p {
+		p.repeat(&s.said, list)
+		r.edges.table, r.edges.codes = s.edges.table, s.edges.codes
+	}
+	return s.parts, s.err
+}
+
+// sharedMesh is a mesh of places that several sets of values stand at.
+type sharedMesh struct {
+	once   sync.Once
+	points []orb.Point
+	mesh   *triangulate.Mesh
+	err    error
+}
+
+// meshesKept is how many meshes are kept for others with the same places: rounds of
+// one network come one after the other.
+const meshesKept = 8
+
+// mesh returns the mesh of places, made by the first who asks.
+func (w *sharedWork) mesh(ctx context.Context, points []orb.Point, opt triangulate.Options) (*triangulate.Mesh, error) {
+	w.mu.Lock()
+	var m *sharedMesh
+	for _, known := range w.meshes {
+		if slices.Equal(known.points, points) {
+			m = known
+		}
+	}
+	if m == nil {
+		m = &sharedMesh{points: points}
+		w.meshes = append(w.meshes, m)
+		if len(w.meshes) > meshesKept {
+			w.meshes = w.meshes[1:]
+		}
+	}
+	w.mu.Unlock()
+	m.once.Do(func() { m.mesh, m.err = triangulate.Delaunay(ctx, points, opt) })
+	return m.mesh, m.err
+}
+
+// surfaceOf returns the surface of readings without lines, over a mesh that may be
+// shared.
+func (p *program) surfaceOf(ctx context.Context, set *readings.Set, opt triangulate.Options) (*interp.Surface, error) {
+	mesh, err := p.step.shared.mesh(ctx, set.Points, opt)
+	if err != nil {
+		return nil, err
+	}
+	return interp.FromInputs(mesh, set.Z)
+}
+
+// surfaceKey names the surface that a command line asks for: its files and every
+// option that says how they are read.
+func surfaceKey(cmd *cobra.Command) string {
+	var b strings.Builder
+	b.WriteString(strings.Join(cmd.Flags().Args(), "\x00"))
+	for _, name := range readingNames() {
+		if f := cmd.Flags().Lookup(name); f != nil && f.Changed && name != "each" {
+			b.WriteString("\x01" + name + "\x00" + f.Value.String())
+		}
+	}
+	return b.String()
+}
+
+// partsKey is the key without the round.
+func partsKey(surface string) string {
+	const mark = "\x01round\x00"
+	before, after, ok := strings.Cut(surface, mark)
+	if !ok {
+		return "all\x02" + surface
+	}
+	_, behind, more := strings.Cut(after, "\x01")
+	if more {
+		before += "\x01" + behind
+	}
+	return "all\x02" + before
+}
+
+// readingNames are the options that say how readings are read, each once.
+var readingNames = sync.OnceValue(func() []string {
+	var names []string
+	var r reading
+	for _, o := range r.readingOptions() {
+		names = append(names, o.Name)
+	}
+	return names
+})
+
+// changedFlag reports whether a flag was given.
+func changedFlag(cmd *cobra.Command, name string) (*pflag.Flag, bool) {
+	f := cmd.Flags().Lookup(name)
+	return f, f != nil && f.Changed
+}

@@ -1,0 +1,132 @@
+package main
+
+import (
+	"slices"
+	"strings"
+
+	"isofacet/cmd/internal/method"
+	"isofacet/cmd/internal/option"
+	"isofacet/io/outfile"
+	"isofacet/io/readings"
+)
+
+// idsMost is how many readings a caption names.
+const idsMost = 60
+
+// remember keeps what a method statement says of the readings.
+func (p *program) remember(r *reading, l *loaded) {
+	set := l.set
+	f := &method.Facts{
+		Groundwater: set.Heads() || set.Has(readings.Round) || set.Has(readings.Zone),
+		Read:        set.Counts.Read, Used: set.Counts.Used, Merged: set.Counts.Merged,
+		System:          r.crs.String(),
+		HorizontalDatum: r.horizontalDatum.String(), VerticalDatum: r.verticalDatum.String(),
+		Triangles: l.shown().Mesh().NumTriangles(), Breaklines: len(l.drawn.lines),
+		Boundary: l.drawn.rings.boundaries, Voids: l.drawn.rings.voids,
+		Exclusions: r.exclude.text,
+	}
+	texts := func(role readings.Role) []string {
+		var all []string
+		if set.Has(role) {
+			for i := range set.Len() {
+				all = append(all, set.Text(role, i))
+			}
+		}
+		return all
+	}
+	f.Rounds, f.Zones = method.Sorted(texts(readings.Round)), method.Sorted(texts(readings.Zone))
+	if ids := method.Sorted(texts(readings.ID)); len(ids) <= idsMost {
+		f.IDs = ids
+	}
+	if set.Has(readings.Time) {
+		f.First, f.Last, _, _ = timesOf(set)
+	}
+	if r.edges.maxEdge.IsSet() {
+		f.LongestEdge = r.edges.maxEdge.String()
+	}
+	f.SameSpot = r.spotRule.text
+	if f.SameSpot == "" {
+		f.SameSpot = "mean of those that agree"
+	}
+	_, z := l.digits(option.Decimals{})
+	f.ZMin, f.ZMax = number{l.zRange[0], z}.String(), number{l.zRange[1], z}.String()
+	p.facts = f
+}
+
+// writeStatement writes the method statement of what was done.
+func (p *program) writeStatement(file *outfile.File) error {
+	f := p.facts
+	if f == nil {
+		f = &method.Facts{}
+	}
+	rec := p.rec.Stable
+	f.Product = products[rec.Command]
+	if f.Product == "" {
+		f.Product = rec.Command
+	}
+	f.Program = strings.TrimSpace("isofacet " + rec.Version + " " + rec.Commit)
+	for _, in := range rec.Inputs {
+		f.Files = append(f.Files, in.Name)
+	}
+	if rec.Readings != nil {
+		for _, n := range rec.Readings.NotUsed {
+			if strings.HasPrefix(n.Reason, "not among round=") {
+				f.Read-- // of another map
+				continue
+			}
+			who := n.ID
+			if who == "" {
+				who = n.File
+			}
+			f.NotUsed = append(f.NotUsed, method.NotUsed{ID: who, What: n.What, Reason: n.Reason})
+		}
+	}
+	for _, s := range rec.Settings {
+		if s.Value == "" {
+			continue
+		}
+		switch s.Option {
+		case "interval":
+			f.Interval = s.Value
+		case "levels":
+			f.Levels = s.Value
+		case "cell":
+			f.Cell = s.Value
+		case "bands":
+			f.Bands = s.Given
+		case "inferred-beyond":
+			if s.Given {
+				f.Inferred = s.Value
+			}
+		case "xy-unit":
+			if s.Given {
+				f.XYUnit = s.Value
+			}
+		case "z-unit":
+			if s.Given {
+				f.ZUnit = s.Value
+			}
+		case "to-xy-unit", "to-z-unit":
+		}
+	}
+	for _, s := range rec.Settings { // what is converted has the unit it is converted to
+		if s.Given && s.Option == "to-xy-unit" {
+			f.XYUnit = s.Value
+		}
+		if s.Given && s.Option == "to-z-unit" {
+			f.ZUnit = s.Value
+		}
+	}
+	if a, ok := rec.Result.(*accuracyReport); ok {
+		f.AccuracyRMSE, f.AccuracyOf = a.All.RMSE.String(), a.All.Count
+	}
+	f.GradientAndArrow = slices.Contains([]string{"flow"}, rec.Command)
+	return f.Write(file)
+}
+
+// products are what commands make, in a caption's words.
+var products = map[string]string{
+	"contour": "contours", "grid": "raster", "triangles": "triangulated surface", "query": "values at places",
+	"profile": "profile", "volume": "volumes", "change": "change", "accuracy": "accuracy", "flow": "gradient and direction of flow",
+	"inspect": "summary", "readings": "table",
+}
