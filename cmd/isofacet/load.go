@@ -65,9 +65,6 @@ func (p *program) loadAlone(ctx context.Context, r *reading, list []*input) (*lo
 	if err != nil {
 		return nil, err
 	}
-	if err := p.checkSpan(r, set); err != nil {
-		return nil, err
-	}
 	return p.stand(ctx, r, list, set)
 }
 

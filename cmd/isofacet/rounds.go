@@ -14,13 +14,13 @@ import (
 	"isofacet/cmd/internal/option"
 	"isofacet/cmd/internal/status"
 	"isofacet/io/readings"
+	"isofacet/io/wells"
 )
 
 // rounds is which of several rounds in one file are used: all, one after the other,
 // or one.
 type rounds struct {
 	each eachRound
-	span parsed[time.Duration]
 	// apart: all rounds are being read, to be put apart.
 	apart bool
 }
@@ -36,12 +36,9 @@ const groupRounds = "Rounds"
 // roundOptions returns the options of every command that reads readings.
 func (r *rounds) roundOptions(of *reading) []manual.Option {
 	r.each = eachRound{parsed[readings.Role]{form: "round", parse: parseEach}, of}
-	r.span = parsed[time.Duration]{form: "T", parse: parseSpan}
 	return []manual.Option{
 		{Group: groupRounds, Name: "each", Value: &r.each, Default: "all readings make one surface",
 			Text: "run the command for every round of the column round, with {round} in the names of outputs; a round that fails does not stop the others"},
-		{Group: groupRounds, Name: "round-span", Value: &r.span, Default: "not looked at",
-			Text: "warn if the readings used lie further apart in time than this, as in 12h or 3d"},
 	}
 }
 
@@ -50,21 +47,6 @@ func parseEach(text string) (readings.Role, error) {
 		return 0, fmt.Errorf("round")
 	}
 	return readings.Round, nil
-}
-
-// parseSpan reads hours, minutes and days: 12h, 90min, 3d.
-func parseSpan(text string) (time.Duration, error) {
-	for _, unit := range []struct {
-		name string
-		of   time.Duration
-	}{{"min", time.Minute}, {"h", time.Hour}, {"d", 24 * time.Hour}} {
-		if digits, ok := strings.CutSuffix(text, unit.name); ok {
-			if n, err := strconv.ParseFloat(strings.TrimSpace(digits), 64); err == nil && n > 0 && n < 1e5 {
-				return time.Duration(n * float64(unit.of)), nil
-			}
-		}
-	}
-	return 0, fmt.Errorf("a time such as 12h, 90min or 3d")
 }
 
 // ofRound returns the readings of one round.
@@ -87,30 +69,14 @@ func ofRound(parts []readings.Part, name string) (*readings.Set, error) {
 	return nil, status.With(status.WrongData, fmt.Errorf("--round %q: no reading has it: expected one of %s", name, strings.Join(names, ", ")), "the names are those of the column round")
 }
 
-// timeForms are the ways of writing a time that are understood: ISO 8601, with
-// blanks in place of the T, and without a time of day.
-var timeForms = []string{
-	time.RFC3339, "2006-01-02T15:04:05", "2006-01-02T15:04", "2006-01-02 15:04:05", "2006-01-02 15:04", "2006-01-02",
-}
-
-func parseTime(text string) (time.Time, bool) {
-	for _, form := range timeForms {
-		if t, err := time.Parse(form, text); err == nil {
-			return t, true
-		}
-	}
-	return time.Time{}, false
-}
-
 // timesOf returns the first and the last time among the used readings, as they are
-// written, and how many cannot be read as a time.
-func timesOf(set *readings.Set) (first, last string, span time.Duration, unread int) {
+// written.
+func timesOf(set *readings.Set) (first, last string) {
 	var from, to time.Time
 	for i := range set.Len() {
 		text := set.Text(readings.Time, i)
-		t, ok := parseTime(strings.TrimSpace(text))
+		t, ok := wells.ParseTime(text)
 		if !ok {
-			unread++
 			continue
 		}
 		if first == "" || t.Before(from) || t.Equal(from) && text < first {
@@ -120,25 +86,7 @@ func timesOf(set *readings.Set) (first, last string, span time.Duration, unread 
 			last, to = text, t
 		}
 	}
-	return first, last, to.Sub(from), unread
-}
-
-// checkSpan warns of a round that is spread over too long a time.
-func (p *program) checkSpan(r *reading, set *readings.Set) error {
-	if r.span.text == "" {
-		return nil
-	}
-	if !set.Has(readings.Time) {
-		return status.With(status.WrongData, fmt.Errorf("--round-span %s: no column for time: expected one", r.span.text), "say which column it is, as in --columns time=Date")
-	}
-	first, last, span, unread := timesOf(set)
-	if unread > 0 {
-		p.report.Warn("time-unread", fmt.Sprintf("%s without a time that can be read: expected one such as 2024-03-12T08:10", counted(unread, "reading")), "readings", unread)
-	}
-	if span > r.span.value {
-		p.report.Warn("round-span", fmt.Sprintf("readings from %s to %s: more than %s apart; levels may have changed in between", first, last, r.span.text), "first", first, "last", last)
-	}
-	return nil
+	return first, last
 }
 
 // eachOf returns how a command reads its readings, if it is to run for every round.

@@ -39,7 +39,7 @@ func (p *program) remember(r *reading, l *loaded) {
 		f.IDs = ids
 	}
 	if set.Has(readings.Time) {
-		f.First, f.Last, _, _ = timesOf(set)
+		f.First, f.Last = timesOf(set)
 	}
 	if r.edges.maxEdge.IsSet() {
 		f.LongestEdge = r.edges.maxEdge.String()
