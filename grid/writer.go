@@ -16,7 +16,6 @@ type writer struct {
 	values []float64 // of the block, south row first
 
 	t     triangulate.Triangle
-	ready bool // plane is that of t
 	plane interp.Plane
 	fixed float64 // the triangle's slope, azimuth or shade
 	runs  []interp.Run

@@ -152,7 +152,7 @@ type matrix [2][2]*big.Rat
 type sums struct {
 	from, to [2]*big.Rat
 	own      matrix // own[j][k]: of coordinates j and k in the first grid
-	cross  matrix // cross[j][k]: of coordinate j in the second and k in the first
+	cross    matrix // cross[j][k]: of coordinate j in the second and k in the first
 }
 
 // centre forms the sums.
