@@ -25,6 +25,7 @@ type finding struct {
 	Constraints constraintCounts `json:"constraints"`
 	Limits      limitsFound      `json:"limits"`
 	Quality     qualityFound     `json:"quality"`
+	Suspects    *suspectsFound   `json:"suspects"`
 	Suggest     suggestions      `json:"suggest"`
 	Warnings    []report.Warning `json:"warnings"`
 
@@ -171,6 +172,7 @@ func (f *finding) writeText(w io.Writer, l *loaded, r *reading) error {
 	}
 	writeCodes(line, l.set)
 	f.writeEdges(line)
+	f.Suspects.writeText(line)
 	for i, v := range []struct {
 		option string
 		suggested

@@ -1,7 +1,8 @@
 // Package suspect looks for blunders among readings: those that lie off what the others
 // around them make one expect. It names them; it changes nothing.
 //
-//	res, err := suspect.Find(ctx, surface, suspect.Options{ScaleLeast: 0.001})
+//	left, err := surface.LeaveOneOut(ctx, 0)
+//	res, err := suspect.Find(ctx, surface, left, suspect.Options{ScaleLeast: 0.001})
 //	for _, s := range res.Suspects {
 //		fmt.Println(s.Vertex, s.Residual, s.Off)
 //	}

@@ -48,13 +48,16 @@ type Suspect struct {
 
 // Result is what Find found.
 type Result struct {
-	// Left has the residuals of all vertices before any was taken out.
-	Left *interp.LeftOut
 	// Scale is the scale of the residuals about every vertex, suspects left out: NaN
 	// where there are too few.
 	Scale []float64
+	// Judged counts the vertices that have one.
+	Judged int
 	// Suspects are those that lie furthest off first.
 	Suspects []Suspect
+	// Together are readings that were off in groups of neighbours, to one side: steps
+	// and edges of the ground where no lines are, or runs. They are no suspects.
+	Together []triangulate.Vertex
 	// Runs are shots in succession moved by one amount, as they come in the sequence.
 	Runs []Run
 	// Groups are those whose shots lie off, by number.
@@ -62,32 +65,32 @@ type Result struct {
 }
 
 // Find looks for readings that lie off what the others expect; see the package comment
-// for how. The result depends on the surface and on Factor and ScaleLeast alone.
+// for how. left is what s.LeaveOneOut returned: Find takes it over and scribbles on it. The
+// result depends on the surface and on Factor and ScaleLeast alone, runs and groups also on
+// what names them.
 //
-// Time as for LeaveOneOut and several times more; 48 bytes a vertex while it works, and
+// Time several times that of LeaveOneOut; beside left 16 bytes a vertex, 24 with lines, and
 // 53 more where there are suspects. It returns ctx.Err() if ctx ends first.
-func Find(ctx context.Context, s *interp.Surface, opt Options) (*Result, error) {
+func Find(ctx context.Context, s *interp.Surface, left *interp.LeftOut, opt Options) (*Result, error) {
 	if opt.Factor == 0 {
 		opt.Factor = FactorUsual
 	}
 	if opt.Workers <= 0 {
 		opt.Workers = runtime.GOMAXPROCS(0)
 	}
-	left, err := s.LeaveOneOut(ctx, opt.Workers)
-	if err != nil {
-		return nil, err
-	}
 	f, err := newFinder(s, left, opt)
 	if err != nil {
 		return nil, err
 	}
-	if err := f.judgeAll(ctx); err != nil {
+	if err := f.settle(ctx); err != nil {
 		return nil, err
 	}
-	if err := f.takeOut(ctx); err != nil {
-		return nil, err
+	res := &Result{Scale: f.scale, Suspects: f.confirm(), Together: f.together()}
+	for _, scale := range f.scale {
+		if scale == scale {
+			res.Judged++
+		}
 	}
-	res := &Result{Left: left, Scale: f.scale, Suspects: f.confirm()}
 	if res.Runs, err = f.runs(ctx, opt.Sequence); err != nil {
 		return nil, err
 	}
@@ -108,18 +111,27 @@ type finder struct {
 	work *interp.Surface
 	z    []float64
 
-	miss  []miss // of the star of every vertex; NaN of those that are out
-	lines lines
-	scale []float64
-	off   []float64 // in scales
-	out   []triangulate.Vertex
+	residual []float64 // of the star of every vertex; NaN of those that are out
+	reach    []float64 // likewise
+	scale    []float64
+	off      []float64 // in scales
+	lines    lines
+	out      []triangulate.Vertex
+	pinned   map[triangulate.Vertex]bool // what stays in
+	// was is the residual of those that are out when they went, changed who was judged
+	// anew since.
+	was     map[triangulate.Vertex]float64
+	changed map[triangulate.Vertex]bool
 
 	near *surroundings // in what is left
 }
 
 func newFinder(s *interp.Surface, left *interp.LeftOut, opt Options) (*finder, error) {
 	n := len(left.Expected)
-	f := &finder{opt: opt, own: s.Z(), z: slices.Clone(s.Z()), miss: make([]miss, n), scale: make([]float64, n), off: make([]float64, n)}
+	f := &finder{opt: opt, own: s.Z(), z: s.Z(), residual: left.Expected, reach: left.Reach, scale: make([]float64, n), off: make([]float64, n)}
+	if s.Mesh().HasConstraints() {
+		f.z = slices.Clone(f.z)
+	}
 	var err error
 	if f.work, err = interp.New(s.Mesh(), f.z); err != nil {
 		return nil, err
@@ -127,9 +139,10 @@ func newFinder(s *interp.Surface, left *interp.LeftOut, opt Options) (*finder, e
 	for _, z := range f.z {
 		f.opt.ScaleLeast = max(f.opt.ScaleLeast, math.Abs(z)/(1<<48))
 	}
-	for v := range f.miss {
-		f.miss[v] = miss{left.Residual(triangulate.Vertex(v)), left.Reach[v]}
+	for v, expected := range left.Expected {
+		f.residual[v] = f.own[v] - expected
 	}
+	f.pinned, f.was, f.changed = map[triangulate.Vertex]bool{}, map[triangulate.Vertex]float64{}, map[triangulate.Vertex]bool{}
 	f.near = newSurroundings(s.Mesh())
 	f.lines = linesOf(s.Mesh())
 	for v := range f.lines {
@@ -166,10 +179,13 @@ func (f *finder) judgeAll(ctx context.Context) error {
 // judge sets scale and off of v.
 func (f *finder) judge(v triangulate.Vertex, near *surroundings) {
 	f.scale[v], f.off[v] = math.NaN(), 0
-	if m := f.miss[v]; m.residual == m.residual {
+	if m := f.missStar(v); m.residual == m.residual {
 		f.scale[v], f.off[v] = f.compare(v, m, near)
 	}
 }
+
+// missStar is how far v lies off by its star.
+func (f *finder) missStar(v triangulate.Vertex) miss { return miss{f.residual[v], f.reach[v]} }
 
 // compare tells how far off v is that misses by m; a vertex of a line by its star or by
 // its line, whichever lets it pass.
@@ -181,12 +197,12 @@ func (f *finder) compare(v triangulate.Vertex, m miss, near *surroundings) (scal
 	}
 	near.gather(v, depths, fewest, func(u triangulate.Vertex) bool {
 		_, alike := f.lines[u]
-		return alike == lined && f.miss[u].residual == f.miss[u].residual
+		return alike == lined && f.residual[u] == f.residual[u]
 	})
 	if len(near.about) < fewest {
-		near.gather(v, depths, fewest, func(u triangulate.Vertex) bool { return f.miss[u].residual == f.miss[u].residual })
+		near.gather(v, depths, fewest, func(u triangulate.Vertex) bool { return f.residual[u] == f.residual[u] })
 	}
-	scale, off = f.against(near, func(u triangulate.Vertex) miss { return f.miss[u] }, m)
+	scale, off = f.against(near, f.missStar, m)
 	if !lined || !l.joins() {
 		return scale, off
 	}
@@ -194,7 +210,7 @@ func (f *finder) compare(v triangulate.Vertex, m miss, near *surroundings) (scal
 		if l, ok := f.lines[u]; ok && l.joins() {
 			return l.miss
 		}
-		return f.miss[u]
+		return f.missStar(u)
 	}, l.miss)
 	if offAlong < off || off != off {
 		return along, offAlong
@@ -219,7 +235,7 @@ func (f *finder) against(near *surroundings, of func(triangulate.Vertex) miss, m
 func (f *finder) takeOut(ctx context.Context) error {
 	q := &queue{f: f}
 	for v, off := range f.off {
-		if off > f.opt.Factor {
+		if off > f.opt.Factor && !f.pinned[triangulate.Vertex(v)] {
 			q.list = append(q.list, entry{triangulate.Vertex(v), off})
 		}
 	}
@@ -237,10 +253,11 @@ func (f *finder) takeOut(ctx context.Context) error {
 		f.drop(e.v)
 		for _, u := range link {
 			f.expect(u)
+			f.changed[u] = true
 		}
 		for _, u := range link {
 			f.judge(u, f.near)
-			if f.off[u] > f.opt.Factor {
+			if f.off[u] > f.opt.Factor && !f.pinned[u] {
 				heap.Push(q, entry{u, f.off[u]})
 			}
 		}
@@ -257,18 +274,19 @@ func (f *finder) drop(v triangulate.Vertex) {
 	} else {
 		f.z[v] = f.work.ValueOf(f.near.r.Without(v), f.near.pos[v])
 	}
-	f.miss[v] = miss{math.NaN(), math.NaN()}
+	f.was[v] = f.residual[v]
+	f.residual[v] = math.NaN()
 	f.off[v] = 0
 	f.out = append(f.out, v)
 }
 
 // expect predicts v anew from what is left.
 func (f *finder) expect(v triangulate.Vertex) {
-	if f.miss[v].residual != f.miss[v].residual {
+	if f.residual[v] != f.residual[v] {
 		return // out, or on the outline
 	}
 	left := f.near.r.Without(v)
-	f.miss[v] = miss{f.own[v] - f.work.ValueOf(left, f.near.pos[v]), f.work.Reach(left, f.near.pos[v])}
+	f.residual[v], f.reach[v] = f.own[v]-f.work.ValueOf(left, f.near.pos[v]), f.work.Reach(left, f.near.pos[v])
 	if _, lined := f.lines[v]; lined {
 		f.missLine(v)
 	}

@@ -46,7 +46,7 @@ func (f *finder) groups(of []int32, found []Suspect) (off []Group) {
 			continue
 		}
 		all++
-		add(v, f.miss[v].residual, f.scale[v]) // NaN of those taken out
+		add(v, f.residual[v], f.scale[v]) // NaN of those taken out
 	}
 	for _, s := range found {
 		if _, lined := f.lines[s.Vertex]; !lined {

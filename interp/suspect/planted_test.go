@@ -127,6 +127,19 @@ func (g *ground) move(i int, by float64) {
 	}
 }
 
+func findIn(t testing.TB, s *interp.Surface, opt Options) *Result {
+	t.Helper()
+	left, err := s.LeaveOneOut(context.Background(), opt.Workers)
+	if err != nil {
+		t.Fatal(err)
+	}
+	res, err := Find(context.Background(), s, left, opt)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return res
+}
+
 // localScale is 1.4826 times the median size of the leave-one-out residuals of the 25
 // vertices nearest to v.
 func localScale(s *interp.Surface, l *interp.LeftOut, v triangulate.Vertex) float64 {
@@ -173,10 +186,7 @@ func TestT13(t *testing.T) {
 	g.z[middle] += 5
 	s := g.surface(t)
 	for _, least := range []float64{0, 0.001} {
-		res, err := Find(context.Background(), s, Options{ScaleLeast: least})
-		if err != nil {
-			t.Fatal(err)
-		}
+		res := findIn(t, s, Options{ScaleLeast: least})
 		if len(res.Suspects) == 0 || res.Suspects[0].Vertex != s.Mesh().VertexOf(middle) || math.Abs(res.Suspects[0].Residual-5) > 1e-9 {
 			t.Errorf("least scale %v: suspects %+v, want the reading that is 5 too high first", least, res.Suspects)
 		}
@@ -200,10 +210,7 @@ func TestGroups(t *testing.T) {
 		}
 	}
 	s = g.surface(t)
-	res, err := Find(context.Background(), s, Options{ScaleLeast: 0.001, Group: group})
-	if err != nil {
-		t.Fatal(err)
-	}
+	res := findIn(t, s, Options{ScaleLeast: 0.001, Group: group})
 	if len(res.Groups) != 1 || res.Groups[0].Group != 1 || math.Abs(res.Groups[0].Amount-1.1) > 0.1 {
 		t.Errorf("groups %+v, want group 1 about 1.1 up", res.Groups)
 	}
@@ -222,10 +229,7 @@ func TestFindIsTheSame(t *testing.T) {
 	}
 	find := func(g *ground, workers int) (all []seen) {
 		s := g.surface(t)
-		res, err := Find(context.Background(), s, Options{Workers: workers})
-		if err != nil {
-			t.Fatal(err)
-		}
+		res := findIn(t, s, Options{Workers: workers})
 		for _, x := range res.Suspects {
 			all = append(all, seen{s.Mesh().Position(x.Vertex), x.Expected, x.Residual, x.Scale, x.Off})
 		}
@@ -275,10 +279,7 @@ func TestPlanted(t *testing.T) {
 				g.move(int(inputs[v]), by)
 			}
 			s = g.surface(t)
-			res, err := Find(context.Background(), s, Options{ScaleLeast: 0.001})
-			if err != nil {
-				t.Fatal(err)
-			}
+			res := findIn(t, s, Options{ScaleLeast: 0.001})
 			hit := map[triangulate.Vertex]bool{}
 			for _, x := range res.Suspects {
 				if _, ok := bad[x.Vertex]; ok {

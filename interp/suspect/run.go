@@ -18,6 +18,15 @@ type Run struct {
 	Amount, Spread float64
 	// Scale is what shots in a row miss by about it.
 	Scale float64
+	// Shots are those of the run that can be expected.
+	Shots []Shot
+}
+
+// A Shot of a run, and how far it lies above what is expected without the shots about it
+// in the sequence.
+type Shot struct {
+	Vertex   triangulate.Vertex
+	Residual float64
 }
 
 // How runs are looked for.
@@ -56,6 +65,7 @@ func (f *finder) runs(ctx context.Context, sequence []triangulate.Vertex) ([]Run
 	if err != nil {
 		return nil, err
 	}
+	residual := slices.Clone(x)
 	scale := centre(x, reach, f.opt.ScaleLeast)
 	var found []Run
 	for first := 0; first < len(x); first++ {
@@ -75,7 +85,11 @@ func (f *finder) runs(ctx context.Context, sequence []triangulate.Vertex) ([]Run
 			continue
 		}
 		if a, b, amount, spread, ok := settle(x, scale, first, last); ok {
-			found = append(found, Run{at[a], at[b], amount, spread, scale[first]})
+			run := Run{First: at[a], Last: at[b], Amount: amount, Spread: spread, Scale: scale[first]}
+			for i := a; i <= b; i++ {
+				run.Shots = append(run.Shots, Shot{vs[i], residual[i]})
+			}
+			found = append(found, run)
 			last = max(last, b)
 		}
 		first = last

@@ -1,7 +1,6 @@
 package suspect
 
 import (
-	"context"
 	"math"
 	"math/rand/v2"
 	"testing"
@@ -83,10 +82,7 @@ func TestRuns(t *testing.T) {
 					}
 					s = g.surface(t)
 				}
-				res, err := Find(context.Background(), s, Options{ScaleLeast: 0.001, Sequence: sequenceOf(s, kind.n)})
-				if err != nil {
-					t.Fatal(err)
-				}
+				res := findIn(t, s, Options{ScaleLeast: 0.001, Sequence: sequenceOf(s, kind.n)})
 				if trial == 0 {
 					falseClean += len(res.Runs)
 					continue

@@ -85,10 +85,14 @@ func Slips(z, expected, tolerance float64, decimals int) (found []Slip) {
 	}
 	try(z*0.3048, "feet for metres")
 	try(z/0.3048, "metres for feet")
-	for _, section := range RodSections {
-		try(z-section, "a rod %v longer than noted", section)
-		try(z+section, "a rod %v shorter than noted", section)
+	section := RodSections[0] // the one that comes nearest
+	for _, s := range RodSections {
+		if off := math.Abs(z - expected); math.Abs(off-s) < math.Abs(off-section) {
+			section = s
+		}
 	}
+	try(z-section, "a rod %v longer than noted", section)
+	try(z+section, "a rod %v shorter than noted", section)
 	for i := range digits {
 		for d := byte('0'); d <= '9'; d++ {
 			would := put(digits[:i] + string(d) + digits[i+1:])
