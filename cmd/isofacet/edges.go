@@ -35,6 +35,7 @@ type edges struct {
 
 	table *lines.CodeTable // once it is read
 	codes *lines.Codes
+	sets  map[string]*lines.Set // of files that are read
 }
 
 const groupEdges = "Lines and limits"
@@ -175,6 +176,11 @@ func (p *program) readLines(ctx context.Context, names []string, r *reading, kin
 	if len(names) == 0 {
 		return &lines.Set{}, nil
 	}
+	// Several surfaces of one run have the same lines.
+	key := kind + " " + strings.Join(names, "\x00")
+	if set := r.edges.sets[key]; set != nil {
+		return set, nil
+	}
 	var sources []readings.Source
 	for _, name := range names {
 		in, err := p.input(name)
@@ -189,6 +195,10 @@ func (p *program) readLines(ctx context.Context, names []string, r *reading, kin
 	}
 	r.measureLines(set)
 	p.tellLines(strings.Join(names, ", "), kind, set)
+	if r.edges.sets == nil {
+		r.edges.sets = map[string]*lines.Set{}
+	}
+	r.edges.sets[key] = set
 	return set, nil
 }
 

@@ -34,6 +34,7 @@ func (p *program) commands() []*cobra.Command {
 		newAccuracy(p),
 		newProfile(p),
 		newRun(p),
+		newFlow(p),
 		newSamples(p),
 		newCompletion(p),
 		newVersion(p),

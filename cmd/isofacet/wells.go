@@ -25,6 +25,8 @@ type depths struct {
 	specificGravity option.Number
 	depthFrom       option.Number
 	round           typed
+
+	table *wells.Table // once it is read
 }
 
 // depthOptions returns the options of every command that reads readings.
@@ -79,6 +81,7 @@ func (p *program) reduce(r *reading, opt *readings.Options) error {
 		if reducer.Table, err = wells.ReadTable(in.Source, declared); err != nil {
 			return &besideError{err, "wells-columns"}
 		}
+		d.table = reducer.Table
 		in.file.Layout = reducer.Table.Layout.String()
 		p.report.Note(fmt.Sprintf("wells: %s: %s; %s", in.Name, counted(reducer.Table.Len(), "well"), in.file.Layout), "file", in.Name, "wells", reducer.Table.Len())
 		for _, w := range reducer.Table.Warnings {
@@ -97,6 +100,14 @@ func (p *program) reduce(r *reading, opt *readings.Options) error {
 		}
 	}
 	return nil
+}
+
+// screenMiddle is the elevation of the middle of a well's screen, if it is known.
+func (d *depths) screenMiddle(id string) (float64, bool) {
+	if d.table == nil {
+		return 0, false
+	}
+	return d.table.ScreenMiddle(id)
 }
 
 // typedNumber is a number of the command line, for exact arithmetic.

@@ -115,6 +115,12 @@ func (m *Map) samples(top float64) {
 	if m.hasRim {
 		sample(`stroke="`+rimColour+`" stroke-width="`+mm(rimWidth)+`" stroke-dasharray="3 .8 .5 .8"`, "edge of the surface")
 	}
+	if m.hasTrail {
+		sample(`stroke="`+trailInk+`" stroke-width="`+mm(trailWidth)+`"`, "flow line")
+	}
+	if m.hasArrow {
+		sample(`stroke="`+indexInk+`" stroke-width=".25"`, "direction of flow")
+	}
 	if m.report.Dots > 0 {
 		y := top + 2.2 + float64(float64(row)*legendRow)
 		m.put(`<circle cx="`, mm(x+6), `" cy="`, mm(y), `" r="`, mm(max(m.dotRadius, dotMost/2)), `" fill="`, dotColour, "\"/>\n")

@@ -22,6 +22,10 @@ type MapOptions struct {
 	IndexEvery int
 	// Bands are the texts of the levels between bands, rising; empty if there are no bands.
 	Bands []string
+	// Rows is how many kinds of lines and marks the legend has room for; 0 means 4.
+	Rows int
+	// Notes are written below the legend.
+	Notes []string
 	// WidthMost and HeightMost bound the frame in millimetres; 0 means 180 and 220. Smaller ones than 20 count as 20.
 	WidthMost, HeightMost float64
 }
@@ -96,6 +100,8 @@ type Map struct {
 	hasIndex  bool
 	hasLines  bool
 	hasRim    bool
+	hasTrail  bool
+	hasArrow  bool
 	dots      map[spot]bool
 	dotRadius float64      // of the last readings
 	places    [][2]float64 // scratch
@@ -134,7 +140,7 @@ func (m *Map) layout() {
 	}
 	f.top += 1.3 * letters // the upper right corner
 	m.notes = nil
-	for _, note := range []string{valueNote(m.opt.Labels), placeNote(m.opt.Labels)} {
+	for _, note := range append([]string{valueNote(m.opt.Labels), placeNote(m.opt.Labels)}, m.opt.Notes...) {
 		m.notes = append(m.notes, wrap(note, letters, m.width-2*marginSide)...)
 	}
 	m.height = m.legendTop() + m.legendHeight() + float64(float64(len(m.notes))*1.4*letters) + marginFoot
@@ -144,7 +150,7 @@ func (m *Map) layout() {
 func (m *Map) legendTop() float64 { return m.frame.top + m.frame.height + 1.3*letters + 5 }
 
 func (m *Map) legendHeight() float64 {
-	h := 4*legendRow + 2
+	h := float64(max(4, m.opt.Rows))*legendRow + 2
 	if len(m.opt.Bands) > 0 {
 		h += 13
 	}

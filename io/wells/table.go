@@ -3,6 +3,7 @@ package wells
 import (
 	"errors"
 	"fmt"
+	"math/big"
 	"slices"
 	"strings"
 	"time"
@@ -114,6 +115,21 @@ func before(a, b state) int {
 
 // Len returns how many wells there are.
 func (t *Table) Len() int { return len(t.wells) }
+
+// ScreenMiddle returns the elevation of the middle of a well's screen, by its latest row, and
+// whether both ends are known.
+func (t *Table) ScreenMiddle(id string) (float64, bool) {
+	w := t.wells[id]
+	if w == nil {
+		return 0, false
+	}
+	last := &w.rows[len(w.rows)-1]
+	top, bottom := last.numbers[slot(readings.ScreenTop)], last.numbers[slot(readings.ScreenBottom)]
+	if !top.known() || !bottom.known() {
+		return 0, false
+	}
+	return top.plus(bottom).times(value{big.NewRat(1, 2), 0}).float(), true
+}
 
 // valid returns the number of the row that counts at a time, -1 if none does yet.
 func (w *well) valid(when time.Time) int {
