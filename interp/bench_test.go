@@ -2,15 +2,13 @@ package interp
 
 import (
 	"context"
-	"flag"
+	"os"
 	"testing"
 
 	"github.com/paulmach/orb"
 
 	"isofacet/triangulate/pointsets"
 )
-
-var huge = flag.Bool("huge", false, "benchmark 1e7 as well")
 
 // benchSurface is a surface over n points and n places in its bounding box.
 func benchSurface(b *testing.B, d pointsets.Distribution, n int) (*Surface, []orb.Point) {
@@ -29,7 +27,7 @@ func benchSurface(b *testing.B, d pointsets.Distribution, n int) (*Surface, []or
 
 func onAll(b *testing.B, run func(b *testing.B, s *Surface, places []orb.Point)) {
 	for _, d := range pointsets.All {
-		for _, n := range pointsets.Sizes(*huge) {
+		for _, n := range pointsets.Sizes(os.Getenv("ISOFACET_HUGE") != "") {
 			b.Run(d.Name+"/"+pointsets.SizeName(n), func(b *testing.B) {
 				s, places := benchSurface(b, d, n)
 				run(b, s, places)

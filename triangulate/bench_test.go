@@ -20,10 +20,10 @@ import (
 	"isofacet/triangulate/pointsets"
 )
 
-// Benchmarks run at 1e5 and 1e6 points, at 1e7 as well if ISOFACET_BENCH_LARGE is
+// Benchmarks run at 1e5 and 1e6 points, at 1e7 as well if ISOFACET_HUGE is
 // set. Each stands beside a floor: something trivial on the same points.
 
-func benchSizes() []int { return pointsets.Sizes(os.Getenv("ISOFACET_BENCH_LARGE") != "") }
+func benchSizes() []int { return pointsets.Sizes(os.Getenv("ISOFACET_HUGE") != "") }
 
 // rate reports how many of n things an operation does in a second.
 func rate(b *testing.B, n int, unit string) {
