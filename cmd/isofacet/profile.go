@@ -48,6 +48,15 @@ isofacet profile sample:gravel-pit/shots.csv --along "431250,5621450 431400,5621
 isofacet profile sample:gravel-pit/shots.csv --along sample:gravel-pit/lines/breaklines.csv --out along.geojson
 isofacet profile sample:gravel-pit/shots.csv --along "431250,5621450 431400,5621600" --sections 25 --left 30 --right 30 --out sections=sections.csv`
 
+// What options of lines to follow mean, in every command.
+const (
+	alongText  = "the line: a file of lines, or its places in quotes"
+	acrossText = "distance of sections square to the line of --along"
+	leftText   = "how far sections reach to the left of the line"
+	rightText  = "how far sections reach to the right of the line"
+	uncertain  = "standard uncertainty of a height, or of a head"
+)
+
 // The parts of profiles.
 const (
 	partProfile  = "profile"
@@ -72,11 +81,11 @@ func newProfile(p *program) *cobra.Command {
 	const group = "Lines to follow"
 	fs := cmd.Flags()
 	manual.Add(fs,
-		manual.Option{Group: group, Name: "along", Value: &c.along, Text: "the line: a file of lines, or its places in quotes"},
+		manual.Option{Group: group, Name: "along", Value: &c.along, Text: alongText},
 		manual.Option{Group: group, Name: "station-from", Value: &c.stationFrom, Default: "0", Text: "station of the line's beginning"},
-		manual.Option{Group: group, Name: "sections", Value: &c.sections, Default: "none", Text: "cut across the line at its ends and at every whole multiple of this station"},
-		manual.Option{Group: group, Name: "left", Value: &c.left, Default: "0", Text: "how far a section goes to the left"},
-		manual.Option{Group: group, Name: "right", Value: &c.right, Default: "0", Text: "how far a section goes to the right"},
+		manual.Option{Group: group, Name: "sections", Value: &c.sections, Default: "none", Text: acrossText},
+		manual.Option{Group: group, Name: "left", Value: &c.left, Default: "0", Text: leftText},
+		manual.Option{Group: group, Name: "right", Value: &c.right, Default: "0", Text: rightText},
 		manual.Option{Group: group, Name: "at", Value: &c.at, Repeatable: true, Text: "a place, or a file of places, - for standard input"},
 		manual.Option{Group: group, Name: "at-columns", Value: &c.atColumns, Default: "the header's words",
 			Text: "what the columns of the file of places hold, like --columns"},

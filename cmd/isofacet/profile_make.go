@@ -181,7 +181,7 @@ func (j *profiling) station(v float64) number { return number{v, j.xy} }
 func (j *profiling) announceTracing() error {
 	n := 0.0
 	for _, s := range j.surfaces {
-		n += 3 * math.Sqrt(float64(s.l.surface.Mesh().NumTriangles()))
+		n += float64(3 * math.Sqrt(float64(s.l.surface.Mesh().NumTriangles())))
 	}
 	legs := len(j.cuts)
 	for _, f := range j.follow {

@@ -123,7 +123,7 @@ func (p *Plane) settleSigma(sigma float64) {
 
 // across is the root of the smaller eigenvalue over the larger one.
 func across(uu, uv, vv, det float64) float64 {
-	half := (uu + vv) / 2
+	half := float64((uu + vv) / 2)
 	d := (uu - vv) / 2
 	large := half + math.Sqrt(float64(d*d)+float64(uv*uv))
 	return math.Sqrt(det) / large // the product of the two is det

@@ -150,7 +150,7 @@ func (m *Map) layout() {
 func (m *Map) legendTop() float64 { return m.frame.top + m.frame.height + 1.3*letters + 5 }
 
 func (m *Map) legendHeight() float64 {
-	h := float64(max(4, m.opt.Rows))*legendRow + 2
+	h := float64(float64(max(4, m.opt.Rows))*legendRow) + 2
 	if len(m.opt.Bands) > 0 {
 		h += 13
 	}

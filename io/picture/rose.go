@@ -117,7 +117,7 @@ func faint(is bool) string {
 // rings draws round gradients and the eight winds.
 func (c *rose) rings() {
 	for _, n := range multiples(c.step, c.step.Float64(), c.full*(1+1e-9), 20) {
-		r := float64(n.Float64()/c.full) * roseRadius
+		r := float64(n.Float64() / c.full * roseRadius)
 		c.put(`<circle cx="`, mm(c.x), `" cy="`, mm(c.y), `" r="`, mm(r), `" stroke="`, gridColour, `" stroke-width=".2"/>`, "\n")
 		c.words(c.x+1, c.y-r+letters, levelSize, "start", n.String())
 	}
@@ -133,7 +133,7 @@ var winds = [4][2]float64{{0, -1}, {1, 0}, {0, 1}, {-1, 0}}
 // at is the place on the paper at an azimuth, as far from the middle as a gradient says.
 func (c *rose) at(azimuth, size float64) (x, y float64) {
 	s, k := turn(azimuth)
-	r := float64(size/c.full) * roseRadius
+	r := float64(size / c.full * roseRadius)
 	return c.x + float64(r*s), c.y - float64(r*k)
 }
 
