@@ -33,6 +33,7 @@ func (p *program) commands() []*cobra.Command {
 		newVolume(p),
 		newAccuracy(p),
 		newProfile(p),
+		newChange(p),
 		newRun(p),
 		newFlow(p),
 		newSamples(p),

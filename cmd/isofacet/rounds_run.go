@@ -30,6 +30,8 @@ func (p *program) forEach(cmd *cobra.Command) {
 		switch {
 		case !ok:
 			return once(cmd, files)
+		case cmd.Flags().Lookup("from") != nil:
+			return status.Usage(errTwoSurfaces, "isofacet change --from round=A --to round=B compares two rounds of a file")
 		case r.round.set:
 			return status.Usage(errEachAndRound, "leave one of them out")
 		case p.step != nil:

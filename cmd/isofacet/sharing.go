@@ -67,8 +67,14 @@ type sharedSurface struct {
 
 // surface returns the surface that a step asks for, made by the first who does.
 func (w *sharedWork) surface(ctx context.Context, p *program, r *reading, list []*input) (*loaded, error) {
-	key := p.step.surface
+	key := inputNames(list) + p.step.options
 	w.mu.Lock()
+	if w.left[key] == 0 {
+		// Nobody else will ask for it, nor is it known when it may be let go: a
+		// command that makes several surfaces.
+		w.mu.Unlock()
+		return p.loadAlone(ctx, r, list)
+	}
 	s := w.surfaces[key]
 	if s == nil {
 		s = &sharedSurface{}
@@ -121,7 +127,7 @@ type sharedParts struct {
 // rounds returns the readings of all rounds of the inputs, read by the first who
 // asks.
 func (w *sharedWork) rounds(ctx context.Context, p *program, r *reading, list []*input) ([]readings.Part, error) {
-	key := partsKey(p.step.surface)
+	key := partsKey(inputNames(list) + p.step.options)
 	w.mu.Lock()
 	s := w.parts[key]
 	if s == nil {
@@ -187,11 +193,18 @@ func (p *program) surfaceOf(ctx context.Context, set *readings.Set, opt triangul
 	return interp.FromInputs(mesh, set.Z)
 }
 
-// surfaceKey names the surface that a command line asks for: its files and every
-// option that says how they are read.
-func surfaceKey(cmd *cobra.Command) string {
+// inputNames are the files of a surface, as they begin its key.
+func inputNames(list []*input) string {
 	var b strings.Builder
-	b.WriteString(strings.Join(cmd.Flags().Args(), "\x00"))
+	for _, in := range list {
+		b.WriteString(in.file.Name + "\x00")
+	}
+	return b.String()
+}
+
+// readingKey is every option of a command line that says how readings are read.
+func readingKey(cmd *cobra.Command) string {
+	var b strings.Builder
 	for _, name := range readingNames() {
 		if f := cmd.Flags().Lookup(name); f != nil && f.Changed && name != "each" {
 			b.WriteString("\x01" + name + "\x00" + f.Value.String())

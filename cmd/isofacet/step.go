@@ -46,6 +46,7 @@ type step struct {
 	cmd      *cobra.Command
 	writes   []string // outputs, - left out
 	reads    []string // inputs on the disk
+	options  string   // which of them say how readings are read
 	surface  string   // which surface it asks for
 	rounds   bool     // it is to be done for every round
 	standard bool     // it reads standard input or writes to standard output
@@ -99,7 +100,12 @@ func (p *program) beginStep(cmd *cobra.Command, w *writing) {
 	s := p.step
 	s.cmd = cmd
 	p.budget = s.budget
-	s.surface = surfaceKey(cmd)
+	s.options = readingKey(cmd)
+	names := cmd.Flags().Args()
+	if len(names) == 0 {
+		names = []string{"-"}
+	}
+	s.surface = strings.Join(names, "\x00") + "\x00" + s.options
 	p.startRecord(cmd, w)
 }
 
