@@ -28,7 +28,7 @@ func TestExamplesRun(t *testing.T) {
 			if strings.Contains(words.String(), "isofacet: ") {
 				t.Errorf("%s: says %s", strings.TrimSpace(line), &words)
 			}
-			if out.Len() == 0 && !strings.Contains(line, "--out ") && !strings.Contains(line, ">") && !strings.Contains(line, "--folder") {
+			if out.Len() == 0 && !strings.Contains(line, "--out ") && !strings.Contains(line, ">") && !strings.Contains(line, "--folder") && cmd.Name() != "run" {
 				t.Errorf("%s: writes nothing", strings.TrimSpace(line))
 			}
 		}

@@ -47,8 +47,8 @@ inputs are found to be the same. Outputs have to come to the same bytes; one tha
 does not is named, and its file is left as it is.`
 
 const runExample = `isofacet run sample:landfill/heads.toml
-isofacet run sample:landfill/heads.toml --task raster --record rasters.json > words.txt
-isofacet run --record-in rasters.json > words.txt
+isofacet run sample:landfill/heads.toml --task raster --record rasters.json
+isofacet run --record-in rasters.json
 isofacet run --schema job`
 
 // newRun is "isofacet run".

@@ -116,12 +116,13 @@ func (w *sharedWork) done(s *step) {
 }
 
 type sharedParts struct {
-	once  sync.Once
-	parts []readings.Part
-	err   error
-	said  said
-	edges edges // with the table of codes
-	by    *program
+	once   sync.Once
+	parts  []readings.Part
+	err    error
+	said   said
+	edges  edges  // with the table of codes
+	depths depths // with that of the wells
+	by     *program
 }
 
 // rounds returns the readings of all rounds of the inputs, read by the first who
@@ -141,11 +142,11 @@ func (w *sharedWork) rounds(ctx context.Context, p *program, r *reading, list []
 		r.apart = true
 		s.parts, s.err = p.readParts(ctx, r, list, readings.ByRole(readings.Round))
 		r.apart = false
-		s.said, s.edges = done(), r.edges
+		s.said, s.edges, s.depths = done(), r.edges, r.depths
 	})
 	if s.by != p {
 		p.repeat(&s.said, list)
-		r.edges.table, r.edges.codes = s.edges.table, s.edges.codes
+		r.edges.table, r.edges.codes, r.depths.table = s.edges.table, s.edges.codes, s.depths.table
 	}
 	return s.parts, s.err
 }
