@@ -1,13 +1,13 @@
 package main
 
 import (
-	"errors"
 	"slices"
 
 	"github.com/spf13/cobra"
 
 	"isofacet/cmd/internal/manual"
-	"isofacet/cmd/internal/status"
+	"isofacet/cmd/internal/option"
+	"isofacet/grid/decimal"
 	"isofacet/io/readings"
 )
 
@@ -20,6 +20,11 @@ Places are typed as --at X,Y, or read from one file, whose columns are found lik
 those of readings and written in front of the answers as they are. Formats by
 extension: .csv, and .geojson, where a place is a point with the value as height.
 
+--spots asks at the spot heights of a map instead: summits, pits and saddles, which
+are vertices inside the surface with all about them lower, higher, or both in turns.
+--spots-every D adds places at whole multiples of D. The rows begin with the kind of
+spot, the reading there, x and y.
+
 Where triangles meet, slope and azimuth are those of the triangle that owns the
 place: the one just east of it, or north where an edge runs east.
 
@@ -29,6 +34,7 @@ first, and the weight of each: the value is the sum of weight times reading.`
 
 const queryExample = `isofacet query sample:gravel-pit/shots.csv --at 431250,5621500 --at 431260,5621500
 isofacet query sample:gravel-pit/shots.csv --at sample:gravel-pit/checks.csv --out checked.csv
+isofacet query sample:gravel-pit/shots.csv --spots --spots-every 50 --out spots.geojson
 echo 431250 5621500 | isofacet query sample:gravel-pit/shots.csv --at - --explain`
 
 // newQuery is "isofacet query".
@@ -42,12 +48,16 @@ func newQuery(p *program) *cobra.Command {
 		RunE:    q.run,
 	}
 	q.atColumns = parsed[readings.Columns]{form: "LIST", parse: readings.ParseColumns}
+	zero := decimal.FromInt(0)
+	q.spotsEvery = option.Number{Least: &zero}
 	const group = "Places"
 	fs := cmd.Flags()
 	manual.Add(fs,
 		manual.Option{Group: group, Name: "at", Value: &q.at, Repeatable: true, Text: "a place, or a file of places, - for standard input"},
 		manual.Option{Group: group, Name: "at-columns", Value: &q.atColumns, Default: "the header's words",
 			Text: "what the columns of the file of places hold, like --columns"},
+		manual.Option{Group: group, Name: "spots", Value: &q.spots, Switch: true, Text: "ask at the summits, pits and saddles of the surface"},
+		manual.Option{Group: group, Name: "spots-every", Value: &q.spotsEvery, Default: "none", Text: "ask on a lattice of this distance, at its whole multiples in x and y"},
 		manual.Option{Group: group, Name: "explain", Value: &q.explain, Switch: true, Text: "add the triangle, its readings and their weights"})
 	manual.Add(fs, q.reading.readingOptions()...)
 	manual.Add(fs, q.writing.writingOptions([]string{"table"}, []string{formatCSV, formatGeoJSON})...)
@@ -60,7 +70,9 @@ type queryCommand struct {
 	reading
 	writing
 	asking
-	explain manual.Switch
+	explain    manual.Switch
+	spots      manual.Switch
+	spotsEvery option.Number
 }
 
 func (q *queryCommand) run(cmd *cobra.Command, files []string) error {
@@ -100,13 +112,18 @@ func (q *queryCommand) run(cmd *cobra.Command, files []string) error {
 		return err
 	}
 	q.tellSurface(l)
+	if q.wantsSpots() {
+		if places, err = q.spotPlaces(l); err != nil {
+			return err
+		}
+	}
 	return q.answer(cmd, list, l, places, out)
 }
 
 // check refuses what can be refused before anything is read.
 func (q *queryCommand) check(files []string) error {
-	if len(q.at.Places)+len(q.at.Files) == 0 {
-		return status.Usage(errors.New("--at is missing: expected a place X,Y or a file of places"), "as in --at 431250,5621500")
+	if err := q.checkSpots(); err != nil {
+		return err
 	}
 	return q.asking.check(len(files) == 0 || slices.Contains(files, "-"))
 }
