@@ -17,13 +17,15 @@ type Table struct {
 	missing map[string]string
 	rows    []tableRow
 	fieldOf []int // of a column, by role or by its number among those asked for
+	data    []byte
 	what    []string
 }
 
 type tableRow struct {
 	line   int
+	from   int // in data
 	fields []string
-	column []int // in characters, from 1
+	at     []int // where the fields stand in data
 }
 
 // maxTable bounds the size of such a file: it is kept in memory, and a person or an
@@ -95,8 +97,11 @@ func ReadWords(src Source, d Declared, words []Word) (*Table, error) {
 		if d.Delimiter != DetectDelimiter {
 			delimiter = byte(d.Delimiter)
 		}
-		header := take(b, 0, format{delimiter, s.format.comment}, 1)[0]
-		if found := t.find(header.fields, words); found > best {
+		header := take(b, 0, format{delimiter, s.format.comment}, 1)
+		if len(header) == 0 {
+			return nil, s.nothing() // delimiters alone
+		}
+		if found := t.find(header[0].fields, words); found > best {
 			best, s.format.delimiter = found, delimiter
 		}
 	}
@@ -119,9 +124,8 @@ func ReadWords(src Source, d Declared, words []Word) (*Table, error) {
 		t.decimal = byte(d.Decimal)
 	}
 	s.layout.HeaderLine, s.layout.Delimiter, s.layout.Decimal = s.line+1, Delimiter(s.format.delimiter), Decimal(t.decimal)
-	for i, name := range header.fields {
+	for _, name := range header.fields {
 		s.layout.Columns = append(s.layout.Columns, Column{Name: name})
-		_ = i
 	}
 	t.Layout = s.layout
 	return t, t.take(b[header.next:], s.line+countLines(b[:header.next]), s.format, len(header.fields))
@@ -146,11 +150,13 @@ func (t *Table) find(header []string, words []Word) (found int) {
 
 // take takes the rows apart. line is how many lines stand before b.
 func (t *Table) take(b []byte, line int, f format, width int) error {
+	t.data = b
 	bad := &BadLines{}
 	tok := tokens{format: f}
 	for p := 0; p < len(b); {
 		if f.isComment(b[p:]) {
 			p = behindLineEnd(b, lineEnd(b, p))
+			line++
 			continue
 		}
 		next := tok.record(b, p)
@@ -158,23 +164,21 @@ func (t *Table) take(b []byte, line int, f format, width int) error {
 		switch {
 		case tok.bad:
 			e := quoteTrouble(tok.quote)
-			l, column := position(b, 0, tok.quote.at)
+			l, column := position(b, p, tok.quote.at)
 			e.File, e.Line, e.Column = t.Name, line+l+1, column
 			bad.add(e)
 		case allEmpty(tok.fields):
 		case n < width || !allEmpty(tok.fields[width:]):
-			l, _ := position(b, 0, p)
-			bad.add(&PositionError{File: t.Name, Line: line + l + 1, Kind: FieldCount, What: fields(n), Expected: fmt.Sprintf("%d, as in the header", width)})
+			bad.add(&PositionError{File: t.Name, Line: line + 1, Kind: FieldCount, What: fields(n), Expected: fmt.Sprintf("%d, as in the header", width)})
 		default:
-			l, _ := position(b, 0, p)
-			r := tableRow{line: line + l + 1}
+			r := tableRow{line: line + 1, from: p}
 			for _, field := range tok.fields[:width] {
-				_, column := position(b, p, field.start)
-				r.fields, r.column = append(r.fields, string(trimSpaces(field.text))), append(r.column, column)
+				r.fields, r.at = append(r.fields, string(trimSpaces(field.text))), append(r.at, field.start)
 			}
 			t.rows = append(t.rows, r)
 			bad.Good++
 		}
+		line += countLines(b[p:next])
 		p = next
 	}
 	if bad.Total > 0 {
@@ -216,9 +220,11 @@ func (t *Table) Number(row, column int) Number {
 
 // Fault is an error about a field.
 func (t *Table) Fault(row, column int, kind Kind, expected string) *PositionError {
-	e := &PositionError{File: t.Name, Line: t.rows[row].line, Kind: kind, What: t.what[column], Seen: shorten(t.Text(row, column)), Expected: expected}
+	r := &t.rows[row]
+	e := &PositionError{File: t.Name, Line: r.line, Kind: kind, What: t.what[column], Seen: shorten(t.Text(row, column)), Expected: expected}
 	if i := t.fieldOf[column]; i >= 0 {
-		e.Field, e.Column = i+1, t.rows[row].column[i]
+		e.Field = i + 1
+		_, e.Column = position(t.data, r.from, r.at[i])
 	}
 	return e
 }

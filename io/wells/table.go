@@ -184,3 +184,6 @@ func (w *well) dates() string {
 	}
 	return fmt.Sprintf("%d measuring points of unlike dates", len(w.rows))
 }
+
+// Has reports whether the table has a column for a role.
+func (t *Table) Has(r readings.Role) bool { return t.has[r] }
