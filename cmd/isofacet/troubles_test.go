@@ -15,7 +15,7 @@ import (
 // people of the trade would; where a script or a test shows more of it, it is named.
 type trouble struct {
 	words string
-	args  string // behind "isofacet", split at blanks; _ stands for a blank in a word
+	args  string // behind "isofacet", split at blanks
 	files map[string]string
 	code  status.Code
 	says  []string // all of these on standard error
@@ -88,3 +88,85 @@ var troubles = []trouble{
 		[]string{"A: pumping", "B: recently pumped", "C: nearby pumping", "3 left out"}, nil, "wells"},
 	{"a round that took days", "query a.csv --at 0,0", one("a.csv", "well,x,y,head,date\nA,0,0,1,2024-03-01\nB,5,0,2,2024-03-02\nC,0,5,3,2024-03-06\n"), 0,
 		[]string{"the round took 5 days, from 2024-03-01 (A) to 2024-03-06 (C): more than 24 hours"}, nil, "guards"},
+	{"unlike height datums", "contour --from-raster r.raw --interval 1 --vertical-datum NGVD29", one("a.csv", good), 2,
+		[]string{`--vertical-datum "NGVD29": the raster says "NAVD88": expected the same`}, nil, "guards"},
+	{"distances on the ground and in the grid", "query a.csv --at 0,0 --fit p.csv --fit-within 0.1", map[string]string{"a.csv": good,
+		"p.csv": "id,from_x,from_y,to_x,to_y\n1,0,0,1000,1000\n2,100,0,1100,1000\n3,0,100,1000,1100.96\n"}, 3,
+		[]string{"p.csv:2: pair 1: residual 0.33", "expected at most 0.1", "fit: pair 3: residual "}, nil, "units"},
+	{"a fit that nothing checks", "query a.csv --at 0,0 --fit p.csv --fit-within 0.1", map[string]string{"a.csv": good,
+		"p.csv": "id,from_x,from_y,to_x,to_y\n1,0,0,1000,1000\n2,100,0,1100,1000\n"}, 0, []string{"2 pairs settle a fit (similarity) and check nothing", "[unchecked-fit]"}, nil, "units"},
+	{"a decimal comma", "query a.csv --at 0,0", one("a.csv", "x;y;z\n0.5;0;1\n4512233,10;0;2\n"), 3,
+		[]string{`a.csv:3:1: x "4512233,10": expected a number such as 12.4`, "say --decimal comma"}, nil, "lenient"},
+	{"a mark between thousands", "query a.csv --at 0,0", one("a.csv", "x;y;z\n0.5;0;1\n1.234,56;0;2\n"), 3, []string{`x "1.234,56"`, "without marks between thousands"}, nil, "lenient"},
+	{"a footer below the table", "query a.csv --at 0,0", one("a.csv", good+"Total: 5 shots\n"), 3, []string{"a.csv:7: 1 field: expected 4, as in the header", "1 line bad, 5 good"}, nil, "lenient"},
+	{"a row of units, a byte order mark, comments and blank lines", "query a.csv --at 0,0", one("a.csv", "\ufeff# day 3\r\n\r\nid,x,y,z\r\n,m,m,m\r\nA,0,0,10\r\n\r\n# more\r\nB,5,0,11\r\nC,0,5,12\r\n"), 0,
+		[]string{"UTF-8 with a byte order mark", "a row of units follows the header", "3 read, 3 used"}, []string{"10.00"}, "inspect"},
+	{"two wells, or all in one line", "contour a.csv --interval 1", one("a.csv", "well,x,y,mp,depth,status\nA,0,0,20,5,\nB,5,0,20,6,\nC,5,5,20,,dry\n"), 3,
+		[]string{"2 readings at 2 places, fewer than three places (of 3 readings read: 1 dry): no surface", "two readings give a slope along one line only"}, nil, "wells"},
+	{"soundings that count downwards", "query a.csv --at 0,0 --depth-from 2.35", one("a.csv", "x,y,depth\n0,0,1.5\n5,0,2.5\n0,5,3.5\n"), 0, nil, []string{"0,0,0.8500,"}, "wells"},
+	{"depths and nothing that they count from", "query a.csv --at 0,0", one("a.csv", "x,y,depth\n0,0,1.5\n5,0,2.5\n0,5,3.5\n"), 3,
+		[]string{"a depth and no measuring point: expected the elevation from which the depth is counted", "--depth-from"}, nil, "wells"},
+	{"large coordinates", "query a.csv --at 6000000.001,5621000.003 --decimals full", one("a.csv", "x,y,z\n6000000.001,5621000.003,1.001\n6000000.002,5621000.003,2\n6000000.001,5621000.004,3\n"), 0,
+		nil, []string{"6000000.001,5621000.003,1.001,", "vertex"}, "query"},
+	{"laser points that are not ground", "inspect a.csv --only class=2", one("a.csv", "x,y,z,class\n0,0,1,2\n5,0,1,2\n0,5,1,2\n2,2,15,5\n3,3,0,7\n"), 0,
+		[]string{"left out: a.csv:5: not among class=2", "left out: a.csv:6: not among class=2"}, nil, "choosing"},
+	{"the right map of the wrong file", "query a.csv --at 0,0 --record r.json --out o.csv", one("a.csv", good), 0, []string{"written: o.csv"}, nil, "record"},
+	{"a word that nobody explained in the status", "readings a.csv", one("a.csv", "well,x,y,mp,depth,status\nA,0,0,20,5,windy\n"), 3,
+		[]string{`a.csv:2:12: status "windy": expected a word that says whether the level counts`, "--status-table"}, nil, "wells"},
+	{"two wells of one name in the table", "readings a.csv --wells w.csv", map[string]string{"a.csv": "well,depth\nA,5\n", "w.csv": "well,x,y,toc\nA,0,0,100\nA,0,0,101\n"}, 3,
+		[]string{`w.csv:3:1: id "A": expected one row a well and date; line 2 is one too`}, nil, "wells"},
+	{"a date that could be two", "readings a.csv --wells w.csv", map[string]string{"a.csv": "well,date,depth\nA,03/04/2024,5\n", "w.csv": "well,x,y,toc,valid_from\nA,0,0,100,2020-01-01\n"}, 3,
+		[]string{`a.csv:2:3: time "03/04/2024": expected a date such as 2024-03-12`}, nil, "wells"},
+}
+
+// bay is a survey round a bay: shots a unit apart along three sides of a square.
+func bay() string {
+	b := "x,y,z\n"
+	for i := range 41 {
+		b += fmt.Sprintf("%d,0,%d\n%d,1,%d\n", i, i%3, i, i%2)
+	}
+	for i := 2; i < 41; i++ {
+		b += fmt.Sprintf("0,%d,%d\n1,%d,%d\n39,%d,1\n40,%d,2\n", i, i%3, i, i%2, i, i)
+	}
+	return b
+}
+
+// Every trouble that practice knows has its message or its handling.
+func TestTroublesOfFieldData(t *testing.T) {
+	for _, c := range troubles {
+		t.Run(c.words, func(t *testing.T) {
+			if _, err := os.Stat("testdata/script/" + c.more + ".txtar"); err != nil {
+				t.Errorf("no script %s shows it", c.more)
+			}
+			t.Chdir(t.TempDir())
+			for name, text := range c.files {
+				if err := os.WriteFile(name, []byte(text), 0o666); err != nil {
+					t.Fatal(err)
+				}
+			}
+			var out, words bytes.Buffer
+			if strings.Contains(c.args, "r.raw") {
+				made := strings.Fields("grid a.csv --cell 2 --vertical-datum NAVD88 --out r.raw")
+				if code := run(made, streams{strings.NewReader(""), &out, &words}); code != 0 {
+					t.Fatalf("%s", &words)
+				}
+			}
+			if code := run(strings.Fields(c.args), streams{strings.NewReader(""), &out, &words}); code != int(c.code) {
+				t.Errorf("exit status %d, want %d:\n%s", code, c.code, &words)
+			}
+			for _, want := range c.says {
+				if !strings.Contains(words.String(), want) {
+					t.Errorf("no %q in the words:\n%s", want, &words)
+				}
+			}
+			for _, want := range c.shows {
+				if !strings.Contains(out.String(), want) {
+					t.Errorf("no %q in the output:\n%s", want, &out)
+				}
+			}
+			if len(c.says)+len(c.shows) == 0 {
+				t.Error("nothing is looked for")
+			}
+		})
+	}
+}
