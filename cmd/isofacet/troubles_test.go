@@ -3,6 +3,7 @@ package main
 import (
 	"bytes"
 	"fmt"
+	"math/rand/v2"
 	"os"
 	"strings"
 	"testing"
@@ -37,7 +38,8 @@ var troubles = []trouble{
 		[]string{`--xy-unit "feet": expected which foot: ft-int (international, 0.3048 m) or ft-us (US survey, 1200/3937 m)`}, nil, "units"},
 	{"degrees in a job of lengths", "grid a.csv --cell 5", one("a.csv", "id,x,y,z\n1,5.1234,51.9123,10\n2,5.1334,51.9223,25\n3,5.1434,51.9103,12\n"), 3,
 		[]string{"x 5.1234 to 5.1434, y 51.9103 to 51.9223 look like degrees: expected projected coordinates for a cell of 5"}, nil, "guards"},
-	{"a wrong rod height: a run of shots moved by one amount", "inspect --help", nil, 0, nil, []string{"--write-suspects"}, "suspects"},
+	{"a wrong rod height: a run of shots moved by one amount", "inspect a.csv", one("a.csv", rodSlipped()), 0,
+		nil, []string{"shots 311 to 322 (12): 0.30", "above what others expect", "rod height?"}, "suspects"},
 	{"a height that cannot be", "inspect a.csv --expect-z 5,20", one("a.csv", "id,x,y,z\nA,0,0,10\nB,10,0,11.5\nC,0,10,115\n"), 3,
 		[]string{"a.csv:4: C: z 115\n", "1 reading of 3 outside: expected all from 5 to 20"}, nil, "guards"},
 	{"a code for no value among the heights", "query a.csv --at 0,0 --missing -9999", one("a.csv", "id,x,y,z\nA,0,0,10\nB,10,0,11\nC,0,10,12\nD,5,5,-9999\n"), 0,
@@ -52,15 +54,15 @@ var troubles = []trouble{
 		[]string{"EPX"}, nil, "code-table"},
 	{"a coded string whose shots are in the wrong order", "inspect a.csv --breaklines l.csv",
 		map[string]string{"a.csv": square, "l.csv": "line,x,y,z\nT,1,1,10\nT,1.5,1,10\nT,2,1,10\nT,2.5,1,10\nT,3,1,10\nT,3.5,1,10\nT,4,1,10\nT,4.5,1,10\nT,5,1,10\nT,5.5,1,10\nT,9,9,10\n"}, 0,
-		[]string{"l.csv:12: ", "times the usual"}, nil, "lines"},
+		[]string{"l.csv:11: ", "from row 11 to row 12, 17.46 times the median of its 10 segments"}, nil, "lines"},
 	{"breaklines that cross at unlike heights", "inspect a.csv --breaklines l.csv",
 		map[string]string{"a.csv": square, "l.csv": "line,x,y,z\nP,2,2,10\nP,8,8,10\nQ,2,8,12\nQ,8,2,12\n"}, 3,
 		[]string{`"P"`, `"Q"`, "(5, 5)"}, nil, "crossing"},
 	{"lines without heights", "inspect a.csv --breaklines l.csv", map[string]string{"a.csv": square, "l.csv": "line,x,y,z\nP,2,2,0\nP,8,8,0\n"}, 3,
-		[]string{"l.csv", "all 0"}, nil, "lines-z"},
+		[]string{`l.csv:2: line "P" has height 0 at all 2 vertices: expected measured heights`}, nil, "lines-z"},
 	{"long triangles across a bay of the outline", "inspect a.csv", one("a.csv", bay()), 0,
 		[]string{"the convex hull stands in for an outline there", "[hull-outline]"}, []string{"long edge"}, "max-edge"},
-	{"flat triangles where a crest was not measured", "inspect a.csv", one("a.csv", square), 0, nil, []string{"flat       1 triangle with three equal heights, area 50.00"}, "inspect"},
+	{"flat triangles where a crest was not measured", "inspect a.csv", one("a.csv", strings.Replace(square, "0,10,11", "0,10,10", 1)+"5,20,5,11,GR\n"), 0, nil, []string{"flat       2 triangles with three equal heights, area 100.00"}, "inspect"},
 	{"values beyond the outermost wells", "query a.csv --at 50,50", one("a.csv", square), 0, []string{"1 outside the surface"}, []string{"50,50,,,,outside"}, "query"},
 	{"a depth taken for an elevation", "query a.csv --at 0,0", one("a.csv", "well,x,y,water level\nA,0,0,5\n"), 3,
 		[]string{`a.csv:1:10: column "water level": expected to be told whether it is a depth or an elevation`}, nil, "guards"},
@@ -68,7 +70,7 @@ var troubles = []trouble{
 		[]string{"a.csv:2: A: head 19 is above the ground 18: a flowing well, or an error"}, nil, "wells"},
 	{"no measuring point that holds on the day", "readings a.csv --wells w.csv", map[string]string{
 		"a.csv": "well,date,depth\nMW-9,2026-03-04,5.00\nMW-8,2026-03-04,5.00\n", "w.csv": "well,x,y,toc,valid_from\nMW-9,0,0,100,2026-04-01\nMW-8,5,0,100,2020-01-01\n"}, 0,
-		[]string{"left out: a.csv:2: MW-9: no measuring point: none of MW-9 is valid on 2026-03-04, the first is from 2026-04-01"}, []string{"a.csv,3,MW-8,5.00,0.00,95.00,used,"}, "wells"},
+		[]string{"left out: a.csv:2: MW-9: no measuring point: none of MW-9 is valid on 2026-03-04, the first is from 2026-04-01"}, []string{"a.csv,3,MW-8,5.00,0.00,95.0000,used,"}, "wells"},
 	{"a casing that was surveyed anew", "readings a.csv --wells w.csv --only round=*", map[string]string{
 		"a.csv": "well,date,depth,round\nA,2024-05-01,5.00,1\nB,2024-07-01,5.00,2\n", "w.csv": "well,x,y,toc,valid_from\nA,0,0,100.00,2020-01-01\nA,,,99.75,2024-06-01\nB,1,0,100.00,2020-01-01\nB,,,99.75,2024-06-01\n"}, 0,
 		nil, []string{"100.00 - 5.00 = 95.00", "99.75 - 5.00 = 94.75"}, "wells"},
@@ -88,6 +90,9 @@ var troubles = []trouble{
 		[]string{"A: pumping", "B: recently pumped", "C: nearby pumping", "3 left out"}, nil, "wells"},
 	{"a round that took days", "query a.csv --at 0,0", one("a.csv", "well,x,y,head,date\nA,0,0,1,2024-03-01\nB,5,0,2,2024-03-02\nC,0,5,3,2024-03-06\n"), 0,
 		[]string{"the round took 5 days, from 2024-03-01 (A) to 2024-03-06 (C): more than 24 hours"}, nil, "guards"},
+	{"two rounds of unlike wells", "change a.csv --from round=1 --to round=2",
+		one("a.csv", "well,x,y,head,round\nA,0,0,1,1\nB,5,0,2,1\nC,0,5,3,1\nD,6,6,1,1\nA,0,0,2,2\nB,5,0,3,2\nC,0,5,4,2\nE,7,7,4,2\n"), 0,
+		[]string{"added: 1 well: E", "lost: 1 well: D"}, []string{"A,0.00,0.00,1.00,2.00,1.00,common"}, "rounds"},
 	{"unlike height datums", "contour --from-raster r.raw --interval 1 --vertical-datum NGVD29", one("a.csv", good), 2,
 		[]string{`--vertical-datum "NGVD29": the raster says "NAVD88": expected the same`}, nil, "guards"},
 	{"distances on the ground and in the grid", "query a.csv --at 0,0 --fit p.csv --fit-within 0.1", map[string]string{"a.csv": good,
@@ -103,7 +108,7 @@ var troubles = []trouble{
 		[]string{"UTF-8 with a byte order mark", "a row of units follows the header", "3 read, 3 used"}, []string{"10.00"}, "inspect"},
 	{"two wells, or all in one line", "contour a.csv --interval 1", one("a.csv", "well,x,y,mp,depth,status\nA,0,0,20,5,\nB,5,0,20,6,\nC,5,5,20,,dry\n"), 3,
 		[]string{"2 readings at 2 places, fewer than three places (of 3 readings read: 1 dry): no surface", "two readings give a slope along one line only"}, nil, "wells"},
-	{"soundings that count downwards", "query a.csv --at 0,0 --depth-from 2.35", one("a.csv", "x,y,depth\n0,0,1.5\n5,0,2.5\n0,5,3.5\n"), 0, nil, []string{"0,0,0.8500,"}, "wells"},
+	{"soundings that count downwards", "query a.csv --at 0,0 --depth-from 2.35", one("a.csv", "x,y,depth\n0,0,1.5\n5,0,2.5\n0,5,3.5\n"), 0, nil, []string{"0,0,0.850,"}, "wells"},
 	{"depths and nothing that they count from", "query a.csv --at 0,0", one("a.csv", "x,y,depth\n0,0,1.5\n5,0,2.5\n0,5,3.5\n"), 3,
 		[]string{"a depth and no measuring point: expected the elevation from which the depth is counted", "--depth-from"}, nil, "wells"},
 	{"large coordinates", "query a.csv --at 6000000.001,5621000.003 --decimals full", one("a.csv", "x,y,z\n6000000.001,5621000.003,1.001\n6000000.002,5621000.003,2\n6000000.001,5621000.004,3\n"), 0,
@@ -117,6 +122,21 @@ var troubles = []trouble{
 		[]string{`w.csv:3:1: id "A": expected one row a well and date; line 2 is one too`}, nil, "wells"},
 	{"a date that could be two", "readings a.csv --wells w.csv", map[string]string{"a.csv": "well,date,depth\nA,03/04/2024,5\n", "w.csv": "well,x,y,toc,valid_from\nA,0,0,100,2020-01-01\n"}, 3,
 		[]string{`a.csv:2:3: time "03/04/2024": expected a date such as 2024-03-12`}, nil, "wells"},
+}
+
+// rodSlipped is 400 shots on a plane, within a centimetre, twelve of them 0.30 high.
+func rodSlipped() string {
+	b := "id,x,y,z\n"
+	r := rand.New(rand.NewPCG(5, 5))
+	for i := range 400 {
+		x, y := float64(i%20*5)+2*r.Float64(), float64(i/20*5)+2*r.Float64()
+		z := 100 + 0.05*x + 0.02*y + 0.02*(r.Float64()-0.5)
+		if i >= 310 && i < 322 {
+			z += 0.30
+		}
+		b += fmt.Sprintf("%d,%.3f,%.3f,%.3f\n", i+1, x, y, z)
+	}
+	return b
 }
 
 // bay is a survey round a bay: shots a unit apart along three sides of a square.

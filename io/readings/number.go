@@ -200,7 +200,7 @@ func classify(text []byte, decimal byte) Kind {
 			return DecimalMark
 		}
 	}
-	if grouped(t, decimal) {
+	if grouped(t, decimal) || grouped(t, other) {
 		return Thousands
 	}
 	return NotNumber
