@@ -148,6 +148,9 @@ func (c *profileCommand) run(cmd *cobra.Command, files []string) error {
 	if err := c.loadSurfaces(cmd.Context(), job, list, others); err != nil {
 		return err
 	}
+	if err := job.layLines(); err != nil {
+		return err
+	}
 	return job.make(cmd.Context(), list, out)
 }
 
@@ -177,6 +180,7 @@ func (c *profileCommand) loadSurfaces(ctx context.Context, job *profiling, list 
 			plain.edges.breaklines.values, plain.edges.boundary.values, plain.edges.voids.values = nil, nil, nil
 			plain.edges.codeTable, plain.exclude = typed{}, typed{}
 			plain.edges.table, plain.edges.codes = nil, nil
+			plain.fit, plain.fitWithin = typed{}, option.Number{} // it is made already
 			r = &plain
 			c.report.Note("also: " + in[0].Name)
 		}

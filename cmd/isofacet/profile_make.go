@@ -21,6 +21,7 @@ type profiling struct {
 	*profileCommand
 	surfaces []*profiled
 	follow   []followed
+	read     *lines.Set // the file of lines, nil if the line is typed
 	places   *places
 	cuts     []cut
 	overlaps int
@@ -42,8 +43,23 @@ type cut struct {
 	profiles []profile.Profile
 }
 
-// readLines reads the lines to follow.
+// readLines reads the file of lines to follow.
 func (j *profiling) readLines(ctx context.Context, in *input) error {
+	if in == nil {
+		return nil
+	}
+	set, err := lines.Paths(ctx, []readings.Source{in.Source}, lines.Options{Zeros: lines.UseZeros, Workers: j.workers()})
+	if err != nil {
+		return err
+	}
+	j.tellLines(in.Name, "line", set)
+	j.read = set
+	return nil
+}
+
+// layLines makes alignments. Lines of a file are in the units of the readings, typed
+// ones in those of the outputs.
+func (j *profiling) layLines() error {
 	from := j.stationFrom.Value.Float64()
 	add := func(name string, points []orb.Point) error {
 		line, err := profile.NewAlignment(points, from)
@@ -53,20 +69,16 @@ func (j *profiling) readLines(ctx context.Context, in *input) error {
 		j.follow = append(j.follow, followed{name: name, line: line})
 		return nil
 	}
-	if in == nil {
+	if j.read == nil {
 		var points []orb.Point
 		for _, p := range j.along.Places {
 			points = append(points, orb.Point{p.X, p.Y})
 		}
 		return add("line", points)
 	}
-	set, err := lines.Paths(ctx, []readings.Source{in.Source}, lines.Options{Zeros: lines.UseZeros, Workers: j.workers()})
-	if err != nil {
-		return err
-	}
-	j.tellLines(in.Name, "line", set)
-	for i := range set.Lines {
-		if err := add(set.Lines[i].Name, set.Lines[i].Points); err != nil {
+	j.measureLines(j.read)
+	for i := range j.read.Lines {
+		if err := add(j.read.Lines[i].Name, j.read.Lines[i].Points); err != nil {
 			return err
 		}
 	}
