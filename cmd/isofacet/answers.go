@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"io"
 	"math"
+	"slices"
 	"strings"
 
 	"github.com/paulmach/orb"
@@ -63,6 +64,13 @@ type queryResult struct {
 	Surface surfaceCounts `json:"surface"`
 	Asked   int           `json:"asked"`
 	Outside int           `json:"outside"`
+	// Also says what the added columns include.
+	Also []alsoResult `json:"also,omitempty"`
+}
+
+type alsoResult struct {
+	Column   string `json:"column"`
+	Includes string `json:"includes"`
 }
 
 // answer asks the surface and writes the table.
@@ -92,9 +100,18 @@ func (q *queryCommand) answer(cmd *cobra.Command, list []*input, l *loaded, aske
 	}
 	if q.rec != nil {
 		q.recordReadings(list, l)
-		q.rec.Stable.Result = &queryResult{l.extents(q.decimals), l.surfaceCounts(q.decimals), len(samples), outside}
+		q.rec.Stable.Result = &queryResult{l.extents(q.decimals), l.surfaceCounts(q.decimals), len(samples), outside, alsoResults(q.also.value)}
 	}
 	t := q.table(l, asked, samples)
+	t.trust = &trust{p: q.program, l: l, r: &q.reading, t: &q.trusting}
+	for _, name := range q.also.value {
+		if err := t.trust.prepare(cmd.Context(), name); err != nil {
+			return err
+		}
+		if name == showDistance {
+			t.finder = t.trust.nearest.Finder()
+		}
+	}
 	for _, d := range out.list {
 		if err := out.write(d, func(d *destination) error {
 			if d.format == formatGeoJSON {
@@ -108,6 +125,13 @@ func (q *queryCommand) answer(cmd *cobra.Command, list []*input, l *loaded, aske
 	return out.commit()
 }
 
+func alsoResults(names []string) (all []alsoResult) {
+	for _, name := range names {
+		all = append(all, alsoResult{name, trustIncludes(name)})
+	}
+	return all
+}
+
 // A table writes answers as CSV.
 type table struct {
 	l       *loaded
@@ -117,10 +141,18 @@ type table struct {
 	z, slope, azimuth, xy, weight int // digits after the point
 	numbers                       map[triangulate.Triangle]int
 	inputs                        []int32 // of every vertex the first reading; nil unless explained
+
+	also   []string // of trustNames
+	digits []int    // of those
+	trust  *trust
+	finder *interp.Finder
 }
 
 func (q *queryCommand) table(l *loaded, asked *places, samples []interp.Sample) *table {
-	t := &table{l: l, asked: asked, samples: samples}
+	t := &table{l: l, asked: asked, samples: samples, also: q.also.value}
+	for _, name := range t.also {
+		t.digits = append(t.digits, trustDigits(l, q.decimals, name))
+	}
 	t.xy, t.z = l.digits(q.decimals)
 	t.slope, t.azimuth, t.weight = q.decimals.Resolve(slopeDigits), q.decimals.Resolve(azimuthDigits), q.decimals.Resolve(weightDigits)
 	if q.explain {
@@ -144,7 +176,7 @@ func (q *queryCommand) table(l *loaded, asked *places, samples []interp.Sample) 
 // write writes the header and a row a place.
 func (t *table) write(w io.Writer) error {
 	b := bufio.NewWriterSize(w, 1<<16)
-	names := append(append([]string{}, t.asked.names...), answerNames...)
+	names := slices.Concat(t.asked.names, answerNames, t.also)
 	if t.inputs != nil {
 		names = append(names, explainNames()...)
 	}
@@ -172,6 +204,7 @@ func (t *table) appendAnswer(row []byte, i int) []byte {
 	loc := s.Location
 	if loc.Place == triangulate.Outside {
 		row = append(row, ",,,outside,"...)
+		row = append(row, strings.Repeat(",", len(t.also))...)
 		if t.inputs != nil {
 			row = append(row, strings.Repeat(",", len(explainNames()))...)
 		}
@@ -185,6 +218,9 @@ func (t *table) appendAnswer(row []byte, i int) []byte {
 	}
 	row = append(row, ',')
 	row = append(append(row, loc.Place.String()...), ',')
+	for k, name := range t.also {
+		row = append(numtext.Append(row, t.trust.at(name, loc, t.asked.points[i], t.finder), t.digits[k]), ',')
+	}
 	if t.inputs != nil {
 		row = t.appendReasons(row, i)
 	}

@@ -162,7 +162,7 @@ var faults = []fault{
 	{"places of two kinds", "query shots.csv --at 5,5 --at p.csv --out out.csv", nil, "", 2, []string{"--at 5,5 p.csv", "expected"}, "hint"},
 	{"standard input for both", "query --at - --out out.csv", nil, good, 2, []string{`--at "-"`, "expected"}, "hint"},
 	{"a hollow option", "inspect shots.csv --out out.json --delimiter", nil, "", 2, []string{"--delimiter", "expected"}, "--delimiter"},
-	{"an option of a later version", gridArgs + " --sigma 0.1", nil, "", 2, []string{`option "--sigma"`, "takes --cell"}, "--help"},
+	{"an option of a later version", gridArgs + " --arrows 0.1", nil, "", 2, []string{`option "--arrows"`, "takes --cell"}, "--help"},
 	{"a command of a later version", "volume shots.csv", nil, "", 2, []string{`command "volume"`, "expected one of inspect, grid, contour, query, triangles"}, "--help"},
 	{"files for a command without", "version shots.csv", nil, "", 2, []string{`"shots.csv"`, "takes no files"}, "hint"},
 

@@ -30,11 +30,14 @@ by colour and shaded as relief, with a scale.
 
 Slope is rise over run. The downhill azimuth is where water would run, in degrees
 clockwise from grid north; a flat has none. Shade is the share, from 0 to 1, of a
-light from the north-west, 45 degrees high, that a triangle is struck by.`
+light from the north-west, 45 degrees high, that a triangle is struck by.
+
+` + trustLong
 
 const gridExample = `isofacet grid sample:gravel-pit/shots.csv --cell 5 --out pit.csv
 isofacet grid sample:gravel-pit/shots.csv --cell 2 --out slope=slope.raw
 isofacet grid sample:landfill/heads-2024-q1.csv --cell 10 --out heads.png
+isofacet grid sample:gravel-pit/shots.csv --cell 5 --show distance --out d.png
 isofacet grid sample:landfill/heads-2024-q1.csv --cell 50 --layout list | head`
 
 // newGrid is "isofacet grid".
@@ -49,6 +52,7 @@ func newGrid(p *program) *cobra.Command {
 	}
 	fs := cmd.Flags()
 	manual.Add(fs, g.options()...)
+	manual.Add(fs, g.trustOptions("Raster")...)
 	manual.Add(fs, g.reading.readingOptions()...)
 	manual.Add(fs, g.writing.writingOptions(gridParts, []string{formatCSV, formatRaw, formatRaw32, formatPNG})...)
 	manual.Add(fs, p.runningOptions()...)
@@ -56,7 +60,7 @@ func newGrid(p *program) *cobra.Command {
 }
 
 // What a raster can show; also the parts of --out.
-var gridParts = []string{grid.Value.String(), grid.Slope.String(), grid.DownhillAzimuth.String(), grid.Shade.String()}
+var gridParts = append([]string{grid.Value.String(), grid.Slope.String(), grid.DownhillAzimuth.String(), grid.Shade.String()}, trustNames...)
 
 // The formats of a raster.
 const (
@@ -70,6 +74,7 @@ type gridCommand struct {
 	*program
 	reading
 	writing
+	trusting
 	cell     option.Cell
 	extent   option.Extent
 	outward  manual.Switch

@@ -43,6 +43,8 @@ type rasterResult struct {
 	Min    number `json:"min"`
 	Max    number `json:"max"`
 	Mean   number `json:"mean"`
+	// Includes says what an uncertainty includes.
+	Includes string `json:"includes,omitempty"`
 }
 
 // make fills one raster after the other and writes each, so that only one is in
@@ -58,13 +60,14 @@ func (g *gridCommand) make(cmd *cobra.Command, files []string, list []*input, l 
 		"columns", spec.Cols, "rows", spec.Rows)
 	g.warnOfLongOutline(l, advice.MaxEdge(advice.Spacing(l.surface.Mesh(), g.workers())))
 
+	trust := &trust{p: g.program, l: l, r: &g.reading, t: &g.trusting}
 	var shown string
 	var raster *grid.Grid
 	for _, d := range out.list {
 		if d.part != shown {
 			raster = nil // before the next one takes its place
 			var err error
-			if raster, err = g.fill(cmd.Context(), l, spec, d.part); err != nil {
+			if raster, err = g.fill(cmd.Context(), l, spec, d.part, trust); err != nil {
 				return err
 			}
 			shown = d.part
@@ -95,7 +98,13 @@ func boolCompare(a, b bool) int {
 }
 
 // fill makes one raster.
-func (g *gridCommand) fill(ctx context.Context, l *loaded, spec grid.Spec, part string) (*grid.Grid, error) {
+func (g *gridCommand) fill(ctx context.Context, l *loaded, spec grid.Spec, part string, trust *trust) (*grid.Grid, error) {
+	trusted := slices.Contains(trustNames, part)
+	if trusted {
+		if err := trust.prepare(ctx, part); err != nil {
+			return nil, err
+		}
+	}
 	report, finish := g.display.Stage("filling")
 	defer finish()
 	show := grid.Value
@@ -112,6 +121,11 @@ func (g *gridCommand) fill(ctx context.Context, l *loaded, spec grid.Spec, part 
 		raster.Mask(l.drawn.region)
 		raster.OwnOnRims(l.drawn.region, l.surface, l.drawn.cut, show)
 	}
+	if trusted {
+		if err := trust.raster(ctx, raster, part); err != nil {
+			return nil, err
+		}
+	}
 	raster.Labels = g.labels(part)
 	return raster, nil
 }
@@ -121,7 +135,7 @@ func (g *gridCommand) describeRaster(l *loaded, raster *grid.Grid) rasterResult 
 	s := raster.Statistics(g.workers())
 	digits := g.valueDigits(l, raster.Labels.Show)
 	value := func(v float64) number { return number{v, digits} }
-	r := rasterResult{raster.Labels.Show, s.Nodes, s.NoData, value(s.Min), value(s.Max), value(s.Mean)}
+	r := rasterResult{raster.Labels.Show, s.Nodes, s.NoData, value(s.Min), value(s.Max), value(s.Mean), trustIncludes(raster.Labels.Show)}
 	text := fmt.Sprintf("%s: %d nodes with a value, %d without", r.Show, s.Count(), s.NoData)
 	if s.Count() > 0 {
 		text += fmt.Sprintf("; from %v to %v, mean %v", r.Min, r.Max, r.Mean)
@@ -143,8 +157,7 @@ func (g *gridCommand) valueDigits(l *loaded, part string) int {
 	case grid.Shade.String():
 		return g.decimals.Resolve(shadeDigits)
 	}
-	_, z := l.digits(g.decimals)
-	return z
+	return trustDigits(l, g.decimals, part)
 }
 
 // writeRaster writes a raster to one output.
@@ -225,6 +238,8 @@ func (g *gridCommand) digitsCarried(l *loaded, part string) int {
 		return azimuthDigits
 	case grid.Shade.String():
 		return shadeDigits
+	case showDistance:
+		return l.set.DecimalsXY
 	}
 	return l.set.DecimalsZ
 }

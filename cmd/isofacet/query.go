@@ -1,12 +1,15 @@
 package main
 
 import (
+	"errors"
 	"slices"
+	"strings"
 
 	"github.com/spf13/cobra"
 
 	"isofacet/cmd/internal/manual"
 	"isofacet/cmd/internal/option"
+	"isofacet/cmd/internal/status"
 	"isofacet/grid/decimal"
 	"isofacet/io/readings"
 )
@@ -30,11 +33,14 @@ place: the one just east of it, or north where an edge runs east.
 
 With --explain a row also holds the triangle's number (from 1, triangles sorted by
 their corners), its three readings counter-clockwise, the one with the smallest x
-first, and the weight of each: the value is the sum of weight times reading.`
+first, and the weight of each: the value is the sum of weight times reading.
+
+--also adds how far values can be trusted. ` + trustLong
 
 const queryExample = `isofacet query sample:gravel-pit/shots.csv --at 431250,5621500 --at 431260,5621500
 isofacet query sample:gravel-pit/shots.csv --at sample:gravel-pit/checks.csv --out checked.csv
 isofacet query sample:gravel-pit/shots.csv --spots --spots-every 50 --out spots.geojson
+isofacet query sample:gravel-pit/shots.csv --at 431250,5621500 --also distance
 echo 431250 5621500 | isofacet query sample:gravel-pit/shots.csv --at - --explain`
 
 // newQuery is "isofacet query".
@@ -47,6 +53,7 @@ func newQuery(p *program) *cobra.Command {
 		Example: queryExample,
 		RunE:    q.run,
 	}
+	q.also = parsed[[]string]{form: "LIST", parse: parseTrust}
 	q.atColumns = parsed[readings.Columns]{form: "LIST", parse: readings.ParseColumns}
 	zero := decimal.FromInt(0)
 	q.spotsEvery = option.Number{Least: &zero}
@@ -58,7 +65,9 @@ func newQuery(p *program) *cobra.Command {
 			Text: "what the columns of the file of places hold, like --columns"},
 		manual.Option{Group: group, Name: "spots", Value: &q.spots, Switch: true, Text: "ask at the summits, pits and saddles of the surface"},
 		manual.Option{Group: group, Name: "spots-every", Value: &q.spotsEvery, Default: "none", Text: "ask on a lattice of this distance, at its whole multiples in x and y"},
-		manual.Option{Group: group, Name: "explain", Value: &q.explain, Switch: true, Text: "add the triangle, its readings and their weights"})
+		manual.Option{Group: group, Name: "explain", Value: &q.explain, Switch: true, Text: "add the triangle, its readings and their weights"},
+		manual.Option{Group: group, Name: "also", Value: &q.also, Default: "nothing", Text: "add columns: some of " + strings.Join(trustNames, ", ") + ", with commas between"})
+	manual.Add(fs, q.trustOptions(group)...)
 	manual.Add(fs, q.reading.readingOptions()...)
 	manual.Add(fs, q.writing.writingOptions([]string{"table"}, []string{formatCSV, formatGeoJSON})...)
 	manual.Add(fs, p.runningOptions()...)
@@ -70,7 +79,9 @@ type queryCommand struct {
 	reading
 	writing
 	asking
+	trusting
 	explain    manual.Switch
+	also       parsed[[]string]
 	spots      manual.Switch
 	spotsEvery option.Number
 }
@@ -100,7 +111,7 @@ func (q *queryCommand) run(cmd *cobra.Command, files []string) error {
 
 	// The places are read first: they are few, and a fault in them should not
 	// show only after the readings have been worked on.
-	places, err := q.asking.places(cmd.Context(), q.program, asked, bool(q.lenient), append(slices.Clone(answerNames), explainNames()...))
+	places, err := q.asking.places(cmd.Context(), q.program, asked, bool(q.lenient), slices.Concat(answerNames, q.also.value, explainNames()))
 	if err != nil {
 		return err
 	}
@@ -124,6 +135,9 @@ func (q *queryCommand) run(cmd *cobra.Command, files []string) error {
 func (q *queryCommand) check(files []string) error {
 	if err := q.checkSpots(); err != nil {
 		return err
+	}
+	if q.sigma.IsSet() && !slices.Contains(q.also.value, showUncertainty) {
+		return status.Usage(errors.New("--sigma without uncertainty: expected it to be asked for"), "add --also uncertainty, or leave --sigma out")
 	}
 	return q.asking.check(len(files) == 0 || slices.Contains(files, "-"))
 }

@@ -2,6 +2,7 @@ package main
 
 import (
 	"math"
+	"slices"
 
 	"github.com/paulmach/orb"
 
@@ -14,7 +15,7 @@ import (
 // one: the asked row's own columns as they were written, then the answers.
 func (t *table) features(w *geojson.Writer) error {
 	n := len(t.samples)
-	names := append(append([]string{}, t.asked.names...), answerNames...)
+	names := slices.Concat(t.asked.names, answerNames, t.also)
 	if t.inputs != nil {
 		names = append(names, explainNames()...)
 	}
@@ -62,8 +63,11 @@ func (t *table) feature(f *geojson.Feature, i int, fields []string) []string {
 	if azimuth := interp.DownhillAzimuth(dzdx, dzdy); !math.IsNaN(azimuth) {
 		answers[2].Value = geojson.Fixed(azimuth, t.azimuth)
 	}
+	for k, name := range t.also {
+		answers[len(answerNames)+k].Value = geojson.Fixed(t.trust.at(name, s.Location, t.asked.points[i], t.finder), t.digits[k])
+	}
 	if t.inputs != nil {
-		t.reasons(answers[len(answerNames):], s.Location, t.asked.points[i])
+		t.reasons(answers[len(answerNames)+len(t.also):], s.Location, t.asked.points[i])
 	}
 	return fields
 }

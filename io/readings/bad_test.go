@@ -135,7 +135,7 @@ func TestBadInput(t *testing.T) {
 		{"a header of thousands", "x,y,z" + strings.Repeat(",a", 5000) + "\n", "", Declared{}, "a.csv:1: 5003 fields: expected at most 4096", FieldCount},
 		{"no y", "x,z\n1,2\n", "", Declared{}, "a.csv:1: no column for y: expected x, y and z; the roles found are x, z", MissingRole},
 		{"a depth beside z", "A,1,2,3,4\n", "id,x,y,z,depth", Declared{},
-			"a.csv:1: role depth: expected a role that is used here: x y z id code line zone status time round class qualifier", UnusedRole},
+			"a.csv:1: role depth: expected a role that is used here: x y z id code line zone status time round class qualifier sigma", UnusedRole},
 		{"a name that is not there", "a,b,c\n1,2,3\n", "x=a,y=b,z=elev", Declared{}, "a.csv:1: header \"a, b, c\": expected a column named \"elev\"", MissingColumn},
 		{"a number that is not there", "1,2,3\n", "x=1,y=2,z=4", Declared{}, "a.csv:1: 3 fields: expected a column 4 for z", MissingColumn},
 		{"a name that stands twice", "a,a,c\n1,2,3\n", "x=a,y=2,z=c", Declared{}, "a.csv:1:3: column \"a\": expected one column of that name; give its number", TwoColumns},
@@ -276,7 +276,7 @@ func TestOptionErrors(t *testing.T) {
 		{Options{Spots: Spots{Rule: 99}}, `same-spot "99": expected refuse, mean, first, last, lowest, highest`},
 		{Options{Spots: Spots{Spread: -1}}, `same-spot-spread "-1": expected a number from 0`},
 		{Options{Spots: Spots{Within: -0.5}}, `same-spot-within "-0.5": expected a distance from 0`},
-		{Options{Select: Selection{Only: []Pattern{{Z, "1"}}}}, `only "z=1": expected one of the roles id code line zone status time round class qualifier`},
+		{Options{Select: Selection{Only: []Pattern{{Z, "1"}}}}, `only "z=1": expected one of the roles id code line zone status time round class qualifier sigma`},
 		{Options{Select: Selection{Without: []Pattern{{Code, "a[b"}}}}, `without "code=a[b": expected every [ closed by a ], and something behind every \`},
 	} {
 		_, err := Read(context.Background(), nil, c.o)

@@ -62,7 +62,7 @@ func (r Role) String() string {
 func (r Role) Kept() bool { return r < roleCount && textSlot[r] >= 0 }
 
 // keptRoles are the text roles in the order of their slots.
-var keptRoles = [...]Role{ID, Code, Line, Zone, Status, Time, Round, Class, Qualifier}
+var keptRoles = [...]Role{ID, Code, Line, Zone, Status, Time, Round, Class, Qualifier, Sigma}
 
 const textSlots = len(keptRoles)
 
