@@ -32,12 +32,17 @@ The NSSDA's rules were read in a paraphrase of the whole standard, the ASPRS
 figures in secondary sources and from memory: look into the standard that your
 contract names. Which class a survey meets is for a licensed person to state.
 
+--leave-one-out predicts every reading from all the others, with or without
+checkpoints. It says how well the readings agree and how dense they are for this
+ground, not how accurate they are: one error that all share does not show.
+
 A checkpoint at the place of a reading that the surface was made from is an error:
 it is not independent. Formats by extension: report .txt, .json and .csv (a row a
 group); residuals .csv and .geojson.`
 
 const accuracyExample = `isofacet accuracy sample:gravel-pit/shots.csv --exclude sample:gravel-pit/decisions.csv --without code=BP --checkpoints sample:gravel-pit/checks.csv
 isofacet accuracy sample:gravel-pit/shots.csv --exclude sample:gravel-pit/decisions.csv --without code=BP --checkpoints sample:gravel-pit/checks.csv --checkpoints-columns id=check,x=easting,y=northing,z=elevation,class=where --by class
+isofacet accuracy sample:gravel-pit/shots.csv --exclude sample:gravel-pit/decisions.csv --without code=BP --leave-one-out
 isofacet accuracy sample:gravel-pit/shots.csv --exclude sample:gravel-pit/decisions.csv --checkpoints code=BP --out residuals=residuals.csv --out report.json`
 
 // newAccuracy is "isofacet accuracy".
@@ -65,7 +70,9 @@ func newAccuracy(p *program) *cobra.Command {
 		manual.Option{Group: group, Name: "checkpoints-error", Value: &a.own, Default: "not combined",
 			Text: "root mean square error of the checkpoints themselves"},
 		manual.Option{Group: group, Name: "by", Value: &a.by,
-			Text: "report by the texts of this role as well: " + strings.Join(keptRoleNames(), ", ")})
+			Text: "report by the texts of this role as well: " + strings.Join(keptRoleNames(), ", ")},
+		manual.Option{Group: group, Name: "leave-one-out", Value: &a.leaveOneOut, Switch: true,
+			Text: "say how far each reading is from the surface of all the others"})
 	manual.Add(fs, a.reading.readingOptions()...)
 	manual.Add(fs, a.writing.writingOptions([]string{"report", "residuals"}, []string{formatText, formatJSON, formatCSV, formatGeoJSON})...)
 	manual.Add(fs, p.runningOptions()...)
@@ -80,6 +87,7 @@ type accuracyCommand struct {
 	columns     parsed[readings.Columns]
 	own         option.Number
 	by          parsed[readings.Role]
+	leaveOneOut manual.Switch
 }
 
 // checkpointSource is where checkpoints come from: a file, or readings that a
@@ -139,6 +147,11 @@ func (a *accuracyCommand) run(cmd *cobra.Command, files []string) error {
 	if err := fitParts(dests); err != nil {
 		return err
 	}
+	for _, d := range dests {
+		if d.part == "residuals" && a.checkpoints.text == "" {
+			return status.Usage(fmt.Errorf("--out residuals=%s without checkpoints: expected --checkpoints", d.path), "isofacet inspect --write-suspects writes readings that are off the surface of the others")
+		}
+	}
 	var asked *input
 	if name := a.checkpoints.value.file; name != "" {
 		if asked, err = a.input(name); err != nil {
@@ -158,9 +171,16 @@ func (a *accuracyCommand) run(cmd *cobra.Command, files []string) error {
 		return err
 	}
 	a.tellSurface(l)
-	r, err := a.compare(cmd.Context(), l, found)
-	if err != nil {
-		return err
+	r := &accuracyReport{}
+	if found != nil {
+		if r, err = a.compare(cmd.Context(), l, found); err != nil {
+			return err
+		}
+	}
+	if a.leaveOneOut {
+		if err := a.predict(cmd.Context(), l, r); err != nil {
+			return err
+		}
 	}
 	if err := a.settleWarnings(); err != nil {
 		return err
@@ -172,9 +192,15 @@ func (a *accuracyCommand) run(cmd *cobra.Command, files []string) error {
 func (a *accuracyCommand) check(files []string) error {
 	source := a.checkpoints.value
 	switch {
+	case a.checkpoints.text == "" && bool(a.leaveOneOut):
+		for option, given := range map[string]bool{"--checkpoints-columns": a.columns.text != "", "--checkpoints-error": a.own.IsSet(), "--by": a.by.text != ""} {
+			if given {
+				return status.Usage(fmt.Errorf("%s without checkpoints: expected --checkpoints", option), "leave it out: leave-one-out has no checkpoints")
+			}
+		}
 	case a.checkpoints.text == "":
 		return status.Usage(errors.New("--checkpoints is missing: expected a file of checkpoints, or readings to hold out"),
-			"as in --checkpoints checks.csv, or --checkpoints code=CHK*")
+			"as in --checkpoints checks.csv, or --checkpoints code=CHK*; --leave-one-out does without")
 	case source.hold != nil && a.columns.text != "":
 		return status.Usage(errors.New("--checkpoints-columns without a file of checkpoints: expected --checkpoints FILE"),
 			"leave it out: checkpoints that are held out have the columns of the readings")

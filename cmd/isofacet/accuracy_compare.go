@@ -5,6 +5,7 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"math"
 	"slices"
 	"strings"
 
@@ -31,6 +32,10 @@ func (c *checkpoints) at(i int) string {
 // loadBoth reads the checkpoints, which are few, and then readings and surface; or
 // readings that a pattern puts apart.
 func (a *accuracyCommand) loadBoth(ctx context.Context, list []*input, asked *input) (*loaded, *checkpoints, error) {
+	if a.checkpoints.text == "" {
+		l, err := a.load(ctx, &a.reading, list)
+		return l, nil, err
+	}
 	if asked == nil {
 		return a.loadApart(ctx, list)
 	}
@@ -214,7 +219,8 @@ func groupNames(of map[string][]float64) []string {
 func (a *accuracyCommand) summarise(l *loaded, r *accuracyReport) {
 	xy, z := l.digits(a.decimals)
 	r.z, r.xy, r.own, r.combined = z, xy, a.own.Value.Float64(), a.own.IsSet()
-	r.All = r.figures("all", r.residuals)
+	all := r.figures("all", r.residuals)
+	r.All = &all
 	if a.by.text != "" {
 		of := map[string][]float64{}
 		for _, row := range r.rows {
@@ -228,12 +234,12 @@ func (a *accuracyCommand) summarise(l *loaded, r *accuracyReport) {
 		}
 	}
 	c := r.c.set.Counts
-	r.Checkpoints = checkpointCounts{c.Read, len(r.residuals), r.outside, c.Merged, c.LeftOut, c.Refused}
+	r.Checkpoints = &checkpointCounts{c.Read, len(r.residuals), r.outside, c.Merged, c.LeftOut, c.Refused}
 	if a.checkpoints.value.hold != nil {
 		r.Checkpoints.Read = c.Used + c.Merged + c.LeftOut + c.Refused
 	}
 	r.spread = accuracy.SpreadOf(r.places, l.reach())
-	r.Spread = spreadFigures{
+	r.Spread = &spreadFigures{
 		r.spread.Quadrants, number{r.spread.Closest, xy}, number{r.spread.Diagonal, xy}, r.spread.Even(),
 	}
 	n := len(r.residuals)
@@ -244,3 +250,31 @@ func (a *accuracyCommand) summarise(l *loaded, r *accuracyReport) {
 		a.report.Warn("few-checkpoints", fmt.Sprintf("%s: enough for the NSSDA (at least %d), the ASPRS edition of 2023 asks for at least %d", counted(n, "checkpoint"), accuracy.LeastNSSDA, accuracy.Least2023), "checkpoints", n)
 	}
 }
+
+// predict has every reading predicted from all the others. Residuals have the sign of
+// those at checkpoints: surface minus reading.
+func (a *accuracyCommand) predict(ctx context.Context, l *loaded, r *accuracyReport) error {
+	_, finish := a.display.Stage("leaving readings out")
+	left, err := l.surface.LeaveOneOut(ctx, a.workers())
+	finish()
+	if err != nil {
+		return err
+	}
+	residuals := left.Residuals()
+	for i := range residuals {
+		residuals[i] = -residuals[i]
+	}
+	r.xy, r.z = l.digits(a.decimals)
+	figures := r.figures("leave-one-out", residuals)
+	// What standards make of checkpoints they do not make of this.
+	none := number{math.NaN(), 0}
+	figures.NSSDA95, figures.RMSE2023, figures.Interval1990, figures.IntervalNMAS = none, none, none, none
+	r.LeaveOneOut = &leaveOneOutFigures{left.Predicted, left.Outline, left.Lined, figures}
+	if left.Predicted < leastPredicted {
+		a.report.Warn("few-predicted", fmt.Sprintf("leave-one-out: %s predicted: too few to say anything", counted(left.Predicted, "reading")), "predicted", left.Predicted)
+	}
+	return nil
+}
+
+// leastPredicted is how many predictions say something: common sense, no standard.
+const leastPredicted = 5

@@ -19,15 +19,16 @@ import (
 
 // accuracyReport is what accuracy writes.
 type accuracyReport struct {
-	Residual    string           `json:"residual"` // what it is
-	Checkpoints checkpointCounts `json:"checkpoints"`
-	Spread      spreadFigures    `json:"spread"`
-	All         groupFigures     `json:"all"`
-	By          string           `json:"by,omitempty"`
-	Groups      []groupFigures   `json:"groups,omitempty"`
+	Residual    string            `json:"residual"` // what it is
+	Checkpoints *checkpointCounts `json:"checkpoints,omitempty"`
+	Spread      *spreadFigures    `json:"spread,omitempty"`
+	All         *groupFigures     `json:"all,omitempty"`
+	By          string            `json:"by,omitempty"`
+	Groups      []groupFigures    `json:"groups,omitempty"`
 	// OwnError is the checkpoints' own, where it is given.
-	OwnError *number `json:"checkpoints_error,omitempty"`
-	Asked    asked   `json:"asked"`
+	OwnError    *number             `json:"checkpoints_error,omitempty"`
+	Asked       *asked              `json:"asked,omitempty"`
+	LeaveOneOut *leaveOneOutFigures `json:"leave_one_out,omitempty"`
 
 	c         *checkpoints
 	by        parsed[readings.Role]
@@ -55,6 +56,14 @@ type spreadFigures struct {
 	Closest   number `json:"closest_two"`
 	Diagonal  number `json:"diagonal"`
 	Even      bool   `json:"even"`
+}
+
+// leaveOneOutFigures say how far readings are from the surface of all the others.
+type leaveOneOutFigures struct {
+	Predicted int          `json:"predicted"`
+	Outline   int          `json:"outline"`  // that cannot be predicted
+	OnLines   int          `json:"on_lines"` // of those predicted
+	Figures   groupFigures `json:"figures"`
 }
 
 // asked is how many checkpoints the standards ask for at least.
@@ -108,7 +117,9 @@ func (r *accuracyReport) figures(name string, residuals []float64) groupFigures 
 func (a *accuracyCommand) write(list []*input, l *loaded, r *accuracyReport, out *outputs) error {
 	r.Residual = "surface minus checkpoint"
 	r.By = a.by.text
-	r.Asked = asked{accuracy.LeastNSSDA, accuracy.Least2023}
+	if r.c != nil {
+		r.Asked = &asked{accuracy.LeastNSSDA, accuracy.Least2023}
+	}
 	if r.combined {
 		r.OwnError = &number{r.own, r.z}
 	}
@@ -140,7 +151,17 @@ func (a *accuracyCommand) write(list []*input, l *loaded, r *accuracyReport, out
 }
 
 // groups returns all, and then the groups.
-func (r *accuracyReport) groups() []groupFigures { return append([]groupFigures{r.All}, r.Groups...) }
+func (r *accuracyReport) groups() []groupFigures {
+	var list []groupFigures
+	if r.All != nil {
+		list = append(list, *r.All)
+	}
+	list = append(list, r.Groups...)
+	if r.LeaveOneOut != nil {
+		list = append(list, r.LeaveOneOut.Figures)
+	}
+	return list
+}
 
 // writeText writes the report for people.
 func (r *accuracyReport) writeText(w io.Writer, labels *reading) error {
@@ -148,9 +169,13 @@ func (r *accuracyReport) writeText(w io.Writer, labels *reading) error {
 	line := func(subject, format string, values ...any) {
 		fmt.Fprintf(b, "%-11s "+format+"\n", append([]any{subject}, values...)...)
 	}
-	c, g := r.Checkpoints, r.All
-	line("checkpoints", "%d read: %d compared, %d outside the surface, %d merged, %d left out, %d refused", c.Read, c.Compared, c.Outside, c.Merged, c.LeftOut, c.Refused)
-	line("residuals", "surface minus checkpoint, in the unit of z: above zero the surface is too high")
+	if c := r.Checkpoints; c != nil {
+		line("checkpoints", "%d read: %d compared, %d outside the surface, %d merged, %d left out, %d refused", c.Read, c.Compared, c.Outside, c.Merged, c.LeftOut, c.Refused)
+	}
+	if p := r.LeaveOneOut; p != nil {
+		line("left out", "one by one: %s predicted from all the others, %d of them on lines; %d on the outline cannot be", countedVertices(p.Predicted), p.OnLines, p.Outline)
+	}
+	line("residuals", "surface minus what was measured, in the unit of z: above zero the surface is too high")
 	for _, label := range [][2]string{{"system", labels.crs.String()}, {"datum xy", labels.horizontalDatum.String()}, {"datum z", labels.verticalDatum.String()}} {
 		if label[1] != "" {
 			line(label[0], "%s", label[1])
@@ -166,6 +191,19 @@ func (r *accuracyReport) writeText(w io.Writer, labels *reading) error {
 		fmt.Fprintf(t, "%s\t%d\t%v\t%v\t%v\t%v\t%v\t%v\t%v\t%v\t%v\t\n", name, g.Count, g.Mean, g.Median, g.StdDev, g.Skewness, g.ExcessKurtosis, g.RMSE, g.Percentile95, g.Min, g.Max)
 	}
 	t.Flush()
+	if r.All != nil {
+		r.writeStandards(line)
+	}
+	if r.LeaveOneOut != nil {
+		line("note", "leaving out says how well readings agree and how dense they are for this ground; an error that all share does not show")
+	}
+	line("caution", "says how well the surface fits what it is compared with; which accuracy class a survey meets is for a licensed person to state")
+	return b.Flush()
+}
+
+// writeStandards writes what the standards make of the checkpoints.
+func (r *accuracyReport) writeStandards(line func(subject, format string, values ...any)) {
+	g := r.All
 	line("NSSDA", "vertical accuracy at 95 %%: %v, which is 1.9600 x RMSE; tested by %s, at least %d asked", g.NSSDA95, counted(g.Count, "checkpoint"), accuracy.LeastNSSDA)
 	line("", "(FGDC-STD-007.3-1998; takes the errors to be normal and without a bias, and the checkpoints to be independent and more accurate)")
 	text := fmt.Sprintf("RMSE %v; the checkpoints' own error is not given, and not in it", g.RMSE)
@@ -183,8 +221,6 @@ func (r *accuracyReport) writeText(w io.Writer, labels *reading) error {
 		even = "the NSSDA's advice is a fifth in each quadrant and a tenth of the diagonal apart"
 	}
 	line("spread", "south-west %d, south-east %d, north-west %d, north-east %d; closest two %v apart, diagonal %v: %s", q[0], q[1], q[2], q[3], r.Spread.Closest, r.Spread.Diagonal, even)
-	line("caution", "says how well the surface fits these checkpoints; which accuracy class a survey meets is for a licensed person to state")
-	return b.Flush()
 }
 
 // groupNamesCSV head the columns of the statistics.

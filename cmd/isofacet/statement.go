@@ -117,7 +117,7 @@ func (p *program) writeStatement(file *outfile.File) error {
 			f.ZUnit = s.Value
 		}
 	}
-	if a, ok := rec.Result.(*accuracyReport); ok {
+	if a, ok := rec.Result.(*accuracyReport); ok && a.All != nil {
 		f.AccuracyRMSE, f.AccuracyOf = a.All.RMSE.String(), a.All.Count
 	}
 	f.GradientAndArrow = slices.Contains([]string{"flow"}, rec.Command)
