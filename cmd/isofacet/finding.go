@@ -19,6 +19,7 @@ import (
 // readings; what names files and lines goes to standard error.
 type finding struct {
 	Readings    counts           `json:"readings"`
+	Units       unitsFound       `json:"units"`
 	Extent      extents          `json:"extent"`
 	Spacing     number           `json:"spacing"`
 	Surface     surfaceCounts    `json:"surface"`
@@ -30,6 +31,22 @@ type finding struct {
 	Warnings    []report.Warning `json:"warnings"`
 
 	reasons [4]string // of the suggestions
+}
+
+// unitsFound are the units that the numbers are in, null where unstated.
+type unitsFound struct {
+	XY *string `json:"xy"`
+	Z  *string `json:"z"`
+}
+
+func (m *measures) unitsFound() unitsFound {
+	stated := func(unit string) *string {
+		if unit == "" {
+			return nil
+		}
+		return &unit
+	}
+	return unitsFound{stated(m.xyOut()), stated(m.zOut())}
 }
 
 type counts struct {
@@ -102,6 +119,7 @@ func (p *program) find(l *loaded, r *reading, w *writing) (*finding, error) {
 	}
 	f := &finding{
 		Readings:    counts{c.Read, c.Used, c.Merged, c.LeftOut, c.Refused},
+		Units:       r.unitsFound(),
 		Extent:      l.extents(w.decimals),
 		Spacing:     number{spacing, xy},
 		Surface:     l.surfaceCounts(w.decimals),
