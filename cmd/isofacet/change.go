@@ -70,8 +70,8 @@ func newChange(p *program) *cobra.Command {
 	const sides, maps = "Sides", "Maps of the change"
 	fs := cmd.Flags()
 	manual.Add(fs,
-		manual.Option{Group: sides, Name: "from", Value: &c.from, Text: "the earlier side: a file of readings, or round=NAME"},
-		manual.Option{Group: sides, Name: "to", Value: &c.to, Text: "the later side: a file of readings, or round=NAME"})
+		manual.Option{Group: sides, Name: "from", Value: &c.from, Text: beforeText},
+		manual.Option{Group: sides, Name: "to", Value: &c.to, Text: afterText})
 	for _, o := range slices.Concat(c.grid.options(), c.contour.options()) {
 		if slices.Contains([]string{"cell", "extent", "extent-outward", "values-at", "layout", "no-data", "interval", "count-from", "levels", "index-every", "shortest"}, o.Name) && fs.Lookup(o.Name) == nil {
 			o.Group = maps

@@ -94,7 +94,7 @@ func newFlow(p *program) *cobra.Command {
 	const group = "Flow"
 	fs := cmd.Flags()
 	manual.Add(fs,
-		manual.Option{Group: group, Name: "sigma", Value: &c.sigma, Default: "unknown; the misfit stands for it", Text: uncertain},
+		manual.Option{Group: group, Name: "sigma", Value: &c.sigma, Default: "unknown; the misfit stands for it", Text: sigmaOptionText},
 		manual.Option{Group: group, Name: "method", Value: &c.method, Text: "what lines and arrows follow: the planes of the triangles, or the one through all wells"},
 		manual.Option{Group: group, Name: "starts", Value: &c.starts, Text: "file of places where flow lines begin, - for standard input"},
 		manual.Option{Group: group, Name: "arrows", Value: &c.arrows, Default: "none", Text: "distance of arrows, which stand on whole multiples of it"},

@@ -55,7 +55,7 @@ func (w *writing) writingOptions(parts, formats []string) []manual.Option {
 		{Group: group, Name: "decimals", Value: &w.decimals,
 			Text: "digits after the point; auto: two more than the readings have; full: the shortest text that reads back to the same number"},
 		{Group: group, Name: "record", Value: &w.record,
-			Text: "file for the run record: inputs with hashes, settings, what was not used and why, ranges, warnings, outputs with hashes"},
+			Text: recordText},
 		{Group: group, Name: "method-statement", Value: &w.statement,
 			Text: "file for a paragraph about the method, a caption for the figure, and what they leave open"},
 	}
@@ -329,3 +329,6 @@ func (o *outputs) tell() {
 	n := len(o.p.report.Warnings())
 	o.p.report.Note("warnings: "+fmt.Sprint(n), "warnings", n)
 }
+
+// recordText is what --record is, in every command.
+const recordText = "file for the run record: inputs with hashes, settings, what was not used and why, ranges, warnings, outputs with hashes"

@@ -54,7 +54,6 @@ const (
 	acrossText = "distance of sections square to the line of --along"
 	leftText   = "how far sections reach to the left of the line"
 	rightText  = "how far sections reach to the right of the line"
-	uncertain  = "standard uncertainty of a height, or of a head"
 )
 
 // The parts of profiles.

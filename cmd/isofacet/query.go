@@ -35,12 +35,12 @@ With --explain a row also holds the triangle's number (from 1, triangles sorted 
 their corners), its three readings counter-clockwise, the one with the smallest x
 first, and the weight of each: the value is the sum of weight times reading.
 
---also adds how far values can be trusted. ` + trustLong
+--add adds how far values can be trusted. ` + trustLong
 
 const queryExample = `isofacet query sample:gravel-pit/shots.csv --at 431250,5621500 --at 431260,5621500
 isofacet query sample:gravel-pit/shots.csv --at sample:gravel-pit/checks.csv --out checked.csv
 isofacet query sample:gravel-pit/shots.csv --spots --spots-every 50 --out spots.geojson
-isofacet query sample:gravel-pit/shots.csv --at 431250,5621500 --also distance
+isofacet query sample:gravel-pit/shots.csv --at 431250,5621500 --add distance
 echo 431250 5621500 | isofacet query sample:gravel-pit/shots.csv --at - --explain`
 
 // newQuery is "isofacet query".
@@ -66,7 +66,7 @@ func newQuery(p *program) *cobra.Command {
 		manual.Option{Group: group, Name: "spots", Value: &q.spots, Switch: true, Text: "ask at the summits, pits and saddles of the surface"},
 		manual.Option{Group: group, Name: "spots-every", Value: &q.spotsEvery, Default: "none", Text: "ask on a lattice of this distance, at its whole multiples in x and y"},
 		manual.Option{Group: group, Name: "explain", Value: &q.explain, Switch: true, Text: "add the triangle, its readings and their weights"},
-		manual.Option{Group: group, Name: "also", Value: &q.also, Default: "nothing", Text: "add columns: some of " + strings.Join(trustNames, ", ") + ", with commas between"})
+		manual.Option{Group: group, Name: "add", Value: &q.also, Default: "nothing", Text: "columns to add: some of " + strings.Join(trustNames, ", ") + ", with commas between"})
 	manual.Add(fs, q.trustOptions(group)...)
 	manual.Add(fs, q.reading.readingOptions()...)
 	manual.Add(fs, q.writing.writingOptions([]string{"table"}, []string{formatCSV, formatGeoJSON})...)
@@ -137,7 +137,7 @@ func (q *queryCommand) check(files []string) error {
 		return err
 	}
 	if q.sigma.IsSet() && !slices.Contains(q.also.value, showUncertainty) {
-		return status.Usage(errors.New("--sigma without uncertainty: expected it to be asked for"), "add --also uncertainty, or leave --sigma out")
+		return status.Usage(errors.New("--sigma without uncertainty: expected it to be asked for"), "add --add uncertainty, or leave --sigma out")
 	}
 	return q.asking.check(len(files) == 0 || slices.Contains(files, "-"))
 }

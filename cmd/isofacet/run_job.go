@@ -70,7 +70,7 @@ func newRun(p *program) *cobra.Command {
 		manual.Option{Group: group, Name: "redo", Value: &r.redo, Switch: true, Text: "run tasks that are done already and unchanged as well"},
 		manual.Option{Group: group, Name: "record-in", Value: &r.recordIn, Text: "run again what this run record holds, and compare the bytes"},
 		manual.Option{Group: group, Name: "schema", Value: &r.schema, Text: "write the JSON Schema of job files, or that of run records, and do nothing else"},
-		manual.Option{Group: groupOutput, Name: "record", Value: &r.record, Text: "file for the run record of all tasks"})
+		manual.Option{Group: groupOutput, Name: "record", Value: &r.record, Text: recordText})
 	manual.Add(fs, p.runningOptions()...)
 	return cmd
 }

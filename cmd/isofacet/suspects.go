@@ -62,8 +62,6 @@ type leaveOutFound struct {
 
 type suspectFound struct {
 	ID       *string `json:"id"`
-	File     string  `json:"file"`
-	Line     int     `json:"line"`
 	X        number  `json:"x"`
 	Y        number  `json:"y"`
 	Z        number  `json:"z"`
@@ -73,6 +71,10 @@ type suspectFound struct {
 	Off      number  `json:"off"` // in scales
 	Reason   string  `json:"reason"`
 
+	// Where it was read is said in words and in the file of suspects: the report is the
+	// same in whatever order the lines come.
+	file    string
+	line    int
 	inRun   bool
 	reading int // -1 for a vertex of a line
 	place   string
@@ -227,7 +229,7 @@ func (f *suspectsFound) name(l *loaded, res *suspect.Result, sequence []int, cod
 		name := l.nameVertex(v, xy)
 		i := int(l.inputs[v])
 		if i < l.set.Len() {
-			s.reading, s.ID, s.File, s.Line = i, name.Reading, l.names[l.set.Source(i)], int(l.set.Lines[i])
+			s.reading, s.ID, s.file, s.line = i, name.Reading, l.names[l.set.Source(i)], int(l.set.Lines[i])
 		}
 		s.place = l.inputPlace(i)
 		f.Listed = append(f.Listed, s)

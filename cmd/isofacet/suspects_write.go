@@ -69,7 +69,7 @@ func (f *suspectsFound) writeTable(w io.Writer, l *loaded, r *reading) error {
 			return status.With(status.WrongData, fmt.Errorf("%s: a suspect without an id, at a place that was converted: expected ids, by which --exclude can find it", s.place),
 				"write the suspects before converting: leave --to-xy-unit and --fit out")
 		}
-		if err := row(id, x, y, s.Z.String(), s.Expected.String(), s.Residual.String(), s.Scale.String(), s.Reason, s.File, strconv.Itoa(s.Line), "", ""); err != nil {
+		if err := row(id, x, y, s.Z.String(), s.Expected.String(), s.Residual.String(), s.Scale.String(), s.Reason, s.file, strconv.Itoa(s.line), "", ""); err != nil {
 			return err
 		}
 	}

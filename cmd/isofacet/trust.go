@@ -55,6 +55,9 @@ func trustIncludes(name string) string {
 	return ""
 }
 
+// sigmaOptionText is what --sigma is, in every command.
+const sigmaOptionText = "standard uncertainty of readings and vertices of lines that have none of their own, in the unit of z"
+
 // trusting is what the command line says of uncertainty.
 type trusting struct {
 	sigma option.Number
@@ -65,7 +68,7 @@ func (t *trusting) trustOptions(group string) []manual.Option {
 	t.sigma = option.Number{Least: &zero}
 	return []manual.Option{
 		{Group: group, Name: "sigma", Value: &t.sigma, Default: "the readings' column sigma",
-			Text: "standard uncertainty of readings and vertices of lines that have none of their own, in the unit of z"},
+			Text: sigmaOptionText},
 	}
 }
 

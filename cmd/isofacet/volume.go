@@ -55,6 +55,12 @@ isofacet volume --to sample:gravel-pit/shots.csv --without code=BP --stage-step 
 isofacet volume --from sample:landfill/heads-2024-q1.csv --to level=100 --format json`
 
 // newVolume is "isofacet volume".
+// What the two sides are, in every command.
+const (
+	beforeText = "what was before: a file, or where the command takes them level=Z or round=NAME"
+	afterText  = "what is after: the same"
+)
+
 func newVolume(p *program) *cobra.Command {
 	c := &volumeCommand{program: p, grid: &gridCommand{program: p}, contour: &contourCommand{program: p}}
 	cmd := &cobra.Command{
@@ -130,11 +136,11 @@ func (c *volumeCommand) options() []manual.Option {
 	c.areaUnit = parsed[units.Area]{form: "m2|ft2|ha|acre", parse: units.ParseArea}
 	const sides, where, more, maps = "Surfaces", "Where", "Tables and uncertainty", "Maps of the difference"
 	list := []manual.Option{
-		{Group: sides, Name: "from", Value: &c.from, Text: "the surface before: readings, triangles, a raster, or level=Z"},
-		{Group: sides, Name: "to", Value: &c.to, Text: "the surface after: readings, triangles, a raster, or level=Z"},
+		{Group: sides, Name: "from", Value: &c.from, Text: beforeText},
+		{Group: sides, Name: "to", Value: &c.to, Text: afterText},
 		{Group: sides, Name: "from-vertices", Value: &c.fromVertices, Text: "the table of vertices that goes with a table of triangles in --from"},
 		{Group: sides, Name: "to-vertices", Value: &c.toVertices, Text: "the table of vertices that goes with a table of triangles in --to"},
-		{Group: sides, Name: "no-data", Value: &c.noData, Default: "an empty field; NaN in raw files", Text: "number that stands for no value in rasters"},
+		{Group: sides, Name: "no-data", Value: &c.noData, Default: "an empty field; NaN in raw files", Text: "number that stands for no value"},
 		{Group: where, Name: "inside", Value: &c.inside, Repeatable: true, Text: "polygons within which to measure, one by one"},
 		{Group: where, Name: "toe", Value: &c.toe, Repeatable: true, Text: "rings at the foot of piles, or along the crest of pits"},
 		{Group: where, Name: "toe-base", Value: &c.toeBase, Text: "what --toe measures from: a level, the plane through the ring's vertices, or triangles between them"},
@@ -143,7 +149,7 @@ func (c *volumeCommand) options() []manual.Option {
 		{Group: more, Name: "along", Value: &c.along, Text: alongText},
 		{Group: more, Name: "left", Value: &c.left, Default: "as far as the surfaces reach", Text: leftText},
 		{Group: more, Name: "right", Value: &c.right, Default: "as far as the surfaces reach", Text: rightText},
-		{Group: more, Name: "sigma", Value: &c.heightSigma, Text: uncertain},
+		{Group: more, Name: "sigma", Value: &c.heightSigma, Text: sigmaOptionText},
 		{Group: more, Name: "simulate", Value: &c.simulate, Text: "draw all heights so many times, as a check of the uncertainty"},
 	}
 	list = append(list,
