@@ -101,5 +101,5 @@ func middleOf(values []float64) float64 {
 	if n%2 == 1 {
 		return values[n/2]
 	}
-	return values[n/2-1]/2 + values[n/2]/2
+	return float64(values[n/2-1]/2) + float64(values[n/2]/2)
 }

@@ -120,7 +120,7 @@ func (g *Ground) shaken(r *rand.Rand, order []triangulate.Vertex, sigma []float6
 	for _, v := range order {
 		noise := -6.0
 		for range 12 {
-			noise += r.Float64()
+			noise += float64(r.Float64())
 		}
 		z[v] = g.Surface.Z()[v] + float64(sigma[v]*noise)
 	}

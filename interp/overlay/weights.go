@@ -93,7 +93,7 @@ func (p *polygon) tents(x *side, t triangulate.Triangle, origin *orb.Point) (sum
 		m := [2]float64{(a[0] + b[0] + d[0]) / 3, (a[1] + b[1] + d[1]) / 3}
 		for k := range 3 {
 			at := cross(m, c[after[k]], c[after[after[k]]]) / whole
-			sum[part][k] += float64(area*min(max(at, 0), 1)) / 2
+			sum[part][k] += float64(area * min(max(at, 0), 1) / 2)
 		}
 	}
 	first := p.first()

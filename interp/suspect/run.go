@@ -156,7 +156,7 @@ func settle(x, scale []float64, first, last int) (a, b int, amount, spread float
 	for range 3 {
 		// The evidence of a shot is (x² - (x - amount)²) / 2: positive nearer the amount.
 		evidence := func(i int) float64 {
-			return float64(amount*x[i]) - amount*amount/2
+			return float64(amount*x[i]) - float64(float64(amount*amount)/2)
 		}
 		middle := (first + last) / 2
 		best, sum := math.Inf(-1), 0.0

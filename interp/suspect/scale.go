@@ -145,5 +145,5 @@ func median(values []float64) float64 {
 	if n%2 == 1 {
 		return values[n/2]
 	}
-	return values[n/2-1]/2 + values[n/2]/2
+	return float64(values[n/2-1]/2) + float64(values[n/2]/2)
 }

@@ -28,6 +28,7 @@ func Slips(z, expected, tolerance float64, decimals int) (found []Slip) {
 		return nil
 	}
 	try := func(would float64, format string, args ...any) {
+		would = float64(would) // it may be a product
 		if math.Abs(would-expected) > tolerance {
 			return
 		}
