@@ -13,7 +13,6 @@ import (
 	"sync"
 
 	"isofacet/cmd/internal/job"
-	"isofacet/cmd/internal/memory"
 	"isofacet/cmd/internal/option"
 	"isofacet/cmd/internal/record"
 	"isofacet/cmd/internal/report"
@@ -224,7 +223,7 @@ func (b *batch) one(ctx context.Context, i int, beside bool) {
 		}
 	}
 	err := s.run(ctx)
-	if _, big := errors.AsType[*memory.TooBig](err); big && beside {
+	if code, _ := explain(err); err != nil && code == status.TooBig && beside {
 		b.mu().Lock()
 		b.lone = append(b.lone, i)
 		b.mu().Unlock()

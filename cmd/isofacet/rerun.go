@@ -1,7 +1,6 @@
 package main
 
 import (
-	"encoding/json"
 	"errors"
 	"fmt"
 	"io"
@@ -122,9 +121,11 @@ func (r *runCommand) recorded(name string, rec *record.Record) ([]recordedTask, 
 				continue
 			}
 			one := recordedTask{Task: t}
-			if err := json.Unmarshal(t.Stable, &one.stable); err != nil {
+			stable, err := record.ReadStable(t.Stable)
+			if err != nil {
 				return nil, status.With(status.WrongData, fmt.Errorf("%s: task %q: %w: expected the stable part of a run record", name, t.Name, err), "a run record is what --record writes")
 			}
+			one.stable = *stable
 			all = append(all, one)
 		}
 	}

@@ -58,7 +58,6 @@ type step struct {
 
 	// What a run leaves.
 	words  bytes.Buffer
-	stable []byte
 	record *record.Record
 }
 

@@ -3,7 +3,6 @@ package main
 import (
 	"crypto/sha256"
 	"encoding/hex"
-	"encoding/json"
 	"io"
 	"os"
 	"strings"
@@ -83,8 +82,8 @@ func (b *batch) unchanged(s *step, e job.Entry) bool {
 	if e.Key != b.stepKey(s) || s.standard {
 		return false
 	}
-	var stable record.Stable
-	if json.Unmarshal(e.Stable, &stable) != nil {
+	stable, err := record.ReadStable(e.Stable)
+	if err != nil {
 		return false
 	}
 	for _, in := range stable.Inputs {

@@ -6,6 +6,7 @@ import (
 	"errors"
 	"fmt"
 	"io"
+	"slices"
 )
 
 // Kind is what every record says it is.
@@ -36,8 +37,27 @@ func Read(r io.Reader) (*Record, error) {
 	if err := dec.Decode(&rec); err != nil {
 		return nil, fmt.Errorf("%w: expected a run record of this version", err)
 	}
-	if rec.Stable.Command == "" {
-		return nil, errors.New("no command: expected a run record")
+	return &rec, rec.Stable.check()
+}
+
+// ReadStable reads the stable part of a task.
+func ReadStable(text json.RawMessage) (*Stable, error) {
+	var s Stable
+	if err := json.Unmarshal(text, &s); err != nil {
+		return nil, err
 	}
-	return &rec, nil
+	return &s, s.check()
+}
+
+// check refuses what no run can have written, so that nobody trips over it.
+func (s *Stable) check() error {
+	if s.Command == "" {
+		return errors.New("no command: expected a run record")
+	}
+	for _, f := range slices.Concat(s.Inputs, s.Outputs) {
+		if f == nil || f.Name == "" {
+			return errors.New("an input or output without a name: expected a run record")
+		}
+	}
+	return nil
 }
