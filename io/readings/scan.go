@@ -53,6 +53,7 @@ type scanner struct {
 	summary *Summary
 	bad     BadLines
 	hit     []atomic.Bool
+	unmet   unmet
 
 	done, total int64 // bytes
 }
@@ -89,6 +90,9 @@ func (s *scanner) run(sources []Source) (*Summary, error) {
 	}
 	if s.o.Select.Exclude != nil {
 		s.summary.Warnings = append(s.summary.Warnings, s.o.Select.Exclude.warnings(s.hit)...)
+	}
+	if len(sources) > 0 {
+		s.summary.Warnings = append(s.summary.Warnings, s.unmet.warnings(sources[0].Name)...)
 	}
 	if s.bad.Total > 0 && !s.o.Lenient {
 		s.bad.Good = s.summary.Counts.Read - s.bad.Total
@@ -227,6 +231,7 @@ func (s *scanner) rolesToChooseBy(p *plan) *PositionError {
 // inline parses a file that is in memory already.
 func (s *scanner) inline(ctx context.Context, f *file) error {
 	w := newWorker(f.plan, s.o, s.hit)
+	defer s.unmet.add(w)
 	for {
 		if err := ctx.Err(); err != nil {
 			return err
@@ -288,6 +293,7 @@ func (s *scanner) parallel(ctx context.Context, f *file) error {
 	for range s.o.Workers {
 		workers.Go(func() {
 			w := newWorker(f.plan, s.o, s.hit)
+			defer s.unmet.add(w)
 			for {
 				select {
 				case p, ok := <-todo:

@@ -169,3 +169,33 @@ func TestBadExclusions(t *testing.T) {
 		t.Error("a reader that fails was read")
 	}
 }
+
+// A pattern that nothing meets is told with what there is instead.
+func TestPatternsThatNothingMeets(t *testing.T) {
+	text := "id,x,y,z,code,round\nA,0,0,1,GRD,r1\nB,1,0,2,EP,r2\nC,0,1,3,,r2\n"
+	for _, c := range []struct {
+		only []Pattern
+		want string
+	}{
+		{[]Pattern{{Round, "r3"}}, "a.csv: nothing is round=r3: there are r1, r2"},
+		{[]Pattern{{Code, "X*"}, {Code, "Y"}}, "a.csv: nothing is code=X*, code=Y: there are (none), EP, GRD"},
+		{[]Pattern{{Code, "X*"}, {Code, "EP"}}, ""},
+	} {
+		for _, workers := range []int{1, 3} {
+			s, err := Scan(context.Background(), []Source{FromBytes("a.csv", []byte(text))}, Options{Workers: workers, Select: Selection{Only: c.only}},
+				func(*Block) error { return nil })
+			if err != nil {
+				t.Fatal(err)
+			}
+			got := ""
+			for _, w := range s.Warnings {
+				if strings.Contains(w.String(), "nothing is") {
+					got = w.String()
+				}
+			}
+			if got != c.want {
+				t.Errorf("%v: %q, want %q", c.only, got, c.want)
+			}
+		}
+	}
+}
