@@ -211,8 +211,8 @@ func (m *meeting) addTo(sums *totals, t triangulate.Triangle, at *places) {
 		corners[k], d[k] = at.location(v), at.d[v]
 	}
 	var poly polygon
-	for i := range m.found {
-		f := &m.found[i]
+	for i := range m.found.n {
+		f := &m.found.of[i]
 		if f.t >= m.inner.shown {
 			continue
 		}

@@ -272,3 +272,22 @@ func constrained(t testing.TB, pts []orb.Point, segs []triangulate.Segment, z []
 	}
 	return s
 }
+
+// Thousands of triangles within one of the other surface, both ways: nothing is counted
+// twice or left out.
+func TestCrowd(t *testing.T) {
+	r := rand.New(rand.NewPCG(11, 3))
+	crowd := func(x0, y0 float64) ([]orb.Point, []float64) {
+		p, z := scatter(r, 1500, x0, y0, 0.5, 0, 1, 0)
+		return append(p, orb.Point{0, 0}, orb.Point{10, 0}, orb.Point{10, 10}, orb.Point{0, 10}), append(z, 0, 1, 2, 3)
+	}
+	p, z := crowd(1, 1)
+	q, y := crowd(8, 8.5)
+	a, b := surface(t, p, z), surface(t, q, y)
+	f, g := figures(t, a, b, 0), figures(t, b, a, 0)
+	near(t, "covered", f.Covered, 100, 1e-12)
+	near(t, "net", f.Net, b.VolumeAboveZero()-a.VolumeAboveZero(), 1e-11)
+	if f.Cut.Volume != g.Fill.Volume || f.Fill.Volume != g.Cut.Volume || f.Pieces != g.Pieces {
+		t.Errorf("there %+v, and back %+v", f, g)
+	}
+}

@@ -30,18 +30,21 @@ func (m *meeting) piece(f *innerTriangle, at *[3]triangulate.Location, d *[3]flo
 	poly.n = 0
 	var c [3]*corner
 	for j := range c {
-		c[j] = &m.corners[f.c[j]]
+		c[j] = &m.corners.of[f.c[j]]
 	}
 	origin := &m.p[0]
-	if before(&c[0].p, origin) {
-		origin = &c[0].p
+	if before(c[0].p, origin) {
+		origin = c[0].p
 	}
 	poly.origin = origin
 	var enters, leaves [3]*crossing
 	var leavesOver [3]int
 	some := false
 	for j := range 3 {
-		e := &m.edges[f.e[j]]
+		if f.e[j] < 0 {
+			continue
+		}
+		e := &m.edges.of[f.e[j]]
 		next := c[after[j]]
 		for i := range e.n {
 			x := &e.cross[i]
@@ -75,7 +78,7 @@ func (m *meeting) piece(f *innerTriangle, at *[3]triangulate.Location, d *[3]flo
 	}
 	if !some && c[0].inside() { // all of f
 		for _, v := range c {
-			poly.add(&v.p, 0, 0, v.d, origin)
+			poly.add(v.p, 0, 0, v.d, origin)
 		}
 	}
 }
@@ -97,7 +100,7 @@ func (m *meeting) holds(f *innerTriangle, k int, at *triangulate.Location) (in b
 		}
 	case triangulate.OnVertex:
 		for j, c := range f.c {
-			if m.corners[c].v == at.Vertex {
+			if m.corners.of[c].v == at.Vertex {
 				return true, after[j]
 			}
 		}
@@ -115,11 +118,11 @@ func (m *meeting) alongEdge(c *[3]*corner, k int, poly *polygon, origin *orb.Poi
 			n++
 		}
 	}
-	if n == 2 && before(&c[on[1]].p, &c[on[0]].p) == m.up[k] {
+	if n == 2 && before(c[on[1]].p, c[on[0]].p) == m.up[k] {
 		on[0], on[1] = on[1], on[0]
 	}
 	for _, j := range on[:n] {
-		poly.add(&c[j].p, 0, 0, c[j].d, origin)
+		poly.add(c[j].p, 0, 0, c[j].d, origin)
 		poly.chain(c, after[j], origin)
 	}
 	return n > 0
@@ -129,7 +132,7 @@ func (m *meeting) alongEdge(c *[3]*corner, k int, poly *polygon, origin *orb.Poi
 // triangle.
 func (p *polygon) chain(c *[3]*corner, j int, origin *orb.Point) {
 	for c[j].inside() && p.n < len(p.at) {
-		p.add(&c[j].p, 0, 0, c[j].d, origin)
+		p.add(c[j].p, 0, 0, c[j].d, origin)
 		j = after[j]
 	}
 }
