@@ -9,6 +9,8 @@ wells            = "sample:landfill/wells.csv"
 only             = "zone=shallow"
 each             = "round"
 round-span       = "1d"
+xy-unit          = "ft-us"
+z-unit           = "ft-us"
 vertical-datum   = "site benchmark BM-1"
 horizontal-datum = "site grid"
 
