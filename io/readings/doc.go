@@ -36,6 +36,12 @@
 // are x y z; anything else has to be declared. A water level is asked about: it may
 // be a depth or an elevation. A declared role that is not used here is an error.
 //
+// Rows that hold a depth and no value, or no place, become readings by way of a
+// Reducer (see package wells), or of DepthFrom. A Transform leads places and values
+// to another unit or grid. OneOf refuses readings of several rounds, or heads of
+// several zones, at once. Account keeps what was read of every row that is not used.
+// ReadRoles and ReadWords read the small tables that stand beside the readings.
+//
 // # Conventions
 //
 // x is east, y north, z up. Coordinates and values are 0 or from 1e-60 to 1e60 in
