@@ -45,6 +45,7 @@ type flowState struct {
 	wells       int
 	why         string // there is no direction
 	plane       *flow.Plane
+	worst       int // reading that the plane misses most
 	three       []flow.Solution
 	ids         []int32 // of every vertex, its first reading
 	lines       []flowLine
@@ -268,9 +269,10 @@ func (j *flowing) onlyOne(out *outputs) error {
 func (j *flowing) work(ctx context.Context, s *flowState, out *outputs) error {
 	var at []orb.Point
 	var heads []float64
+	var used []int
 	for i, p := range s.l.set.Points {
 		if s.l.contains(p) {
-			at, heads = append(at, p), append(heads, s.l.set.Z[i])
+			at, heads, used = append(at, p), append(heads, s.l.set.Z[i]), append(used, i)
 		}
 	}
 	plane, err := flow.Fit(at, heads, j.sigmaOf())
@@ -282,13 +284,13 @@ func (j *flowing) work(ctx context.Context, s *flowState, out *outputs) error {
 	if err != nil {
 		return err
 	}
-	s.plane, s.wells = plane, plane.Wells
+	s.plane, s.wells, s.worst = plane, plane.Wells, used[plane.Worst]
 	if v := plane.Verdict(); v != flow.Sound {
 		j.report.Warn("verdict", fmt.Sprintf("%s: %v%s", s.name(), v, j.because(s, v)), "round", s.round, "zone", s.zone, "verdict", v.String())
 	}
 	if j.method.Word() == methodPlane {
 		j.report.Note(fmt.Sprintf("fitted plane: %s: it misses the heads by %v (root mean square), at most by %v at %s", s.name(),
-			number{plane.RMS, j.z}, number{plane.WorstResidual, j.z}, j.wellName(s, j.worst(s))))
+			number{plane.RMS, j.z}, number{plane.WorstResidual, j.z}, j.wellName(s, s.worst)))
 	}
 	surface := s.l.surface
 	m := surface.Mesh()
@@ -310,20 +312,6 @@ func (j *flowing) because(s *flowState, v flow.Verdict) string {
 		return fmt.Sprintf(": ± %.0f degrees", s.plane.Gradient.AzimuthSigma())
 	}
 	return ""
-}
-
-// worst is the reading that the plane misses most.
-func (j *flowing) worst(s *flowState) int {
-	best := -1
-	for i, p := range s.l.set.Points {
-		if !s.l.contains(p) {
-			continue
-		}
-		if r := s.plane.Residual(p, s.l.set.Z[i]); r == s.plane.WorstResidual && best < 0 {
-			best = i
-		}
-	}
-	return best
 }
 
 // wellName is the id of a reading, or its place in the file.

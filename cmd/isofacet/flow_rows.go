@@ -69,7 +69,7 @@ func (j *flowing) row(s *flowState) flowRow {
 	case j.sigma.IsSet():
 		r.SigmaFrom = "given"
 	}
-	r.WorstWell, r.WorstResidual = j.wellName(s, j.worst(s)), number{p.WorstResidual, j.z}
+	r.WorstWell, r.WorstResidual = j.wellName(s, s.worst), number{p.WorstResidual, j.z}
 	r.Verdict = p.Verdict().String()
 	if j.porosity.IsSet() {
 		r.Velocity = number{flow.SeepageVelocity(j.conductivity.value, float64(g.Size()*j.ratio), j.porosity.Value.Float64()), j.decimals.Resolve(velocityDigits)}

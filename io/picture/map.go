@@ -1,9 +1,11 @@
 package picture
 
 import (
+	"cmp"
 	"fmt"
 	"io"
 	"math"
+	"slices"
 	"strconv"
 
 	"github.com/paulmach/orb"
@@ -295,8 +297,11 @@ func (m *Map) bandName(number int) string {
 // dotApart is how far apart dots are, in hundredths of a millimetre: at most one in each square of that size, the first that comes.
 const dotApart = 30
 
-// Readings draws dots, smaller ones if there are many, so that lines below them stay visible.
+// Readings draws dots, smaller ones if there are many, so that lines below them stay visible. Which of those that would hide each
+// other is drawn does not depend on their order.
 func (m *Map) Readings(points []orb.Point) error {
+	points = slices.Clone(points)
+	slices.SortFunc(points, func(p, q orb.Point) int { return cmp.Or(cmp.Compare(p[0], q[0]), cmp.Compare(p[1], q[1])) })
 	m.dotRadius = dotMost
 	if n := len(points); n > dotMany {
 		m.dotRadius = max(dotLeast, dotMost*math.Sqrt(dotMany/float64(n)))
