@@ -37,6 +37,11 @@ depression (a closed line round lower ground); a band has lower and upper. A CSV
 of lines has a vertex a row: line, level, rank, closed, x, y. An SVG is a quick
 look: index lines heavier and with their level, the outline, a scale bar.
 
+--inferred-beyond D divides lines where they come further than D from the nearest
+reading or vertex of a line. What lies beyond has inferred true in GeoJSON and CSV,
+and is dashed in an SVG. The parts of a closed line are open; depression stays that of
+the whole line. It says how far the readings are, not how wrong the line may be.
+
 --from-raster draws through a raster instead of readings, a CSV or raw file as
 grid writes them: straight through each square between four nodes, the mean of
 the four deciding where a line could turn either way.`
@@ -44,6 +49,7 @@ the four deciding where a line could turn either way.`
 const contourExample = `isofacet contour sample:gravel-pit/shots.csv --interval 1 --out pit.geojson
 isofacet contour sample:gravel-pit/shots.csv --levels 205,210,215 --bands
 isofacet contour sample:landfill/heads-2024-q1.csv --interval 0.5 --out q1.svg
+isofacet contour sample:landfill/heads-2024-q1.csv --levels 410 --inferred-beyond 90
 isofacet grid sample:gravel-pit/shots.csv --cell 5 --out raster.csv
 isofacet contour --from-raster raster.csv --interval 2 --format csv | head`
 
@@ -94,6 +100,7 @@ type contourCommand struct {
 	bands        manual.Switch
 	shortest     option.Number
 	showReadings manual.Switch
+	inferred     option.Number
 	fromRaster   typed
 	noData       option.Number
 }
@@ -103,7 +110,7 @@ func (c *contourCommand) options() []manual.Option {
 	c.interval = parsed[decimal.Number]{form: "D", parse: parseInterval}
 	c.levels = parsed[[]decimal.Number]{form: "Z,Z,...", parse: parseLevels}
 	c.indexEvery = parsed[int]{value: 5, text: "5", form: "N", parse: parseEvery}
-	c.shortest = option.Number{Least: &zero}
+	c.shortest, c.inferred = option.Number{Least: &zero}, option.Number{Least: &zero}
 	c.fromRaster = typed{form: "FILE"}
 	const group = groupIsolines
 	return []manual.Option{
@@ -115,6 +122,8 @@ func (c *contourCommand) options() []manual.Option {
 		{Group: group, Name: "bands", Value: &c.bands, Switch: true, Text: "filled bands between the levels instead of lines"},
 		{Group: group, Name: "shortest", Value: &c.shortest, Default: "0",
 			Text: "leave out lines shorter than this, in the unit of x and y, and list them"},
+		{Group: group, Name: "inferred-beyond", Value: &c.inferred, Default: "nothing is marked",
+			Text: "divide lines where they come further than this from the nearest reading, in the unit of x and y, and mark what lies beyond as inferred"},
 		{Group: group, Name: "show-readings", Value: &c.showReadings, Switch: true, Text: "a dot at every reading in an SVG"},
 		{Group: group, Name: "from-raster", Value: &c.fromRaster,
 			Text: "raster to draw through instead of readings: a CSV or raw file, - for a CSV on standard input"},
@@ -218,6 +227,8 @@ func (c *contourCommand) check(cmd *cobra.Command, files []string) error {
 		return status.Usage(errors.New("--no-data with a raw raster: expected none: its description says what stands for no value"), "leave --no-data out")
 	case len(files) > 0:
 		return status.Usage(fmt.Errorf("%q beside --from-raster: expected readings or a raster, not both", files[0]), "leave one of them out")
+	case c.inferred.IsSet():
+		return status.Usage(errors.New("--inferred-beyond with --from-raster: expected readings from which to measure"), "leave --inferred-beyond out: a raster has none")
 	case bool(c.showReadings):
 		return status.Usage(errors.New("--show-readings with --from-raster: expected readings to show"), "leave --show-readings out: a raster has none")
 	}
@@ -249,6 +260,8 @@ func (c *contourCommand) unused(cmd *cobra.Command, dests []*destination) error 
 	switch fs := cmd.Flags(); {
 	case !lines && c.shortest.IsSet():
 		return status.Usage(errors.New("--shortest without lines: expected an output of lines: bands cover the whole surface"), "leave --shortest out")
+	case !ranked && c.inferred.IsSet():
+		return status.Usage(errors.New("--inferred-beyond without lines: expected an output of lines: bands are not divided"), "leave --inferred-beyond out")
 	case !ranked && fs.Changed("index-every"):
 		return status.Usage(errors.New("--index-every without lines: expected an output of lines: bands have no rank"), "leave --index-every out")
 	case !svg && bool(c.showReadings):

@@ -62,13 +62,18 @@ func (b *featureBatch) flush() error {
 // lineFeatures returns what writes the isolines as GeoJSON.
 func (d *drawing) lineFeatures(ctx context.Context) func(*geojson.Writer) error {
 	return func(w *geojson.Writer) error {
-		b := newFeatureBatch(w, 4)
-		err := d.eachLine(ctx, func(l *contour.Line) error {
-			return b.add(geojson.Feature{Geometry: geojson.Geometry{Shape: l.Points}}, l.Level.Z,
+		b := newFeatureBatch(w, 5)
+		properties := make([]geojson.Property, 0, 5)
+		err := d.eachPart(ctx, func(l *contour.Line, inferred bool) error {
+			properties = append(properties[:0],
 				geojson.Property{Name: "level", Value: geojson.Number(l.Level.Z)},
 				geojson.Property{Name: "rank", Value: geojson.String(l.Level.Rank.String())},
 				geojson.Property{Name: "closed", Value: geojson.Bool(l.Closed)},
 				geojson.Property{Name: "depression", Value: geojson.Bool(l.Depression)})
+			if d.inferred.IsSet() {
+				properties = append(properties, geojson.Property{Name: "inferred", Value: geojson.Bool(inferred)})
+			}
+			return b.add(geojson.Feature{Geometry: geojson.Geometry{Shape: l.Points}}, l.Level.Z, properties...)
 		})
 		if err != nil {
 			return err

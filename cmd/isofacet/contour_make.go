@@ -8,6 +8,8 @@ import (
 
 	"isofacet/cmd/internal/status"
 	"isofacet/contour"
+	"isofacet/interp"
+	"isofacet/triangulate"
 	"isofacet/triangulate/exact"
 )
 
@@ -28,6 +30,15 @@ type linesResult struct {
 	Length        number      `json:"length"`
 	WithoutLength int64       `json:"without_length"`
 	TooShort      []shortLine `json:"too_short"`
+	// Inferred says what lies beyond the distance from the nearest reading; null if that
+	// was not asked.
+	Inferred *inferredResult `json:"inferred"`
+}
+
+type inferredResult struct {
+	Beyond string `json:"beyond"`
+	Parts  int    `json:"parts"`
+	Length number `json:"length"`
 }
 
 // shortLine is a line that was left out for being short.
@@ -72,6 +83,8 @@ type drawing struct {
 	xy     int // digits after the point of coordinates
 	result contourResult
 	made   []contour.Band // once they are wanted
+
+	nearest *interp.Nearest // for inferred parts
 }
 
 // make draws and writes. What goes to standard output comes last: it cannot be
@@ -198,6 +211,50 @@ func (d *drawing) levelDigits() int {
 		digits = max(digits, l.Number.Decimals())
 	}
 	return d.decimals.Resolve(digits)
+}
+
+// eachPart gives the lines to use, or their parts where some are to be marked as inferred.
+// The first time it says what came out.
+func (d *drawing) eachPart(ctx context.Context, use func(l *contour.Line, inferred bool) error) error {
+	if !d.inferred.IsSet() {
+		return d.eachLine(ctx, func(l *contour.Line) error { return use(l, false) })
+	}
+	if d.nearest == nil {
+		if m := d.g.l.surface.Mesh(); m.HasConstraints() {
+			if err := d.announce("the nearest readings", d.g.taken()+uint64(m.NumVertices())*bytesReading); err != nil {
+				return err
+			}
+		}
+		var err error
+		if d.nearest, err = d.g.l.surface.Nearest(ctx, triangulate.Options{Workers: d.workers()}); err != nil {
+			return err
+		}
+	}
+	first := d.result.Lines == nil
+	splitter := contour.NewSplitter(d.nearest, d.inferred.Value.Float64())
+	r := inferredResult{Beyond: d.inferred.String()}
+	var length exact.Sum
+	err := d.eachLine(ctx, func(l *contour.Line) error {
+		for _, part := range splitter.Split(l) {
+			piece := contour.Line{Level: l.Level, Closed: part.Closed, Depression: l.Depression, Points: part.Points}
+			if part.Inferred {
+				r.Parts++
+				length.Add(piece.Length())
+			}
+			if err := use(&piece, part.Inferred); err != nil {
+				return err
+			}
+		}
+		return nil
+	})
+	if err != nil || !first {
+		return err
+	}
+	r.Length = number{length.Value(), d.xy}
+	d.result.Lines.Inferred = &r
+	d.report.Note(fmt.Sprintf("inferred: %s, length %v, further than %s from the nearest reading", counted(r.Parts, "part"), r.Length, r.Beyond),
+		"parts", r.Parts, "length", r.Length, "beyond", r.Beyond)
+	return nil
 }
 
 // eachLine gives the lines to use. The first time it says what came out.

@@ -31,8 +31,8 @@ func (d *drawing) picture(ctx context.Context, dest *destination) error {
 			}
 		}
 	}
-	err = d.eachLine(ctx, func(l *contour.Line) error {
-		return m.Isoline(picture.Isoline{Level: l.Level.Number.String(), Index: l.Level.Rank == contour.Index, Points: l.Points})
+	err = d.eachPart(ctx, func(l *contour.Line, inferred bool) error {
+		return m.Isoline(picture.Isoline{Level: l.Level.Number.String(), Index: l.Level.Rank == contour.Index, Inferred: inferred, Points: l.Points})
 	})
 	if err != nil {
 		return err
@@ -76,6 +76,9 @@ func (d *drawing) mapOptions(rims []orb.Ring, bands bool) picture.MapOptions {
 		for _, l := range d.levels {
 			opt.Bands = append(opt.Bands, l.Number.String())
 		}
+	}
+	if d.inferred.IsSet() {
+		opt.Notes = append(opt.Notes, "dashed: inferred, further than "+d.inferred.String()+" from the nearest reading")
 	}
 	return opt
 }

@@ -8,7 +8,7 @@ import (
 )
 
 func (d *drawing) tables() linecsv.Options {
-	return linecsv.Options{XYDecimals: d.xy, Workers: d.workers()}
+	return linecsv.Options{XYDecimals: d.xy, Inferred: d.inferred.IsSet(), Workers: d.workers()}
 }
 
 // lineTable writes the isolines as CSV, a vertex a row.
@@ -22,8 +22,8 @@ func (d *drawing) lineTable(ctx context.Context, dest *destination) error {
 		batch, positions = batch[:0], 0
 		return err
 	}
-	err := d.eachLine(ctx, func(l *contour.Line) error {
-		batch = append(batch, linecsv.Line{Level: l.Level.Z, Rank: l.Level.Rank.String(), Closed: l.Closed, Points: l.Points})
+	err := d.eachPart(ctx, func(l *contour.Line, inferred bool) error {
+		batch = append(batch, linecsv.Line{Level: l.Level.Z, Rank: l.Level.Rank.String(), Closed: l.Closed, Inferred: inferred, Points: l.Points})
 		if positions += len(l.Points); positions < batchPositions {
 			return nil
 		}

@@ -16,13 +16,20 @@ type Line struct {
 	Level  float64
 	Rank   string
 	Closed bool // the last of Points repeats the first
-	Points orb.LineString
+	// Inferred is written if the Options say so.
+	Inferred bool
+	Points   orb.LineString
 }
 
-// NewLines returns a Writer of the table line,level,rank,closed,x,y.
+// NewLines returns a Writer of the table line,level,rank,closed,x,y, with inferred in front of x
+// if the Options say so.
 func NewLines(w io.Writer, opt Options) *Writer[Line] {
+	header := "line,level,rank,closed,x,y"
+	if opt.Inferred {
+		header = "line,level,rank,closed,inferred,x,y"
+	}
 	return newWriter(w, opt, table[Line]{
-		name: "line", header: "line,level,rank,closed,x,y",
+		name: "line", header: header,
 		weight: func(l *Line) int { return len(l.Points) + 1 }, rows: lineRows,
 	})
 }
@@ -41,6 +48,9 @@ func lineRows(dst []byte, opt *Options, l *Line, number int) ([]byte, *WriteErro
 	front = append(numtext.Append(front, l.Level, numtext.Shortest), ',')
 	front = append(appendText(front, l.Rank), ',')
 	front = append(strconv.AppendBool(front, l.Closed), ',')
+	if opt.Inferred {
+		front = append(strconv.AppendBool(front, l.Inferred), ',')
+	}
 	return vertices(dst, front, l.Points, opt)
 }
 

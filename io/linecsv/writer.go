@@ -13,6 +13,8 @@ import (
 type Options struct {
 	XYDecimals, ZDecimals          int
 	SlopeDecimals, AzimuthDecimals int
+	// Inferred adds a column to lines.
+	Inferred bool
 	// Workers encode what WriteBatch is given; 0 means one per CPU.
 	Workers int
 }

@@ -34,9 +34,11 @@ type MapOptions struct {
 
 // Isoline is one line of a Map.
 type Isoline struct {
-	Level  string // its text
-	Index  bool
-	Points orb.LineString
+	Level string // its text
+	Index bool
+	// Inferred draws it dashed.
+	Inferred bool
+	Points   orb.LineString
 }
 
 // Report says what became of what was given to a Map.
@@ -208,6 +210,9 @@ func (m *Map) drawn(points []orb.Point, what string) ([]spot, error) {
 	return m.spots, nil
 }
 
+// inferredDash is how inferred lines are drawn: dashes of 2 mm, as is the trade's custom.
+const inferredDash = ` stroke-dasharray="2 1.2"`
+
 // Isoline draws a line. Lines of one level that come one behind the other are one group, with the level as its title.
 func (m *Map) Isoline(l Isoline) error {
 	spots, err := m.drawn(l.Points, "isoline at "+l.Level)
@@ -218,7 +223,11 @@ func (m *Map) Isoline(l Isoline) error {
 	if l.Index {
 		colour, width, kind = indexInk, indexWidth, "index "
 	}
-	m.group(kind+l.Level, `stroke="`+colour+`" stroke-width="`+mm(width)+`" stroke-linejoin="round" stroke-linecap="round"`, withUnit(l.Level, m.opt.Labels.ZUnit))
+	dash := ""
+	if l.Inferred {
+		kind, dash = "inferred "+kind, inferredDash
+	}
+	m.group(kind+l.Level, `stroke="`+colour+`" stroke-width="`+mm(width)+`"`+dash+` stroke-linejoin="round" stroke-linecap="round"`, withUnit(l.Level, m.opt.Labels.ZUnit))
 	m.put(`<path d="`)
 	m.buf = way(m.buf, spots)
 	m.put("\"/>\n")
