@@ -49,7 +49,7 @@ the four deciding where a line could turn either way.`
 const contourExample = `isofacet contour sample:gravel-pit/shots.csv --interval 1 --out pit.geojson
 isofacet contour sample:gravel-pit/shots.csv --levels 205,210,215 --bands
 isofacet contour sample:landfill/heads-2024-q1.csv --interval 0.5 --out q1.svg
-isofacet contour sample:landfill/heads-2024-q1.csv --levels 410 --inferred-beyond 90
+isofacet contour sample:gravel-pit/shots.csv --interval 2 --inferred-beyond 9
 isofacet grid sample:gravel-pit/shots.csv --cell 5 --out raster.csv
 isofacet contour --from-raster raster.csv --interval 2 --format csv | head`
 
