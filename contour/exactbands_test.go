@@ -197,8 +197,13 @@ func (e *exactBands) near(band int, p orb.Point, off float64) bool {
 	return slices.ContainsFunc(e.borders[band], func(s border) bool { return s.within(p, off) })
 }
 
-// placesMost bounds how many places of a surface are looked at.
-const placesMost = 150
+// placesMost bounds how many places of a surface, and points of a ring, are looked at.
+func placesMost() int {
+	if *long {
+		return 150
+	}
+	return 50
+}
 
 // checkPlaces checks what the report of bands promises, by rationals.
 func checkPlaces(s *interp.Surface, levels Levels, bands []Band, numbers []int, r BandReport) error {
@@ -213,7 +218,7 @@ func checkPlaces(s *interp.Surface, levels Levels, bands []Band, numbers []int, 
 	// What is given lies no further than Off from what is exact.
 	for i, b := range bands {
 		for _, ring := range b.Polygon {
-			for k := 1; k < len(ring); k += 1 + len(ring)/placesMost {
+			for k := 1; k < len(ring); k += 1 + len(ring)/placesMost() {
 				if !e.near(numbers[i], ring[k], r.Off) {
 					return fmt.Errorf("polygon %d of band %d: (%v, %v) is further than %v from the border", i, numbers[i], ring[k][0], ring[k][1], r.Off)
 				}
@@ -221,7 +226,7 @@ func checkPlaces(s *interp.Surface, levels Levels, bands []Band, numbers []int, 
 		}
 	}
 	// Places further than Off from the border of their band lie in it; and where a polygon is, its band is no further than Off.
-	for i := 0; i < len(e.places); i += 1 + len(e.places)/placesMost {
+	for i := 0; i < len(e.places); i += 1 + len(e.places)/placesMost() {
 		p, want := e.places[i], e.bandAt(i)
 		found := false
 		for k, b := range bands {

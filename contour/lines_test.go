@@ -3,6 +3,7 @@ package contour
 import (
 	"context"
 	"errors"
+	"flag"
 	"fmt"
 	"slices"
 	"testing"
@@ -23,6 +24,9 @@ func levelAt(z float64) Level {
 	}
 	return Level{Number: n, Z: z}
 }
+
+// long asks for 150 places of a surface in place of 50, and for mutations on all samples.
+var long = flag.Bool("long", false, "check bands at more places, and mutations of them on every sample")
 
 // eachSample runs check on many samples of every kind.
 func eachSample(t *testing.T, check func(s *interp.Surface, levels Levels) error) {

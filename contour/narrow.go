@@ -56,7 +56,8 @@ type nearest struct {
 	known  []int32
 }
 
-// lookNear begins to look for the readings near the lines of n, within what borders have ever been off.
+// lookNear begins to look for the readings near the lines of n, within three times what rounding of crossings comes to:
+// no border has been seen further off.
 func lookNear(n *net, src source, zs []float64, workers int) *nearest {
 	bound := orb.Bound{Min: n.points[0], Max: n.points[0]}
 	for _, p := range n.points {
