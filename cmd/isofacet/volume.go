@@ -267,6 +267,8 @@ func (c *volumeCommand) check(cmd *cobra.Command, dests []*destination) error {
 		return usage("leave them out", "--left and --right without --sections: expected sections")
 	case c.simulate.text != "" && !c.heightSigma.IsSet():
 		return usage("such as --sigma 0.02", "--simulate without --sigma: expected the standard uncertainty of heights")
+	case c.simulate.text != "" && len(c.boundary.values)+len(c.voids.values) > 0:
+		return usage("measure --inside the boundary instead", "--simulate with --boundary or --voids: expected surfaces that are whole")
 	case has(partRaster) != c.grid.cell.IsSet():
 		return usage("such as --cell 5 --out raster=FILE.csv", "--cell and --out raster: expected both or neither")
 	case has(partLines, partBands) != (c.contour.interval.text != "" || c.contour.levels.text != ""):

@@ -205,7 +205,7 @@ func (v *volumes) recordSides() {
 func (v *volumes) write(ctx context.Context, out *outputs) error {
 	slices.SortStableFunc(out.list, func(a, b *destination) int { return boolCompare(a.path == "-", b.path == "-") })
 	v.result.Cautions = volumeCautions
-	if v.heightSigma.IsSet() {
+	if v.uncertain() {
 		v.result.Cautions = append(slices.Clone(v.result.Cautions), "The stated uncertainty comes from the heights alone, taken as independent; what nobody measured between them is not in it.")
 	}
 	v.result.Warnings = v.report.Warnings()

@@ -9,6 +9,7 @@ import (
 	"isofacet/cmd/internal/report"
 	"isofacet/cmd/internal/status"
 	"isofacet/interp/overlay"
+	"isofacet/io/readings"
 	"isofacet/triangulate"
 )
 
@@ -128,7 +129,7 @@ func (v *volumes) sideResult(s *surfaceSide) *sideResult {
 
 func (v *volumes) measureRegion(ctx context.Context, r *measuredRegion) (*regionResult, error) {
 	progress, finish := v.display.Stage("measuring")
-	opt := overlay.Options{Workers: v.workers(), Weights: v.heightSigma.IsSet(), Progress: progress}
+	opt := overlay.Options{Workers: v.workers(), Weights: v.uncertain(), Progress: progress}
 	var f *overlay.Figures
 	var base *baseResult
 	var err error
@@ -151,7 +152,7 @@ func (v *volumes) measureRegion(ctx context.Context, r *measuredRegion) (*region
 	if err := v.shares(ctx, r, f, out); err != nil {
 		return nil, err
 	}
-	if v.heightSigma.IsSet() {
+	if v.uncertain() {
 		if err := v.uncertainty(ctx, r, f, out); err != nil {
 			return nil, err
 		}
@@ -240,15 +241,54 @@ func (v *volumes) shares(ctx context.Context, r *measuredRegion, f *overlay.Figu
 	return nil
 }
 
+// uncertain tells whether anything is known of the uncertainty of heights.
+func (v *volumes) uncertain() bool {
+	if v.heightSigma.IsSet() {
+		return true
+	}
+	for _, s := range v.sides() {
+		if s.l != nil && s.l.set.Has(readings.Sigma) {
+			return true
+		}
+	}
+	return false
+}
+
+// sigmasOf returns the standard uncertainties of a side's heights: those of readings
+// are their own where they have some. nil is none.
+func (v *volumes) sigmasOf(s *surfaceSide) ([]float64, error) {
+	switch {
+	case s == nil || s.ground.Surface == nil:
+		return nil, nil
+	case s.l != nil && (v.heightSigma.IsSet() || s.l.set.Has(readings.Sigma)):
+		return s.l.sigmas(&v.reading, &trusting{sigma: v.heightSigma})
+	case v.heightSigma.IsSet():
+		return overlay.Level(s.ground.Surface.Mesh(), v.heightSigma.Value.Float64()), nil
+	}
+	return nil, nil
+}
+
+// toReadings hands weights of what boundary and voids left on to the whole surface.
+func (s *surfaceSide) toReadings(w *overlay.VertexWeights) {
+	if s == nil || s.l == nil || s.l.drawn.cut == nil || w.All == nil {
+		return
+	}
+	cut := s.l.drawn.cut
+	w.Cut, w.Fill, w.All = cut.Spread(w.Cut), cut.Spread(w.Fill), cut.Spread(w.All)
+}
+
 // uncertainty adds that of the volumes to a region's figures.
 func (v *volumes) uncertainty(ctx context.Context, r *measuredRegion, f *overlay.Figures, out *regionResult) error {
-	sigma := func(s *surfaceSide) []float64 {
-		if s == nil || s.ground.Surface == nil {
-			return nil
-		}
-		return overlay.Level(s.ground.Surface.Mesh(), v.heightSigma.Value.Float64())
+	from, err := v.sigmasOf(v.from)
+	if err != nil {
+		return err
 	}
-	from, to := sigma(v.from), sigma(v.to)
+	to, err := v.sigmasOf(v.to)
+	if err != nil {
+		return err
+	}
+	v.from.toReadings(&f.Weights.From)
+	v.to.toReadings(&f.Weights.To)
 	out.Uncertainty = v.spread(f.Weights.Uncertainty(from, to))
 	if v.simulate.text == "" {
 		return nil
