@@ -34,7 +34,7 @@ matter, --status-table explains others:
 
 `
 
-const accountExample = `isofacet readings sample:landfill/gauging.csv --wells sample:landfill/wells.csv --round 2024-Q3
+const accountExample = `isofacet readings sample:landfill/gauging.csv --wells sample:landfill/wells.csv --round 2024-Q3 --only zone=shallow
 isofacet readings sample:landfill/gauging.csv --wells sample:landfill/wells.csv --round 2024-Q3 --only zone=shallow --out wells.geojson
 isofacet readings sample:gravel-pit/shots.csv --exclude sample:gravel-pit/decisions.csv --without code=BP --out shots-used.csv`
 
