@@ -11,6 +11,7 @@ import (
 
 	"github.com/paulmach/orb"
 
+	"isofacet/cmd/internal/record"
 	"isofacet/cmd/internal/status"
 	"isofacet/interp"
 	"isofacet/interp/flow"
@@ -25,7 +26,8 @@ type flowing struct {
 	list   []*input
 	starts []flowStart
 	states []*flowState
-	ratio  float64 // z units in a unit of x and y, to make gradients plain numbers
+	parts  []readings.Part // as they were read, those without a state too
+	ratio  float64         // z units in a unit of x and y, to make gradients plain numbers
 	xy, z  int
 	slope  int
 	angle  int
@@ -114,6 +116,7 @@ func (j *flowing) load(ctx context.Context) error {
 	if err != nil {
 		return err
 	}
+	j.parts = parts
 	several := 0
 	for _, p := range parts {
 		if p.Err != nil || p.Set.Len() > 0 {
@@ -228,11 +231,7 @@ func (j *flowing) make(ctx context.Context, out *outputs) error {
 		return err
 	}
 	if j.rec != nil {
-		for _, s := range j.states {
-			if s.l != nil && len(j.states) == 1 {
-				j.recordReadings(j.list, s.l)
-			}
-		}
+		j.recordParts()
 		j.rec.Stable.Result = j.rows()
 	}
 	for _, d := range out.list {
@@ -244,6 +243,19 @@ func (j *flowing) make(ctx context.Context, out *outputs) error {
 		return err
 	}
 	return out.commit()
+}
+
+// recordParts puts the account of all readings into the record: every line is in one
+// part, but for lines that could not be taken apart, which are in each.
+func (j *flowing) recordParts() {
+	all := &record.Readings{NotUsed: []record.NotUsed{}}
+	for _, p := range j.parts {
+		c := p.Set.Counts
+		all.Read, all.Used, all.Merged = all.Read+c.Read, all.Used+c.Used, all.Merged+c.Merged
+		all.LeftOut, all.Refused = all.LeftOut+c.LeftOut, all.Refused+c.Refused
+		all.NotUsed = append(all.NotUsed, j.notUsed(j.list, p.Set)...)
+	}
+	j.rec.Stable.Readings = all
 }
 
 // onlyOne refuses a map of several rounds or zones, and a rose without an arrow.
