@@ -39,7 +39,7 @@ const usualReach = 0.9
 type surroundings struct {
 	r    *triangulate.Reduction
 	pos  []orb.Point
-	seen map[triangulate.Vertex]struct{}
+	seen vertexSet
 
 	ring, next, link []triangulate.Vertex
 	about            []triangulate.Vertex
@@ -47,7 +47,7 @@ type surroundings struct {
 }
 
 func newSurroundings(m *triangulate.Mesh) *surroundings {
-	return &surroundings{r: m.Reduction(), pos: m.Positions(), seen: map[triangulate.Vertex]struct{}{}}
+	return &surroundings{r: m.Reduction(), pos: m.Positions()}
 }
 
 // neighbours returns the neighbours of v, in an order that depends on their places
@@ -75,21 +75,20 @@ func (s *surroundings) neighbours(v triangulate.Vertex) []triangulate.Vertex {
 // The neighbours of v are not among them: each of them may be expected where it is
 // because of v.
 func (s *surroundings) gather(v triangulate.Vertex, depths, enough int, use func(triangulate.Vertex) bool) {
-	clear(s.seen)
+	s.seen.reset()
 	s.about = s.about[:0]
-	s.seen[v] = struct{}{}
+	s.seen.add(v)
 	s.ring = append(s.ring[:0], v)
 	for depth := 1; depth <= depths && (depth <= depthMost || len(s.about) < enough); depth++ {
 		s.next = s.next[:0]
 		for _, u := range s.ring {
 			for _, w := range s.neighbours(u) {
-				if len(s.seen) == seenMost {
+				if s.seen.count == seenMost {
 					break
 				}
-				if _, ok := s.seen[w]; ok {
+				if !s.seen.add(w) {
 					continue
 				}
-				s.seen[w] = struct{}{}
 				s.next = append(s.next, w)
 				if depth > 1 && len(s.about) < nearMost && use(w) {
 					s.about = append(s.about, w)
@@ -146,4 +145,35 @@ func median(values []float64) float64 {
 		return values[n/2]
 	}
 	return float64(values[n/2-1]/2) + float64(values[n/2]/2)
+}
+
+// vertexSet holds up to seenMost vertices, in a table that need not be cleared: an entry
+// counts if it has the stamp of now.
+type vertexSet struct {
+	vertex [1 << 9]triangulate.Vertex
+	stamp  [1 << 9]uint32
+	now    uint32
+	count  int
+}
+
+func (s *vertexSet) reset() {
+	if s.now++; s.now == 0 {
+		clear(s.stamp[:])
+		s.now = 1
+	}
+	s.count = 0
+}
+
+// add tells whether v is new.
+func (s *vertexSet) add(v triangulate.Vertex) bool {
+	i := uint32(v) * 2654435769 >> 23
+	for s.stamp[i] == s.now {
+		if s.vertex[i] == v {
+			return false
+		}
+		i = (i + 1) & (1<<9 - 1)
+	}
+	s.vertex[i], s.stamp[i] = v, s.now
+	s.count++
+	return true
 }
