@@ -77,7 +77,9 @@ func (p *program) newRoot() *cobra.Command {
 	p.root = root
 	root.AddCommand(p.commands()...)
 	root.SetHelpCommand(&cobra.Command{Use: "help", Hidden: true, RunE: p.help})
-	cobra.EnableCommandSorting = false
+	if p.step == nil { // steps run side by side, and the library's settings are everyone's
+		cobra.EnableCommandSorting = false
+	}
 	root.SetOut(p.out)
 	root.SetErr(p.display)
 	root.SetFlagErrorFunc(flagFault)
@@ -87,7 +89,9 @@ func (p *program) newRoot() *cobra.Command {
 			cmd.Args = filesOnly
 		}
 		option.Once(cmd.Flags(), manual.Repeatable(cmd.Flags())...)
-		completeChoices(cmd)
+		if p.step == nil {
+			completeChoices(cmd)
+		}
 		p.forEach(cmd)
 	}
 	return root
