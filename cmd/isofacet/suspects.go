@@ -102,7 +102,7 @@ type codeFound struct {
 
 // runsMost is how many readings are looked through for runs: books of shots are much
 // smaller, and sweeps of a scanner have no rod.
-const runsMost = 1_000_000
+const runsMost = 200_000
 
 // bytesSuspect is what looking for suspects takes a reading beside the surface.
 const bytesSuspect = 110
@@ -133,10 +133,11 @@ func (p *program) suspects(ctx context.Context, l *loaded, r *reading, opt *susp
 		f.Factor.v = opt.factor.Value.Float64()
 	}
 	o := suspect.Options{Factor: f.Factor.v, ScaleLeast: decimal.Float64(1, l.decimalsZ), Workers: p.workers()}
-	sequence := l.sequence()
-	if len(sequence) > runsMost {
+	var sequence []int
+	if l.set.Len() > runsMost {
 		f.NoRuns = fmt.Sprintf("more than %d readings", runsMost)
 	} else {
+		sequence = l.sequence()
 		o.Sequence = make([]triangulate.Vertex, len(sequence))
 		for k, i := range sequence {
 			o.Sequence[k] = m.VertexOf(i)
