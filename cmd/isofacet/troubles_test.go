@@ -39,7 +39,7 @@ var troubles = []trouble{
 	{"degrees in a job of lengths", "grid a.csv --cell 5", one("a.csv", "id,x,y,z\n1,5.1234,51.9123,10\n2,5.1334,51.9223,25\n3,5.1434,51.9103,12\n"), 3,
 		[]string{"x 5.1234 to 5.1434, y 51.9103 to 51.9223 look like degrees: expected projected coordinates for a cell of 5"}, nil, "guards"},
 	{"a wrong rod height: a run of shots moved by one amount", "inspect a.csv", one("a.csv", rodSlipped()), 0,
-		nil, []string{"shots 311 to 322 (12): 0.", "above what others expect", "rod height?"}, "suspects"},
+		nil, []string{"nothing is corrected\nrun        shots 311 to 322 (12): 0.", "above what others expect", "rod height?\nsuggested"}, "suspects"},
 	{"a height that cannot be", "inspect a.csv --expect-z 5,20", one("a.csv", "id,x,y,z\nA,0,0,10\nB,10,0,11.5\nC,0,10,115\n"), 3,
 		[]string{"a.csv:4: C: z 115\n", "1 reading of 3 outside: expected all from 5 to 20"}, nil, "guards"},
 	{"a code for no value among the heights", "query a.csv --at 0,0 --missing -9999", one("a.csv", "id,x,y,z\nA,0,0,10\nB,10,0,11\nC,0,10,12\nD,5,5,-9999\n"), 0,

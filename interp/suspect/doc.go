@@ -36,6 +36,7 @@
 //
 // Shots in succession that are moved by one amount vouch for each other. So each is also
 // expected from all but the sixteen shots about it in the sequence; a run is a stretch of
-// five and more that lie off to one side by one amount. Groups are codes most of whose
-// shots lie off to one side: tops of walls, trees.
+// five and more that lie off to one side by one amount. The clearest is taken out and
+// what lies beside it expected anew, before the next is named. Groups are codes most of
+// whose shots lie off to one side: tops of walls, trees.
 package suspect

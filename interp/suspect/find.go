@@ -56,7 +56,8 @@ type Result struct {
 	// Suspects are those that lie furthest off first.
 	Suspects []Suspect
 	// Together are readings that were off in groups of neighbours, to one side: steps
-	// and edges of the ground where no lines are, or runs. They are no suspects.
+	// and edges of the ground where no lines are. They are no suspects. Runs are not
+	// among them.
 	Together []triangulate.Vertex
 	// Runs are shots in succession moved by one amount, as they come in the sequence.
 	Runs []Run
@@ -85,14 +86,16 @@ func Find(ctx context.Context, s *interp.Surface, left *interp.LeftOut, opt Opti
 	if err := f.settle(ctx); err != nil {
 		return nil, err
 	}
-	res := &Result{Scale: f.scale, Suspects: f.confirm(), Together: f.together()}
+	res := &Result{Scale: f.scale}
+	if res.Runs, err = f.runs(ctx, opt.Sequence); err != nil {
+		return nil, err
+	}
+	f.without(res.Runs)
+	res.Suspects, res.Together = f.confirm(), f.together()
 	for _, scale := range f.scale {
 		if scale == scale {
 			res.Judged++
 		}
-	}
-	if res.Runs, err = f.runs(ctx, opt.Sequence); err != nil {
-		return nil, err
 	}
 	res.Groups = f.groups(opt.Group, res.Suspects)
 	slices.SortFunc(res.Suspects, func(a, b Suspect) int {

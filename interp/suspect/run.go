@@ -50,7 +50,10 @@ const (
 // run does not vouch for itself. A run begins as a stretch of shots that lie off to one
 // side; its ends are where the sum of the evidence for "moved by this amount" against
 // "not moved" is largest (a likelihood ratio; Page 1954).
-func (f *finder) runs(ctx context.Context, sequence []triangulate.Vertex) ([]Run, error) {
+//
+// The shots of the clearest run are taken out before the others are judged: those that lie
+// next to a run look off to the other side.
+func (f *finder) runs(ctx context.Context, sequence []triangulate.Vertex) (found []Run, err error) {
 	var at []int // places in the sequence of those that can be expected
 	var vs []triangulate.Vertex
 	for i, v := range sequence {
@@ -61,130 +64,161 @@ func (f *finder) runs(ctx context.Context, sequence []triangulate.Vertex) ([]Run
 	if len(vs) < 3*blockLength {
 		return nil, nil
 	}
-	x, reach, err := f.missBlocks(ctx, vs)
+	w := &walk{f: f, vs: vs, x: make([]float64, len(vs)), reach: make([]float64, len(vs)), taken: make([]bool, len(vs))}
+	if err := w.miss(ctx, 0, len(vs)); err != nil {
+		return nil, err
+	}
+	w.judge(f.opt.ScaleLeast)
+	chosen, err := w.choose(ctx)
 	if err != nil {
 		return nil, err
 	}
-	residual := slices.Clone(x)
-	scale := centre(x, reach, f.opt.ScaleLeast)
-	var found []Run
-	for first := 0; first < len(x); first++ {
-		side := math.Copysign(1, x[first])
-		off := func(i int) bool { return side*x[i] > runOff*scale[i] }
-		if !off(first) {
-			continue
-		}
-		last, count := first, 1
-		for i := first + 1; i < len(x) && i <= last+2; i++ {
-			if off(i) {
-				last = i
-				count++
-			}
-		}
-		if count < runLeast {
-			continue
-		}
-		if a, b, amount, spread, ok := settle(x, scale, first, last); ok {
-			run := Run{First: at[a], Last: at[b], Amount: amount, Spread: spread, Scale: scale[first]}
-			for i := a; i <= b; i++ {
-				run.Shots = append(run.Shots, Shot{vs[i], residual[i]})
-			}
-			found = append(found, run)
-			last = max(last, b)
-		}
-		first = last
+	slices.SortFunc(chosen, func(a, b stretchOff) int { return a.first - b.first })
+	for _, c := range chosen {
+		c.run.First, c.run.Last = at[c.first], at[c.last]
+		found = append(found, c.run)
 	}
 	return found, nil
 }
 
-// missBlocks returns how far each of vs lies from what all but the block about it
-// expect, and how far that reaches. There are two ways to cut into blocks; the one counts in which it lies further
-// from the block's ends.
-func (f *finder) missBlocks(ctx context.Context, vs []triangulate.Vertex) (x, reach []float64, err error) {
-	x, reach = make([]float64, len(vs)), make([]float64, len(vs))
+// A walk is the shots of a sequence that can be expected, in a row.
+type walk struct {
+	f     *finder
+	vs    []triangulate.Vertex
+	x     []float64 // how far each lies off what all but the block about it expect
+	reach []float64 // how far that reaches
+	taken []bool    // those of runs that are settled
+	parts []part    // of windowLong/3 shots each
+}
+
+// A part of a walk has a middle and a scale of what its shots and those of its neighbours
+// lie off, and the reach that is usual there.
+type part struct{ middle, scale, usual float64 }
+
+const partLong = windowLong / 3
+
+// miss works out x and reach of the shots from low up to but without high. There are two
+// ways to cut into blocks; the one counts in which a shot lies further from the block's
+// ends.
+func (w *walk) miss(ctx context.Context, low, high int) error {
+	n := len(w.vs)
 	var left []triangulate.Left
 	for _, start := range []int{0, -blockLength / 2} {
-		for ; start < len(vs); start += blockLength {
+		for start += max(0, low-start) / blockLength * blockLength; start < high; start += blockLength {
 			if err := ctx.Err(); err != nil {
-				return nil, nil, err
+				return err
 			}
-			low, high := max(start, 0), min(start+blockLength, len(vs))
-			left = f.near.r.WithoutAll(left[:0], vs[low:high])
-			for i := low; i < high; i++ {
-				if k := i - start; k >= blockLength/4 && k < blockLength-blockLength/4 || i < blockLength/4 || i >= len(vs)-blockLength/4 {
-					x[i] = f.own[vs[i]] - f.work.ValueOf(left[i-low], f.near.pos[vs[i]])
-					reach[i] = f.work.Reach(left[i-low], f.near.pos[vs[i]])
+			from, to := max(start, 0), min(start+blockLength, n)
+			left = w.f.near.r.WithoutAll(left[:0], w.vs[from:to])
+			for i := max(from, low); i < min(to, high); i++ {
+				if k := i - start; k >= blockLength/4 && k < blockLength-blockLength/4 || i < blockLength/4 || i >= n-blockLength/4 {
+					w.x[i] = w.f.own[w.vs[i]] - w.f.work.ValueOf(left[i-from], w.f.near.pos[w.vs[i]])
+					w.reach[i] = w.f.work.Reach(left[i-from], w.f.near.pos[w.vs[i]])
 				}
 			}
 		}
 	}
-	return x, reach, nil
+	return nil
 }
 
-// centre takes the middle of the values about each from it, in place, and returns their
-// scales; as in surroundings.scale, one that reaches unusually far has a larger one.
-func centre(x, reach []float64, least float64) []float64 {
-	scale := make([]float64, len(x))
-	middles := make([]float64, len(x))
+// judge works out what shots usually lie off, part by part.
+func (w *walk) judge(least float64) {
 	var window []float64
-	const step = windowLong / 3
-	for from := 0; from < len(x); from += step {
-		to := min(from+step, len(x))
-		window = append(window[:0], x[max(0, from-step):min(len(x), to+step)]...)
-		middle := median(window)
+	for from := 0; from < len(w.x); from += partLong {
+		low, high := max(0, from-partLong), min(len(w.x), from+2*partLong)
+		window = append(window[:0], w.x[low:high]...)
+		p := part{middle: median(window)}
 		for i, v := range window {
-			window[i] = math.Abs(v - middle)
+			window[i] = math.Abs(v - p.middle)
 		}
-		s := max(normal*median(window), least)
-		window = append(window[:0], reach[max(0, from-step):min(len(x), to+step)]...)
-		usual := runReachUsual * median(window)
-		for i := from; i < to; i++ {
-			scale[i], middles[i] = s*stretch(reach[i], usual), middle
-		}
+		p.scale = max(normal*median(window), least)
+		window = append(window[:0], w.reach[low:high]...)
+		p.usual = runReachUsual * median(window)
+		w.parts = append(w.parts, p)
 	}
-	for i := range x {
-		x[i] -= middles[i]
+}
+
+// off is how far shot i lies from the middle of those about it; nothing if it belongs to
+// a run already.
+func (w *walk) off(i int) float64 {
+	if w.taken[i] {
+		return 0
 	}
-	return scale
+	return w.x[i] - w.parts[i/partLong].middle
+}
+
+// scale is what shot i may lie off; as in surroundings.scale, one that reaches unusually
+// far has a larger one.
+func (w *walk) scale(i int) float64 {
+	p := w.parts[i/partLong]
+	return p.scale * stretch(w.reach[i], p.usual)
 }
 
 // settle finds the ends of a run about the shots from first to last, and whether it is
 // one.
-func settle(x, scale []float64, first, last int) (a, b int, amount, spread float64, ok bool) {
-	values := append([]float64(nil), x[first:last+1]...)
-	amount = median(values)
-	for range 3 {
-		// The evidence of a shot is (x² - (x - amount)²) / 2: positive nearer the amount.
-		evidence := func(i int) float64 {
-			return float64(amount*x[i]) - float64(float64(amount*amount)/2)
+func (w *walk) settle(first, last int) (c stretchOff, ok bool) {
+	values := make([]float64, 0, last-first+1+2*runMoved)
+	fill := func(a, b int, of func(int) float64) []float64 {
+		values = values[:0]
+		for i := a; i <= b; i++ {
+			values = append(values, of(i))
 		}
+		return values
+	}
+	amount := median(fill(first, last, w.off))
+	for range 3 {
 		middle := (first + last) / 2
 		best, sum := math.Inf(-1), 0.0
-		for i := middle; i >= max(0, first-runMoved); i-- {
-			if sum += evidence(i); sum > best {
-				best, a = sum, i
+		for i := middle; i >= max(0, first-runMoved) && !w.taken[i]; i-- {
+			if sum += evidence(w.off(i), amount); sum > best {
+				best, c.first = sum, i
 			}
 		}
 		best, sum = math.Inf(-1), 0
-		for i := middle; i <= min(len(x)-1, last+runMoved); i++ {
-			if sum += evidence(i); sum > best {
-				best, b = sum, i
+		for i := middle; i <= min(len(w.x)-1, last+runMoved) && !w.taken[i]; i++ {
+			if sum += evidence(w.off(i), amount); sum > best {
+				best, c.last = sum, i
 			}
 		}
-		values = append(values[:0], x[a:b+1]...)
-		if next := median(values); next != amount {
+		if next := median(fill(c.first, c.last, w.off)); next != amount {
 			amount = next
 			continue
 		}
 		break
 	}
+	n := c.last - c.first + 1
 	total := 0.0
-	for i := a; i <= b; i++ {
-		values[i-a] = math.Abs(x[i] - amount)
-		total += x[i]
+	for i := c.first; i <= c.last; i++ {
+		total += w.off(i)
+		s := w.scale(i)
+		c.clear += evidence(w.off(i), amount) / float64(s*s)
 	}
-	spread = normal * median(values)
-	n := b - a + 1
-	return a, b, total / float64(n), spread,
-		n >= runLeast && math.Abs(amount) >= runAmount*median(slices.Clone(scale[a:b+1])) && runLoose*spread <= math.Abs(amount)
+	spread := normal * median(fill(c.first, c.last, func(i int) float64 { return math.Abs(w.off(i) - amount) }))
+	c.run = Run{Amount: total / float64(n), Spread: spread, Scale: w.scale(c.first)}
+	return c, n >= runLeast && math.Abs(amount) >= runAmount*median(fill(c.first, c.last, w.scale)) && runLoose*spread <= math.Abs(amount)
+}
+
+// evidence is how much a shot that is off by x speaks for "moved by this amount" against
+// "not moved": (x² - (x - amount)²) / 2, positive nearer the amount.
+func evidence(x, amount float64) float64 {
+	return float64(amount*x) - float64(float64(amount*amount)/2)
+}
+
+// without judges anew what is pinned, after the shots of runs have been taken out: they
+// are pinned no longer, and of the others those pass that were off because of a run.
+func (f *finder) without(runs []Run) {
+	for _, run := range runs {
+		for _, s := range run.Shots {
+			delete(f.pinned, s.Vertex)
+		}
+	}
+	if len(runs) == 0 {
+		return
+	}
+	for v := range f.pinned {
+		f.expect(v)
+	}
+	for v := range f.pinned {
+		f.judge(v, f.near)
+	}
 }

@@ -37,7 +37,9 @@ func sequenceOf(s *interp.Surface, n int) []triangulate.Vertex {
 }
 
 // TestRuns: of runs of 12 shots moved by 0.3, ten times the noise, nine of ten are named
-// with the right first and last shot; without them there is none.
+// with the right first and last shot; without them there is none. The rows of shots beside a
+// run, which lie off to the other side because of it, are not named, though it is moved by
+// fifty times the noise.
 func TestRuns(t *testing.T) {
 	rolling := func(x, y float64) float64 { return 100 + 8*math.Sin(x/150)*math.Cos(y/190) + 0.02*x }
 	bumpy := func(x, y float64) float64 {
@@ -49,13 +51,16 @@ func TestRuns(t *testing.T) {
 		n             int
 		along, across float64
 		z             func(x, y float64) float64
+		by            float64
 		trials        int // the first on clean data
 	}{
-		{"plane of 400", 400, 10, 10, plane, 3},
-		{"rolling", 5000, 10, 10, rolling, 3},
-		{"rows far apart", 5000, 5, 15, rolling, 3},
-		{"rows close", 5000, 15, 8, rolling, 3},
-		{"bumps as wide as the rows are apart", 5000, 10, 10, bumpy, 1},
+		{"plane of 400", 400, 10, 10, plane, 0.3, 3},
+		{"plane of 400, moved far", 400, 10, 10, plane, 1.5, 3},
+		{"rolling", 5000, 10, 10, rolling, 0.3, 3},
+		{"rolling, moved far", 5000, 10, 10, rolling, 1.5, 3},
+		{"rows far apart", 5000, 5, 15, rolling, 0.3, 3},
+		{"rows close", 5000, 15, 8, rolling, 0.3, 3},
+		{"bumps as wide as the rows are apart", 5000, 10, 10, bumpy, 0, 1},
 	}
 	for _, kind := range kinds {
 		right, tried, falseClean, falseMoved := 0, 0, 0, 0
@@ -73,9 +78,9 @@ func TestRuns(t *testing.T) {
 							inner = inner && !s.Mesh().Reduction().OnOutline(s.Mesh().VertexOf(i))
 						}
 					}
-					by := 0.3
+					by := kind.by
 					if trial == 2 {
-						by = -0.3
+						by = -by
 					}
 					for i := first; i < first+12; i++ {
 						g.z[i] += by
@@ -103,8 +108,8 @@ func TestRuns(t *testing.T) {
 				}
 			}
 		}
-		if 10*right < 9*tried || falseClean > 0 {
-			t.Errorf("%s: want nine of ten named and none false on clean data", kind.name)
+		if 10*right < 9*tried || falseClean+falseMoved > 0 {
+			t.Errorf("%s: want nine of ten named and none false", kind.name)
 		}
 		t.Logf("%s: %d of %d runs named, %d false on clean data, %d besides", kind.name, right, tried, falseClean, falseMoved)
 	}
