@@ -78,6 +78,20 @@ func (m *Mesh) Reduction() *Reduction {
 	return r
 }
 
+// Reset puts back all vertices that were taken out, in time O(vertices).
+func (r *Reduction) Reset() {
+	r.ghost = nil
+	if !r.own {
+		return
+	}
+	copy(r.half, r.m.half)
+	if clear(r.kept); r.m.kept != nil {
+		copy(r.kept, r.m.kept)
+	}
+	copy(r.at, r.m.around)
+	r.saved.forget()
+}
+
 // OnOutline tells whether v lies on the outline of the mesh, or has no triangle.
 func (r *Reduction) OnOutline(v Vertex) bool {
 	h := r.m.firstAround(v)

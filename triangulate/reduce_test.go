@@ -310,3 +310,29 @@ func TestWithoutAll(t *testing.T) {
 		}
 	}
 }
+
+// TestReset: after Reset a reduction is like a new one.
+func TestReset(t *testing.T) {
+	rng := rand.New(rand.NewPCG(8, 8))
+	for range 40 {
+		pts, segs := randomScene(rng, 10+rng.IntN(60), rng.IntN(30), 3+rng.IntN(30))
+		m, err := triangulate.Constrained(context.Background(), pts, segs, triangulate.Options{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		r, fresh := m.Reduction(), m.Reduction()
+		for range 3 {
+			for v := range m.Vertices() {
+				if rng.IntN(3) == 0 && !r.OnOutline(v) {
+					r.Remove(v)
+				}
+			}
+			r.Reset()
+			for v := range m.Vertices() {
+				if got, want := r.Without(v), fresh.Without(v); got != want || r.Removed(v) {
+					t.Fatalf("vertex %d without itself: %+v, before anything was taken out %+v", v, got, want)
+				}
+			}
+		}
+	}
+}

@@ -5,6 +5,7 @@ import (
 	"context"
 	"fmt"
 	"math"
+	"runtime/debug"
 	"slices"
 	"strconv"
 	"strings"
@@ -145,6 +146,10 @@ func (p *program) suspects(ctx context.Context, l *loaded, r *reading, opt *susp
 	}
 	var codes []string
 	o.Group, codes = l.codeGroups()
+	if l.set.Len() > runsMost {
+		// What is let go of must be gone before Find copies the mesh in one go.
+		debug.FreeOSMemory()
+	}
 	res, err := suspect.Find(ctx, l.surface, left, o)
 	if err != nil {
 		return nil, err

@@ -126,14 +126,14 @@ const agreeShare = 0.7
 // worked out anew.
 func (f *finder) restore() {
 	touched := map[triangulate.Vertex]bool{}
-	whole := newSurroundings(f.work.Mesh())
+	f.near.r.Reset()
 	copy(f.z, f.own)
 	for _, v := range f.out {
 		touched[v] = true
 		f.residual[v] = 0 // to be expected again
 	}
 	for _, v := range f.out {
-		for _, u := range whole.neighbours(v) {
+		for _, u := range f.near.neighbours(v) {
 			touched[u] = true
 		}
 	}
@@ -143,7 +143,6 @@ func (f *finder) restore() {
 	clear(f.changed)
 	f.out = f.out[:0]
 	clear(f.was)
-	f.near = whole
 	for v := range touched {
 		f.expect(v)
 	}

@@ -97,6 +97,7 @@ func Find(ctx context.Context, s *interp.Surface, left *interp.LeftOut, opt Opti
 			res.Judged++
 		}
 	}
+	f.near = nil // the copy of the mesh goes before more memory is asked for
 	res.Groups = f.groups(opt.Group, res.Suspects)
 	slices.SortFunc(res.Suspects, func(a, b Suspect) int {
 		return f.order(entry{a.Vertex, a.Off}, entry{b.Vertex, b.Off})

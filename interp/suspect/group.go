@@ -33,33 +33,48 @@ func (f *finder) groups(of []int32, found []Suspect) (off []Group) {
 	for _, g := range of {
 		count = max(count, g+1)
 	}
-	residuals, offs := make([][]float64, count), make([][]float64, count)
 	all := 0
-	add := func(v triangulate.Vertex, r, scale float64) {
-		if g := of[v]; g >= 0 && r == r && scale > 0 {
-			residuals[g], offs[g] = append(residuals[g], r), append(offs[g], r/scale)
+	each := func(do func(g int32, r, off float64)) {
+		all = 0
+		add := func(v triangulate.Vertex, r, scale float64) {
+			if g := of[v]; g >= 0 && r == r && scale > 0 {
+				do(g, r, r/scale)
+			}
+		}
+		for v := range of {
+			v := triangulate.Vertex(v)
+			if _, lined := f.lines[v]; lined {
+				continue
+			}
+			all++
+			add(v, f.residual[v], f.scale[v]) // NaN of those taken out
+		}
+		for _, s := range found {
+			if _, lined := f.lines[s.Vertex]; !lined {
+				add(s.Vertex, s.Residual, s.Scale)
+			}
 		}
 	}
-	for v := range of {
-		v := triangulate.Vertex(v)
-		if _, lined := f.lines[v]; lined {
-			continue
-		}
-		all++
-		add(v, f.residual[v], f.scale[v]) // NaN of those taken out
-	}
-	for _, s := range found {
-		if _, lined := f.lines[s.Vertex]; !lined {
-			add(s.Vertex, s.Residual, s.Scale)
+	// Counted first: the most common code, often that of all, takes no memory.
+	shots := make([]int, count)
+	each(func(g int32, _, _ float64) { shots[g]++ })
+	residuals, offs := make([][]float64, count), make([][]float64, count)
+	for g, n := range shots {
+		if n >= groupLeast && float64(n) <= groupShare*float64(all) {
+			residuals[g], offs[g] = make([]float64, 0, n), make([]float64, 0, n)
 		}
 	}
-	for g := range residuals {
-		n := len(offs[g])
-		if n < groupLeast || float64(n) > groupShare*float64(all) {
+	each(func(g int32, r, off float64) {
+		if offs[g] != nil {
+			residuals[g], offs[g] = append(residuals[g], r), append(offs[g], off)
+		}
+	})
+	for g := range offs {
+		if offs[g] == nil {
 			continue
 		}
 		if m := median(offs[g]); math.Abs(m) > f.opt.Factor {
-			off = append(off, Group{int32(g), n, median(residuals[g]), m})
+			off = append(off, Group{int32(g), shots[g], median(residuals[g]), m})
 		}
 	}
 	return off
