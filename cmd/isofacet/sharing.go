@@ -10,6 +10,7 @@ import (
 	"github.com/spf13/cobra"
 	"github.com/spf13/pflag"
 
+	"isofacet/cmd/internal/record"
 	"isofacet/cmd/internal/report"
 	"isofacet/interp"
 	"isofacet/io/readings"
@@ -35,21 +36,27 @@ func newSharedWork() *sharedWork {
 // said is what a step said and opened while it made something for all.
 type said struct {
 	events []report.Event
-	files  []*input // opened beside the command's own
-	own    []*input // the command's own, with their hashes
+	files  []*input      // opened beside the command's own
+	own    []record.File // the command's own, with their hashes: copies, as it goes on writing to them
 }
 
 // listen notes what p says and opens from now on.
 func (p *program) listen(list []*input) func() said {
 	opened, stop := len(p.opened), p.report.Keep()
-	return func() said { return said{stop(), slices.Clone(p.opened[opened:]), list} }
+	return func() said {
+		s := said{stop(), slices.Clone(p.opened[opened:]), make([]record.File, len(list))}
+		for i, in := range list {
+			s.own[i] = *in.file
+		}
+		return s
+	}
 }
 
 // repeat has p say what another step said.
 func (p *program) repeat(s *said, list []*input) {
 	p.report.Replay(s.events)
 	for i := range list {
-		*list[i].file = *s.own[i].file
+		*list[i].file = s.own[i]
 	}
 	for _, in := range s.files {
 		p.opened = append(p.opened, in)
