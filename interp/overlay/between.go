@@ -73,22 +73,28 @@ func Between(ctx context.Context, from, to *interp.Surface, opt Options) (*Figur
 	return total.figures(from, to, swapped, w), nil
 }
 
-// The sums of a run: for each part the volume, six times, and three areas, twice.
-const (
-	posVolume  = 0
-	negVolume  = 4
-	zeroVolume = 8
-	sumsCount  = 12
-)
-
+// totals are the sums of a run, for each sign of the difference.
 type totals struct {
-	sums   [sumsCount]exact.Sum
-	pieces int
+	pos, neg, zero sums
+	pieces         int
 }
 
+// sums are three areas, twice: in plan, on the outer surface, and on the inner one; and
+// the volume, six times.
+type sums [4]exact.Tally
+
+const (
+	planArea = iota
+	outerArea
+	innerArea
+	volume
+)
+
 func (t *totals) merge(o *totals) {
-	for i := range t.sums {
-		t.sums[i].Merge(&o.sums[i])
+	for i := range t.pos {
+		t.pos[i].Merge(&o.pos[i])
+		t.neg[i].Merge(&o.neg[i])
+		t.zero[i].Merge(&o.zero[i])
 	}
 	t.pieces += o.pieces
 }
@@ -97,21 +103,21 @@ func (t *totals) merge(o *totals) {
 // from unless the two have changed places.
 func (t *totals) figures(from, to *interp.Surface, swapped bool, w *weigher) *Figures {
 	f := &Figures{
-		Cut: t.part(negVolume, swapped), Fill: t.part(posVolume, swapped), Same: t.part(zeroVolume, swapped),
+		Cut: t.neg.part(swapped), Fill: t.pos.part(swapped), Same: t.zero.part(swapped),
 		AreaFrom: from.Area(), AreaTo: to.Area(), Pieces: t.pieces,
 	}
 	if swapped {
 		f.Cut, f.Fill = f.Fill, f.Cut
 	}
 	var net, covered exact.Sum
-	net.Merge(&t.sums[posVolume])
-	net.Subtract(&t.sums[negVolume])
+	net.Merge(t.pos[volume].Sum())
+	net.Subtract(t.neg[volume].Sum())
 	f.Net = net.Mean(6)
 	if swapped && f.Net != 0 {
 		f.Net = -f.Net
 	}
-	for _, first := range []int{posVolume, negVolume, zeroVolume} {
-		covered.Merge(&t.sums[first+1])
+	for _, s := range []*sums{&t.pos, &t.neg, &t.zero} {
+		covered.Merge(s[planArea].Sum())
 	}
 	f.Covered = covered.Mean(2)
 	if w != nil {
@@ -123,16 +129,29 @@ func (t *totals) figures(from, to *interp.Surface, swapped bool, w *weigher) *Fi
 // addPiece adds what a polygon contributes.
 func (t *totals) addPiece(poly *polygon, slantOuter, slantInner float64) {
 	t.pieces++
-	pos, neg, zero2 := poly.integrate()
-	t.add(posVolume, pos, slantOuter, slantInner)
-	t.add(negVolume, neg, slantOuter, slantInner)
-	t.add(zeroVolume, share{zero2, 0}, slantOuter, slantInner)
+	first, signs := poly.survey()
+	if signs == somePos|someNeg {
+		pos, neg, zero2 := poly.splitFan(first)
+		t.add(&t.pos, pos, slantOuter, slantInner)
+		t.add(&t.neg, neg, slantOuter, slantInner)
+		t.add(&t.zero, share{zero2, 0}, slantOuter, slantInner)
+		return
+	}
+	area2, volume6 := poly.fan(first)
+	switch signs {
+	case somePos:
+		t.add(&t.pos, share{area2, volume6}, slantOuter, slantInner)
+	case someNeg:
+		t.add(&t.neg, share{area2, -volume6}, slantOuter, slantInner)
+	default:
+		t.add(&t.zero, share{area2, 0}, slantOuter, slantInner)
+	}
 }
 
-func (t *totals) part(first int, swapped bool) Part {
+func (s *sums) part(swapped bool) Part {
 	p := Part{
-		Volume: t.sums[first].Mean(6), Area: t.sums[first+1].Mean(2),
-		AreaFrom: t.sums[first+2].Mean(2), AreaTo: t.sums[first+3].Mean(2),
+		Volume: s[volume].Sum().Mean(6), Area: s[planArea].Sum().Mean(2),
+		AreaFrom: s[outerArea].Sum().Mean(2), AreaTo: s[innerArea].Sum().Mean(2),
 	}
 	if swapped {
 		p.AreaFrom, p.AreaTo = p.AreaTo, p.AreaFrom
@@ -140,14 +159,11 @@ func (t *totals) part(first int, swapped bool) Part {
 	return p
 }
 
-func (t *totals) add(first int, s share, slantOuter, slantInner float64) {
+func (t *totals) add(to *sums, s share, slantOuter, slantInner float64) {
 	if s.area2 == 0 && s.volume6 == 0 {
 		return
 	}
-	t.sums[first].Add(s.volume6)
-	t.sums[first+1].Add(s.area2)
-	t.sums[first+2].Add(s.area2 * slantOuter)
-	t.sums[first+3].Add(s.area2 * slantInner)
+	exact.AddFour((*[4]exact.Tally)(to), s.area2, s.area2*slantOuter, s.area2*slantInner, s.volume6)
 }
 
 // Triangles of the outer side, and vertices, that a worker takes at a time.
@@ -164,6 +180,7 @@ func sumPieces(ctx context.Context, outer, inner *side, workers int, progress fu
 		return total, ctx.Err()
 	}
 	at := newPlaces(outer, inner, workers)
+	seen := newInsides(inner)
 	count := int(outer.shown)
 	var next atomic.Int64
 	var mu sync.Mutex
@@ -171,16 +188,19 @@ func sumPieces(ctx context.Context, outer, inner *side, workers int, progress fu
 	done := 0
 	for range min(workers, count/trianglesChunk+1) {
 		wg.Go(func() {
-			m := &meeting{outer: outer, inner: inner, weigh: weigh}
-			sums := &totals{}
+			m := &meeting{outer: outer, inner: inner, weigh: weigh, seen: seen}
+			own := &totals{}
 			for ctx.Err() == nil {
 				first := int(next.Add(trianglesChunk)) - trianglesChunk
 				if first >= count {
 					break
 				}
 				last := min(first+trianglesChunk, count)
-				for t := first; t < last; t++ {
-					m.addTo(sums, triangulate.Triangle(t), at)
+				m.walks.start(triangulate.Triangle(first), triangulate.Triangle(last))
+				for t := triangulate.Triangle(first); t < triangulate.Triangle(last); t++ {
+					if !m.trace(own, t, at) {
+						m.addTo(own, t, at)
+					}
 				}
 				if progress != nil {
 					mu.Lock()
@@ -191,15 +211,15 @@ func sumPieces(ctx context.Context, outer, inner *side, workers int, progress fu
 			}
 			mu.Lock()
 			defer mu.Unlock()
-			total.merge(sums)
+			total.merge(own)
 		})
 	}
 	wg.Wait()
 	return total, ctx.Err()
 }
 
-// addTo adds the pieces of outer triangle t.
-func (m *meeting) addTo(sums *totals, t triangulate.Triangle, at *places) {
+// addTo adds the pieces of outer triangle t, whatever its position.
+func (m *meeting) addTo(total *totals, t triangulate.Triangle, at *places) {
 	seed := at.seed(m.outer, t)
 	if seed == triangulate.NoTriangle {
 		return
@@ -220,9 +240,9 @@ func (m *meeting) addTo(sums *totals, t triangulate.Triangle, at *places) {
 		if poly.n < 3 {
 			continue
 		}
-		sums.addPiece(&poly, m.outer.slant[t], m.inner.slant[f.t])
+		total.addPiece(&poly, m.outer.slant[t], m.inner.slant[f.t])
 		if m.weigh != nil {
-			m.weigh.add(&poly, t, f.t, poly.origin)
+			m.weigh.add(&poly, t, f.t)
 		}
 	}
 }

@@ -6,50 +6,51 @@ type share struct {
 	volume6 float64 // six times its volume, positive
 }
 
-// integrate returns what the polygon contributes where its differences are positive,
-// negative, and zero throughout (only an area).
-//
 // The polygon is cut into a fan from its first point. A triangle of the fan with
 // differences of one sign contributes D (d0 + d1 + d2), D twice its area; one with
 // differences of both is split.
-func (p *polygon) integrate() (pos, neg share, zero2 float64) {
-	hasPos, hasNeg := false, false
-	for i := range p.n {
-		hasPos = hasPos || p.at[i].d > 0
-		hasNeg = hasNeg || p.at[i].d < 0
-	}
-	i := p.first()
-	o := p.at[i]
-	next := func() (float64, float64, float64) {
-		if i++; i == p.n {
-			i = 0
-		}
-		q := &p.at[i]
-		return q.x - o.x, q.y - o.y, q.d
-	}
-	var sum share
-	bx, by, b := next()
+
+// fan returns twice the area of the polygon and six times the integral of the
+// difference, for differences of one sign.
+func (p *polygon) fan(first int) (area2, volume6 float64) {
+	o := &p.at[first]
+	i := p.after(first)
+	q := &p.at[i]
+	bx, by, b := q.x-o.x, q.y-o.y, q.d
 	for range p.n - 2 {
-		cx, cy, c := next()
+		i = p.after(i)
+		q = &p.at[i]
+		cx, cy, c := q.x-o.x, q.y-o.y, q.d
 		d := float64(bx*cy) - float64(by*cx)
-		if hasPos && hasNeg {
-			split(d, o.d, b, c, &pos, &neg, &zero2)
-		} else {
-			sum.area2 += d
-			sum.volume6 += float64(d * (o.d + b + c))
-		}
+		area2 += d
+		volume6 += float64(d * (o.d + b + c))
 		bx, by, b = cx, cy, c
 	}
-	switch {
-	case hasPos && hasNeg:
-	case hasPos:
-		pos = sum
-	case hasNeg:
-		neg = share{sum.area2, -sum.volume6}
-	default:
-		zero2 = sum.area2
+	return area2, volume6
+}
+
+// splitFan returns what the polygon contributes where its differences are positive,
+// negative, and zero throughout (only an area).
+func (p *polygon) splitFan(first int) (pos, neg share, zero2 float64) {
+	o := &p.at[first]
+	i := p.after(first)
+	q := &p.at[i]
+	bx, by, b := q.x-o.x, q.y-o.y, q.d
+	for range p.n - 2 {
+		i = p.after(i)
+		q = &p.at[i]
+		cx, cy, c := q.x-o.x, q.y-o.y, q.d
+		split(float64(bx*cy)-float64(by*cx), o.d, b, c, &pos, &neg, &zero2)
+		bx, by, b = cx, cy, c
 	}
 	return pos, neg, zero2
+}
+
+func (p *polygon) after(i int) int {
+	if i++; i == p.n {
+		i = 0
+	}
+	return i
 }
 
 // split shares out a triangle of twice the area d with the differences h at its

@@ -27,6 +27,14 @@ type meeting struct {
 	found   list[innerTriangle]
 
 	cornerOf, foundOf table
+
+	// For triangles in general position.
+	walks   walks
+	rim     rim
+	insides []within
+	seen    *insides
+	poly    polygon
+	d       [3]float64 // inner less outer, at the corners
 }
 
 // list is a slice that grows by numbers that keep what they held before: whoever takes

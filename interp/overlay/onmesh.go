@@ -45,7 +45,7 @@ func OnMesh(ctx context.Context, m *triangulate.Mesh, from, to []float64, opt Op
 	var wg sync.WaitGroup
 	for range min(workers, count/trianglesChunk+1) {
 		wg.Go(func() {
-			sums := &totals{}
+			own := &totals{}
 			var poly polygon
 			for ctx.Err() == nil {
 				first := int(next.Add(trianglesChunk)) - trianglesChunk
@@ -54,20 +54,19 @@ func OnMesh(ctx context.Context, m *triangulate.Mesh, from, to []float64, opt Op
 				}
 				for t := triangulate.Triangle(first); t < triangulate.Triangle(min(first+trianglesChunk, count)); t++ {
 					v, _ := x.turned(t)
-					origin := &x.pos[v[0]]
-					poly.n = 0
+					poly.begin(&x.pos[v[0]], &x.pos[v[0]])
 					for _, c := range v {
-						poly.add(&x.pos[c], 0, 0, to[c]-from[c], origin)
+						poly.add(&x.pos[c], 0, 0, to[c]-from[c])
 					}
-					sums.addPiece(&poly, x.slant[t], y.slant[t])
+					own.addPiece(&poly, x.slant[t], y.slant[t])
 					if w != nil {
-						w.add(&poly, t, t, origin)
+						w.add(&poly, t, t)
 					}
 				}
 			}
 			mu.Lock()
 			defer mu.Unlock()
-			total.merge(sums)
+			total.merge(own)
 		})
 	}
 	wg.Wait()

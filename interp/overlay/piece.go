@@ -2,6 +2,7 @@ package overlay
 
 import (
 	"math"
+	"math/bits"
 
 	"github.com/paulmach/orb"
 
@@ -16,7 +17,7 @@ type point struct{ x, y, d float64 }
 type polygon struct {
 	at     [8]point
 	n      int
-	origin *orb.Point
+	origin orb.Point
 }
 
 // piece is the polygon that the outer triangle has in common with f; fewer than
@@ -27,16 +28,11 @@ type polygon struct {
 // of f on the edge; where it leaves f. From each of these the polygon goes on along
 // the edges of f as long as those lead to corners of f inside the outer triangle.
 func (m *meeting) piece(f *innerTriangle, at *[3]triangulate.Location, d *[3]float64, poly *polygon) {
-	poly.n = 0
 	var c [3]*corner
 	for j := range c {
 		c[j] = &m.corners.of[f.c[j]]
 	}
-	origin := &m.p[0]
-	if before(c[0].p, origin) {
-		origin = c[0].p
-	}
-	poly.origin = origin
+	poly.begin(&m.p[0], c[0].p)
 	var enters, leaves [3]*crossing
 	var leavesOver [3]int
 	some := false
@@ -60,25 +56,25 @@ func (m *meeting) piece(f *innerTriangle, at *[3]triangulate.Location, d *[3]flo
 	for k := range 3 {
 		if in, chain := m.holds(f, k, &at[k]); in {
 			some = true
-			poly.add(&m.p[k], 0, 0, d[k], origin)
+			poly.add(&m.p[k], 0, 0, d[k])
 			if chain >= 0 {
-				poly.chain(&c, chain, origin)
+				poly.chain(&c, chain)
 			}
 		}
 		if x := enters[k]; x != nil {
-			poly.add(x.from, x.off[0], x.off[1], x.d, origin)
+			poly.add(x.from, x.off[0], x.off[1], x.d)
 		}
 		if onEdges {
-			some = m.alongEdge(&c, k, poly, origin) || some
+			some = m.alongEdge(&c, k, poly) || some
 		}
 		if x := leaves[k]; x != nil {
-			poly.add(x.from, x.off[0], x.off[1], x.d, origin)
-			poly.chain(&c, after[leavesOver[k]], origin)
+			poly.add(x.from, x.off[0], x.off[1], x.d)
+			poly.chain(&c, after[leavesOver[k]])
 		}
 	}
 	if !some && c[0].inside() { // all of f
 		for _, v := range c {
-			poly.add(v.p, 0, 0, v.d, origin)
+			poly.add(v.p, 0, 0, v.d)
 		}
 	}
 }
@@ -109,7 +105,7 @@ func (m *meeting) holds(f *innerTriangle, k int, at *triangulate.Location) (in b
 }
 
 // alongEdge adds the corners of f that lie on outer edge k, between its ends.
-func (m *meeting) alongEdge(c *[3]*corner, k int, poly *polygon, origin *orb.Point) bool {
+func (m *meeting) alongEdge(c *[3]*corner, k int, poly *polygon) bool {
 	var on [3]int
 	n := 0
 	for j, v := range c {
@@ -122,23 +118,32 @@ func (m *meeting) alongEdge(c *[3]*corner, k int, poly *polygon, origin *orb.Poi
 		on[0], on[1] = on[1], on[0]
 	}
 	for _, j := range on[:n] {
-		poly.add(c[j].p, 0, 0, c[j].d, origin)
-		poly.chain(c, after[j], origin)
+		poly.add(c[j].p, 0, 0, c[j].d)
+		poly.chain(c, after[j])
 	}
 	return n > 0
 }
 
 // chain adds corner j and those after it as long as they lie inside the outer
 // triangle.
-func (p *polygon) chain(c *[3]*corner, j int, origin *orb.Point) {
+func (p *polygon) chain(c *[3]*corner, j int) {
 	for c[j].inside() && p.n < len(p.at) {
-		p.add(c[j].p, 0, 0, c[j].d, origin)
+		p.add(c[j].p, 0, 0, c[j].d)
 		j = after[j]
 	}
 }
 
-func (p *polygon) add(from *orb.Point, offX, offY, d float64, origin *orb.Point) {
-	p.at[p.n] = point{(from[0] - origin[0]) + offX, (from[1] - origin[1]) + offY, d}
+// begin empties the polygon, relative now to the smaller one of a and b.
+func (p *polygon) begin(a, b *orb.Point) {
+	p.n = 0
+	p.origin = *a
+	if before(b, a) {
+		p.origin = *b
+	}
+}
+
+func (p *polygon) add(from *orb.Point, offX, offY, d float64) {
+	p.at[p.n] = point{(from[0] - p.origin[0]) + offX, (from[1] - p.origin[1]) + offY, d}
 	p.n++
 }
 
@@ -147,6 +152,39 @@ func (p *polygon) add(from *orb.Point, offX, offY, d float64, origin *orb.Point)
 // equal it takes the first of their run, counter-clockwise, and of several runs the
 // one with the larger difference.
 func (p *polygon) first() int {
+	first, _ := p.survey()
+	return first
+}
+
+// survey returns the number of the first point, and which signs there are among the
+// differences: somePos, someNeg. It has no branches to be guessed wrong.
+func (p *polygon) survey() (first int, signs int) {
+	least := ^uint64(0)
+	ties := 0
+	for i := range p.at[:p.n] {
+		q := &p.at[i]
+		// Bits in the order of the numbers. There is no -0: it begins with a - a + x.
+		b := math.Float64bits(q.x)
+		key := b ^ (uint64(int64(b)>>63) | 1<<63)
+		_, less := bits.Sub64(key, least, 0)
+		ties |= oneIf(key == least)
+		least ^= (least ^ key) & -less
+		first ^= (first ^ i) & -int(less)
+		signs |= oneIf(q.d > 0)*somePos | oneIf(q.d < 0)*someNeg
+	}
+	if ties != 0 {
+		first = p.firstOfTied()
+	}
+	return first, signs
+}
+
+const (
+	somePos = 1
+	someNeg = 2
+)
+
+// firstOfTied is first where several points have one x.
+func (p *polygon) firstOfTied() int {
 	best := 0
 	for i := 1; i < p.n; i++ {
 		a, b := &p.at[i], &p.at[best]

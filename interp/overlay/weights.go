@@ -58,9 +58,9 @@ func newWeigher(outer, inner *side) *weigher {
 }
 
 // add adds the weights in a polygon of the two triangles.
-func (w *weigher) add(poly *polygon, outer, inner triangulate.Triangle, origin *orb.Point) {
-	o := poly.tents(w.outer.x, outer, origin)
-	i := poly.tents(w.inner.x, inner, origin)
+func (w *weigher) add(poly *polygon, outer, inner triangulate.Triangle) {
+	o := poly.tents(w.outer.x, outer)
+	i := poly.tents(w.inner.x, inner)
 	for part := range 3 {
 		w.outer.give(part, outer, o[part])
 		w.inner.give(part, inner, i[part])
@@ -78,11 +78,11 @@ func (s *sideWeigher) give(part int, t triangulate.Triangle, tents [3]float64) {
 
 // tents returns, by part, the integrals over the polygon of the three functions that
 // are 1 at one corner of t and 0 at the others.
-func (p *polygon) tents(x *side, t triangulate.Triangle, origin *orb.Point) (sum [3][3]float64) {
+func (p *polygon) tents(x *side, t triangulate.Triangle) (sum [3][3]float64) {
 	v, _ := x.turned(t)
 	var c [3][2]float64
 	for k := range v {
-		c[k] = [2]float64{x.pos[v[k]][0] - origin[0], x.pos[v[k]][1] - origin[1]}
+		c[k] = [2]float64{x.pos[v[k]][0] - p.origin[0], x.pos[v[k]][1] - p.origin[1]}
 	}
 	whole := cross(c[0], c[1], c[2])
 	add := func(part int, a, b, d [2]float64) {
