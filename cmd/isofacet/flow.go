@@ -19,11 +19,13 @@ const flowLong = `Where groundwater goes, and how sure that is. Every round and 
 readings is worked out apart, a row each: the least squares plane through all wells
 with its gradient (head lost per length) and flow azimuth (degrees clockwise from
 grid north), their standard uncertainties, by how much the plane misses the heads,
-and a verdict: sound; level; head range below noise (less than three times --sigma);
-wells nearly in line; direction uncertain (more than 30 degrees).
+and a verdict: sound; level; head range below noise (less than three times the
+standard uncertainty of a head); wells nearly in line; direction uncertain (more than
+30 degrees).
 
-Uncertainties rest on --sigma, the standard uncertainty of a head, by the delta
-method; where the plane misses the heads by more than that, on the misfit.
+Uncertainties rest on the standard uncertainties of the heads (a column sigma, or
+--sigma for wells that have none of their own) by the delta method; where the plane
+misses the heads by more than their root mean square, on the misfit.
 
 The parts, and their formats by extension:
   summary    .txt .csv .json  a row a round and zone; usual
@@ -94,7 +96,7 @@ func newFlow(p *program) *cobra.Command {
 	const group = "Flow"
 	fs := cmd.Flags()
 	manual.Add(fs,
-		manual.Option{Group: group, Name: "sigma", Value: &c.sigma, Default: "unknown; the misfit stands for it", Text: sigmaOptionText},
+		manual.Option{Group: group, Name: "sigma", Value: &c.sigma, Default: "the readings' column sigma, or the misfit", Text: sigmaOptionText},
 		manual.Option{Group: group, Name: "method", Value: &c.method, Text: "what lines and arrows follow: the planes of the triangles, or the one through all wells"},
 		manual.Option{Group: group, Name: "starts", Value: &c.starts, Text: "file of places where flow lines begin, - for standard input"},
 		manual.Option{Group: group, Name: "arrows", Value: &c.arrows, Default: "none", Text: "distance of arrows, which stand on whole multiples of it"},

@@ -132,11 +132,20 @@ func (j *flowing) nests(w io.Writer) error {
 	for from := 0; from < len(j.states); {
 		to := from
 		var at []orb.Point
-		var heads, middles []float64
+		var heads, middles, sigmas []float64
 		var names []string
 		for ; to < len(j.states) && j.states[to].round == j.states[from].round; to++ {
 			s := j.states[to]
+			own, err := j.sigmas(s.heads)
+			if err != nil {
+				return err
+			}
 			for i := range s.heads.Len() {
+				sigma := math.NaN()
+				if own != nil {
+					sigma = own[i]
+				}
+				sigmas = append(sigmas, sigma)
 				middle := math.NaN()
 				if z, ok := j.depths.screenMiddle(s.heads.ID(i)); ok {
 					middle = j.flowCommand.reading.measures.z.Of(z)
@@ -145,7 +154,7 @@ func (j *flowing) nests(w io.Writer) error {
 				names = append(names, s.heads.ID(i))
 			}
 		}
-		for _, n := range flow.Nests(at, heads, middles, within, j.sigmaOf()) {
+		for _, n := range flow.Nests(at, heads, middles, within, sigmas) {
 			found++
 			direction := "down"
 			switch {

@@ -46,6 +46,7 @@ type flowState struct {
 	l           *loaded // nil if there are too few wells
 	wells       int
 	why         string // there is no direction
+	sigmas      bool   // heads have uncertainties, of their own or by option
 	plane       *flow.Plane
 	worst       int // reading that the plane misses most
 	three       []flow.Solution
@@ -170,12 +171,32 @@ func (j *flowing) state(ctx context.Context, s *flowState, set *readings.Set) er
 	return nil
 }
 
-// sigmaOf is the standard uncertainty of a head, NaN if unknown.
-func (j *flowing) sigmaOf() float64 {
-	if !j.sigma.IsSet() {
-		return math.NaN()
+// sigmas are the standard uncertainties of heads, in the order of the set, each its own or
+// that of --sigma; nil if nothing is known of them.
+func (j *flowing) sigmas(set *readings.Set) ([]float64, error) {
+	column := set.Has(readings.Sigma)
+	if !column && !j.sigma.IsSet() {
+		return nil, nil
 	}
-	return j.sigma.Value.Float64()
+	all := make([]float64, set.Len())
+	for i := range all {
+		own, ok, err := 0.0, false, error(nil)
+		if column {
+			own, ok, err = sigmaOf(set, i, &j.reading)
+		}
+		at := fmt.Sprintf("%s:%d", j.list[set.Source(i)].Name, set.Lines[i])
+		switch {
+		case err != nil:
+			return nil, status.With(status.WrongData, fmt.Errorf("%s: %w", at, err), sigmaHint)
+		case ok:
+			all[i] = own
+		case j.sigma.IsSet():
+			all[i] = j.sigma.Value.Float64()
+		default:
+			return nil, status.With(status.WrongData, fmt.Errorf("%s: no sigma: expected one for every well, as others have one", at), "--sigma S says what holds where there is none")
+		}
+	}
+	return all, nil
 }
 
 // settle works out digits and the ratio of units.
@@ -282,12 +303,26 @@ func (j *flowing) work(ctx context.Context, s *flowState, out *outputs) error {
 	var at []orb.Point
 	var heads []float64
 	var used []int
+	all, err := j.sigmas(s.l.set)
+	if err != nil {
+		return err
+	}
+	s.sigmas = all != nil
+	var sigmas []float64
 	for i, p := range s.l.set.Points {
 		if s.l.contains(p) {
 			at, heads, used = append(at, p), append(heads, s.l.set.Z[i]), append(used, i)
+			if s.sigmas {
+				sigmas = append(sigmas, all[i])
+			}
 		}
 	}
-	plane, err := flow.Fit(at, heads, j.sigmaOf())
+	var plane *flow.Plane
+	if s.sigmas {
+		plane, err = flow.FitEach(at, heads, sigmas)
+	} else {
+		plane, err = flow.Fit(at, heads, math.NaN())
+	}
 	if errors.Is(err, flow.ErrInLine) {
 		s.why = "wells in line: a slope along that line only, no direction"
 		j.report.Warn("in-line", s.name()+": "+s.why, "round", s.round, "zone", s.zone)
@@ -306,18 +341,42 @@ func (j *flowing) work(ctx context.Context, s *flowState, out *outputs) error {
 	}
 	surface := s.l.surface
 	m := surface.Mesh()
+	var ofVertex []float64
+	if s.sigmas {
+		inputs := m.Inputs()
+		ofVertex = make([]float64, len(inputs))
+		for v, i := range inputs {
+			if ofVertex[v] = math.NaN(); int(i) < len(all) {
+				ofVertex[v] = all[i]
+			} else if j.sigma.IsSet() {
+				ofVertex[v] = j.sigma.Value.Float64()
+			}
+		}
+	}
 	for t := range m.CanonicalTriangles(m.Rank()) {
-		s.three = append(s.three, flow.Solve(surface, t, j.sigmaOf()))
+		if s.sigmas {
+			s.three = append(s.three, flow.SolveEach(surface, t, ofVertex))
+		} else {
+			s.three = append(s.three, flow.Solve(surface, t, math.NaN()))
+		}
 	}
 	j.trace(s)
 	return j.point(ctx, s)
+}
+
+// givenSigma is what uncertainties of heads come to, as it was given; empty if it was not.
+func (j *flowing) givenSigma(s *flowState) string {
+	if s.l.set.Has(readings.Sigma) {
+		return number{s.plane.Noise(), j.z}.String()
+	}
+	return j.sigma.String()
 }
 
 // because says by what a verdict is reached.
 func (j *flowing) because(s *flowState, v flow.Verdict) string {
 	switch v {
 	case flow.BelowNoise:
-		return fmt.Sprintf(": the heads differ by %v, less than %d x %s", number{s.plane.Range, j.z}, flow.NoiseFactor, j.sigma.Value)
+		return fmt.Sprintf(": the heads differ by %v, less than %d x %s", number{s.plane.Range, j.z}, flow.NoiseFactor, j.givenSigma(s))
 	case flow.InLine:
 		return fmt.Sprintf(": the wells spread %.0f %% as far across as along", 100*s.plane.Across)
 	case flow.Vague:

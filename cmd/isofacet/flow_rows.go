@@ -14,7 +14,7 @@ import (
 
 // flowReport is what flow writes as JSON, and what the run record says.
 type flowReport struct {
-	Sigma        *number   `json:"sigma"`        // null if it was not given
+	Sigma        *number   `json:"sigma"`        // of --sigma, null if it was not given
 	Conductivity string    `json:"conductivity"` // with its unit; empty if it was not given
 	Porosity     *number   `json:"porosity"`
 	Rows         []flowRow `json:"rows"`
@@ -66,7 +66,7 @@ func (j *flowing) row(s *flowState) flowRow {
 	switch {
 	case p.FromMisfit:
 		r.SigmaFrom = "misfit"
-	case j.sigma.IsSet():
+	case s.sigmas:
 		r.SigmaFrom = "given"
 	}
 	r.WorstWell, r.WorstResidual = j.wellName(s, s.worst), number{p.WorstResidual, j.z}
@@ -171,7 +171,7 @@ func (j *flowing) writeText(w io.Writer, report *flowReport) error {
 		line("azimuth", "%v%s", r.Azimuth, plusMinus(r.AzimuthSigma, " degrees clockwise from grid north"))
 		line("verdict", "%s", r.Verdict)
 		line("misfit", "%v root mean square about the plane, at most %v at %s", r.RMS, r.WorstResidual, r.WorstWell)
-		line("", "%s", sigmaText(r, j.sigma.String()))
+		line("", "%s", sigmaText(r, j.givenSigma(s)))
 		if j.porosity.IsSet() {
 			line("velocity", "%v %s with conductivity %s and porosity %s", r.Velocity, r.VelocityUnit, report.Conductivity, j.porosity.Value)
 		}
@@ -205,9 +205,9 @@ func sigmaText(r flowRow, given string) string {
 		if given != "" {
 			return fmt.Sprintf("± are standard uncertainties from the misfit, %v: the plane misses the heads by more than %s each", r.Misfit, given)
 		}
-		return fmt.Sprintf("± are standard uncertainties from the misfit, %v: --sigma was not given", r.Misfit)
+		return fmt.Sprintf("± are standard uncertainties from the misfit, %v: neither --sigma nor a column sigma was given", r.Misfit)
 	}
-	return "no uncertainties: --sigma was not given, and three wells have no misfit"
+	return "no uncertainties: neither --sigma nor a column sigma was given, and three wells have no misfit"
 }
 
 // largest is the largest triangle with a sound solution, of several the first.

@@ -157,29 +157,42 @@ func (l *loaded) sigmas(r *reading, t *trusting) ([]float64, error) {
 			"a column of another name becomes it with --columns sigma=NAME; leave-one-out needs none")
 	}
 	for v, i := range m.Inputs() {
-		text := ""
+		own, ok, err := 0.0, false, error(nil)
 		if column && int(i) < l.set.Len() {
-			text = l.set.Text(readings.Sigma, int(i))
+			own, ok, err = sigmaOf(l.set, int(i), r)
 		}
-		if text == "" {
-			if !t.sigma.IsSet() {
-				return nil, status.With(status.WrongData, fmt.Errorf("%s: no sigma: expected one for every reading and vertex of a line", l.inputPlace(int(i))),
-					"--sigma S says what holds where there is none")
-			}
+		switch {
+		case err != nil:
+			return nil, status.With(status.WrongData, fmt.Errorf("%s: %w", l.inputPlace(int(i)), err), sigmaHint)
+		case ok:
+			sigma[v] = own
+		case t.sigma.IsSet():
 			sigma[v] = t.sigma.Value.Float64()
-			continue
+		default:
+			return nil, status.With(status.WrongData, fmt.Errorf("%s: no sigma: expected one for every reading and vertex of a line", l.inputPlace(int(i))),
+				"--sigma S says what holds where there is none")
 		}
-		if l.set.Layouts[l.set.Source(int(i))].Decimal == readings.DecimalComma {
-			text = strings.Replace(text, ",", ".", 1)
-		}
-		s, err := strconv.ParseFloat(text, 64)
-		if err != nil || !(s >= 0) || !isFinite(s) {
-			return nil, status.With(status.WrongData, fmt.Errorf("%s: sigma %q: expected a number, 0 or more", l.inputPlace(int(i)), text),
-				"a standard uncertainty has the unit of z")
-		}
-		sigma[v] = r.z.Of(s)
 	}
 	return sigma, nil
+}
+
+const sigmaHint = "a standard uncertainty has the unit of z"
+
+// sigmaOf is what the column sigma says of a reading, if it says anything.
+func sigmaOf(set *readings.Set, i int, r *reading) (sigma float64, ok bool, err error) {
+	text := set.Text(readings.Sigma, i)
+	if text == "" {
+		return 0, false, nil
+	}
+	written := text
+	if set.Layouts[set.Source(i)].Decimal == readings.DecimalComma {
+		text = strings.Replace(text, ",", ".", 1)
+	}
+	s, err := strconv.ParseFloat(text, 64)
+	if err != nil || !(s >= 0) || !isFinite(s) {
+		return 0, false, fmt.Errorf("sigma %q: expected a number, 0 or more", written)
+	}
+	return r.z.Of(s), true, nil
 }
 
 // localScales is the surface of what readings lie off when expected from the others.

@@ -46,6 +46,44 @@ var ErrInLine = errors.New("wells in line, or fewer than three: expected three t
 //
 // It returns ErrInLine. Time O(wells).
 func Fit(wells []orb.Point, heads []float64, sigma float64) (*Plane, error) {
+	return fit(wells, heads, sigma, nil)
+}
+
+// FitEach is Fit for heads that have an uncertainty each. The plane is the same; its
+// covariance is that of a sum of heads of unlike uncertainty. Sigma is the root of their
+// mean square.
+func FitEach(wells []orb.Point, heads, sigmas []float64) (*Plane, error) {
+	if len(sigmas) != len(heads) {
+		panic("flow: as many uncertainties as heads expected")
+	}
+	if len(sigmas) == 0 {
+		return nil, ErrInLine
+	}
+	if alike(sigmas) {
+		return fit(wells, heads, sigmas[0], nil)
+	}
+	return fit(wells, heads, rootMeanSquare(sigmas), sigmas)
+}
+
+func alike(sigmas []float64) bool {
+	for _, s := range sigmas {
+		if s != sigmas[0] {
+			return false
+		}
+	}
+	return true
+}
+
+func rootMeanSquare(sigmas []float64) float64 {
+	var sum exact.Sum
+	for _, s := range sigmas {
+		sum.AddProduct(s, s)
+	}
+	return math.Sqrt(sum.Value() / float64(len(sigmas)))
+}
+
+// fit is Fit, or FitEach if there are sigmas.
+func fit(wells []orb.Point, heads []float64, sigma float64, sigmas []float64) (*Plane, error) {
 	if len(wells) != len(heads) {
 		panic("flow: as many heads as wells expected")
 	}
@@ -88,6 +126,9 @@ func Fit(wells []orb.Point, heads []float64, sigma float64) (*Plane, error) {
 	p.Across = across(uu, uv, vv, det)
 	p.residuals(wells, heads)
 	p.settleSigma(sigma)
+	if sigmas != nil && !p.FromMisfit {
+		p.propagate(wells, sigmas, uu, uv, vv, det)
+	}
 	return p, nil
 }
 
@@ -120,6 +161,26 @@ func (p *Plane) settleSigma(sigma float64) {
 	}
 	p.Gradient = p.Gradient.scaled(float64(p.Sigma * p.Sigma))
 }
+
+// propagate sets the covariance of the gradient from uncertainties of heads: the
+// gradient is the sum of head times c_i, with c_i = (vv u - uv v, uu v - uv u) / det about
+// the centre, and its covariance that of sigma_i² c_i c_iᵀ.
+func (p *Plane) propagate(wells []orb.Point, sigmas []float64, uu, uv, vv, det float64) {
+	var xx, yy, xy exact.Sum
+	for i, at := range wells {
+		u, v := at[0]-p.Centre[0], at[1]-p.Centre[1]
+		cx := difference(vv, u, uv, v) / det * sigmas[i]
+		cy := difference(uu, v, uv, u) / det * sigmas[i]
+		xx.AddProduct(cx, cx)
+		yy.AddProduct(cy, cy)
+		xy.AddProduct(cx, cy)
+	}
+	p.Gradient.VarX, p.Gradient.VarY, p.Gradient.Cov = xx.Value(), yy.Value(), xy.Value()
+}
+
+// Noise is the standard uncertainty of a head that Fit was given; NaN if none. FitEach
+// was given that of every head: then it is the root of their mean square.
+func (p *Plane) Noise() float64 { return p.given }
 
 // across is the root of the smaller eigenvalue over the larger one.
 func across(uu, uv, vv, det float64) float64 {

@@ -252,6 +252,48 @@ func TestTurnedSite(t *testing.T) {
 	}
 }
 
+// Heads of unlike uncertainty: the covariance is that of draws, and of three wells both
+// ways to it agree.
+func TestFitEach(t *testing.T) {
+	at := []orb.Point{{0, 0}, {120, 10}, {40, 150}, {130, 140}, {60, 70}}
+	sigmas := []float64{0.05, 0.01, 0.02, 0.1, 0.03}
+	exact := make([]float64, len(at))
+	for i, p := range at {
+		exact[i] = 100 - 0.02*p[0] + 0.01*p[1]
+	}
+	p, err := FitEach(at, exact, sigmas)
+	if err != nil || p.FromMisfit || !near(p.Sigma, math.Sqrt((0.0025+0.0001+0.0004+0.01+0.0009)/5), 1e-12) {
+		t.Fatalf("%+v, %v", p, err)
+	}
+	r := rand.New(rand.NewPCG(6, 7))
+	var xs, ys []float64
+	for range 20_000 {
+		z := make([]float64, len(at))
+		for i := range z {
+			z[i] = exact[i] + sigmas[i]*r.NormFloat64()
+		}
+		q, err := Fit(at, z, math.NaN())
+		if err != nil {
+			t.Fatal(err)
+		}
+		xs, ys = append(xs, q.Gradient.DzDx), append(ys, q.Gradient.DzDy)
+	}
+	g := p.Gradient
+	if !near(stat.Variance(xs, nil), g.VarX, 0.05) || !near(stat.Variance(ys, nil), g.VarY, 0.05) || math.Abs(stat.Covariance(xs, ys, nil)-g.Cov) > 0.05*math.Sqrt(g.VarX*g.VarY) {
+		t.Errorf("draws %v %v %v, want %+v", stat.Variance(xs, nil), stat.Variance(ys, nil), stat.Covariance(xs, ys, nil), g)
+	}
+	s := surface(t, at[:3], exact[:3])
+	byVertex := make([]float64, 3)
+	for v, i := range s.Mesh().Inputs() {
+		byVertex[v] = sigmas[i]
+	}
+	plane, err := FitEach(at[:3], exact[:3], sigmas[:3])
+	x := SolveEach(s, 0, byVertex)
+	if err != nil || !near(x.Gradient.VarX, plane.Gradient.VarX, 1e-9) || !near(x.Gradient.VarY, plane.Gradient.VarY, 1e-9) || !near(x.Gradient.Cov, plane.Gradient.Cov, 1e-9) {
+		t.Errorf("three wells: %+v, plane %+v, %v", x.Gradient, plane.Gradient, err)
+	}
+}
+
 // Must show: 20,000 seeded draws agree with the delta method within 3 percent where
 // noise is small.
 func TestDrawsAgreeWithDelta(t *testing.T) {
@@ -351,14 +393,14 @@ func TestVerdicts(t *testing.T) {
 
 func TestNests(t *testing.T) {
 	at := []orb.Point{{0, 0}, {3, 0}, {0, 4}, {500, 0}}
-	nests := Nests(at, []float64{100.2, 100.0, 99.5, 90}, []float64{95, 80, 60, 50}, 5, 0.01)
+	nests := Nests(at, []float64{100.2, 100.0, 99.5, 90}, []float64{95, 80, 60, 50}, 5, []float64{0.01, 0.01, 0.01, 0.01})
 	if len(nests) != 2 || nests[0].Upper != 0 || nests[0].Lower != 1 || nests[1].Upper != 1 || nests[1].Lower != 2 {
 		t.Fatalf("%+v", nests)
 	}
 	if n := nests[0]; !near(n.Gradient, 0.2/15, 1e-12) || !near(n.Sigma, 0.01*math.Sqrt2/15, 1e-12) || n.Apart != 3 {
 		t.Errorf("%+v, want (100.2 - 100.0) / (95 - 80)", n)
 	}
-	if n := Nests(at, []float64{1, 2, 3, 4}, []float64{95, 95, math.NaN(), 95}, 5, 0.01); len(n) != 0 {
+	if n := Nests(at, []float64{1, 2, 3, 4}, []float64{95, 95, math.NaN(), 95}, 5, []float64{0.01, 0.01, 0.01, 0.01}); len(n) != 0 {
 		t.Errorf("same screen middles, or none: %+v", n)
 	}
 }

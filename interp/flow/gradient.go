@@ -61,6 +61,11 @@ func (g Gradient) scaled(variance float64) Gradient {
 // With the gradients c_i of the shape functions of the three corners, the gradient
 // is the sum of z_i c_i and its covariance that of sigma² c_i c_iᵀ.
 func OfTriangle(s *interp.Surface, t triangulate.Triangle, sigma float64) Gradient {
+	return ofTriangle(s, t, [3]float64{1, 1, 1}).scaled(float64(sigma * sigma))
+}
+
+// ofTriangle is OfTriangle with the uncertainty of each head, in the order of canonical.
+func ofTriangle(s *interp.Surface, t triangulate.Triangle, sigmas [3]float64) Gradient {
 	dzdx, dzdy := s.Gradient(t)
 	g := Gradient{DzDx: dzdx, DzDy: dzdy}
 	m := s.Mesh()
@@ -68,12 +73,12 @@ func OfTriangle(s *interp.Surface, t triangulate.Triangle, sigma float64) Gradie
 	d := doubleArea(m, vs)
 	for i := range vs {
 		p, q := m.Position(vs[(i+1)%3]), m.Position(vs[(i+2)%3])
-		cx, cy := (p[1]-q[1])/d, (q[0]-p[0])/d
+		cx, cy := (p[1]-q[1])/d*sigmas[i], (q[0]-p[0])/d*sigmas[i]
 		g.VarX += float64(cx * cx)
 		g.VarY += float64(cy * cy)
 		g.Cov += float64(cx * cy)
 	}
-	return g.scaled(float64(sigma * sigma))
+	return g
 }
 
 // difference returns ab - cd, its relative error below 2^-52 (Kahan).

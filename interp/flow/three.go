@@ -24,10 +24,25 @@ type Solution struct {
 // Solve returns the solution of three wells, in time O(1). Sigma is the standard
 // uncertainty of a head, NaN if unknown.
 func Solve(s *interp.Surface, t triangulate.Triangle, sigma float64) Solution {
+	return solve(s, t, sigma, OfTriangle(s, t, sigma))
+}
+
+// SolveEach is Solve for heads that have an uncertainty each, by vertex. The noise that
+// their range is judged by is the root of the mean square of the three.
+func SolveEach(s *interp.Surface, t triangulate.Triangle, sigmas []float64) Solution {
+	vs := canonical(s.Mesh(), t)
+	own := [3]float64{sigmas[vs[0]], sigmas[vs[1]], sigmas[vs[2]]}
+	if alike(own[:]) {
+		return Solve(s, t, own[0])
+	}
+	return solve(s, t, rootMeanSquare(own[:]), ofTriangle(s, t, own))
+}
+
+func solve(s *interp.Surface, t triangulate.Triangle, sigma float64, g Gradient) Solution {
 	m := s.Mesh()
 	vs := canonical(m, t)
 	d := doubleArea(m, vs)
-	x := Solution{Triangle: t, Wells: vs, Gradient: OfTriangle(s, t, sigma), Area: d / 2}
+	x := Solution{Triangle: t, Wells: vs, Gradient: g, Area: d / 2}
 	low, high := math.Inf(1), math.Inf(-1)
 	var uu, uv, vv float64
 	for i, v := range vs {
@@ -80,7 +95,9 @@ type Nest struct {
 // Nests returns the pairs of wells no further apart than within, whose screens have
 // middles at unlike heights; every well with the next lower one of its place. Middles
 // are NaN where a screen is not known. Time O(wells²), for the few that sites have.
-func Nests(wells []orb.Point, heads, middles []float64, within, sigma float64) []Nest {
+//
+// sigmas are the standard uncertainties of the heads, nil if they are unknown.
+func Nests(wells []orb.Point, heads, middles []float64, within float64, sigmas []float64) []Nest {
 	var all []Nest
 	for i := range wells {
 		best := -1
@@ -98,9 +115,13 @@ func Nests(wells []orb.Point, heads, middles []float64, within, sigma float64) [
 		}
 		rise := middles[i] - middles[best]
 		dx, dy := wells[best][0]-wells[i][0], wells[best][1]-wells[i][1]
+		sigma := math.NaN()
+		if sigmas != nil {
+			sigma = math.Sqrt(float64(sigmas[i]*sigmas[i]) + float64(sigmas[best]*sigmas[best]))
+		}
 		all = append(all, Nest{
 			Upper: i, Lower: best, Gradient: (heads[i] - heads[best]) / rise,
-			Sigma: float64(sigma*math.Sqrt2) / rise,
+			Sigma: sigma / rise,
 			Apart: math.Sqrt(float64(dx*dx) + float64(dy*dy)),
 		})
 	}

@@ -67,8 +67,8 @@ func Slips(z, expected, tolerance float64, decimals int) (found []Slip) {
 	}
 	for i := range len(whole) + 1 {
 		for d := byte('0'); d <= '9'; d++ {
-			if i == 0 && d == '0' {
-				continue
+			if i == 0 && d == '0' || i == 1 && text[0] == '0' {
+				continue // nobody writes 01.2 for 1.2
 			}
 			would := sign + text[:i] + string(d) + text[i:]
 			try(number(would), "a digit dropped: %s", would)
