@@ -49,6 +49,9 @@ type Display struct {
 	mu   sync.Mutex
 	bars *mpb.Progress // nil while nothing is drawn
 	bar  *mpb.Bar      // the one bar of bars
+
+	stages int       // how many began, and ended
+	since  time.Time // when the last one began
 }
 
 // New returns a display on w that draws bars only if shown.
@@ -58,11 +61,24 @@ func New(w io.Writer, shown bool) *Display {
 
 // Stage begins a stage of work. It returns a function that takes how much is
 // done of how much (total 0 where it is not known) and one that ends the stage.
-// The first is nil when nothing is shown, so that the work need not count.
+// The first is nil when nothing is shown, so that the work need not count. Work that
+// does not count is shown by its name and the seconds that it takes.
 func (d *Display) Stage(name string) (report func(done, total int), finish func()) {
 	if !d.shown {
 		return nil, func() {}
 	}
+	d.mu.Lock()
+	d.stages++
+	d.since = time.Now()
+	stage := d.stages
+	d.mu.Unlock()
+	time.AfterFunc(delay, func() {
+		d.mu.Lock()
+		defer d.mu.Unlock()
+		if d.stages == stage && d.bars == nil {
+			d.drawLocked(name, 0, 0)
+		}
+	})
 	var last atomic.Int64
 	report = func(done, total int) {
 		before := last.Load()
@@ -81,22 +97,31 @@ func (d *Display) Stage(name string) (report func(done, total int), finish func(
 func (d *Display) draw(name string, done, total int64) {
 	d.mu.Lock()
 	defer d.mu.Unlock()
+	d.drawLocked(name, done, total)
+}
+
+func (d *Display) drawLocked(name string, done, total int64) {
 	if !d.shown {
 		return
 	}
 	if d.bars == nil {
+		since := d.since
 		d.bars = mpb.New(mpb.WithOutput(d.w), mpb.WithAutoRefresh(), mpb.WithWidth(64))
 		d.bar = d.bars.AddBar(0,
 			mpb.BarRemoveOnComplete(),
 			mpb.PrependDecorators(decor.Name(name, decor.WC{W: 16, C: decor.DindentRight})),
-			mpb.AppendDecorators(decor.Any(share)))
+			mpb.AppendDecorators(decor.Any(func(s decor.Statistics) string { return share(s, time.Since(since)) })))
 	}
 	d.bar.SetTotal(total, false)
 	d.bar.SetCurrent(done)
 }
 
-// share prints how far a bar has come: a percentage where the total is known.
-func share(s decor.Statistics) string {
+// share prints how far a bar has come: a percentage where the total is known, the time it
+// took where nothing is.
+func share(s decor.Statistics, took time.Duration) string {
+	if s.Total <= 0 && s.Current == 0 {
+		return " " + thousands(int64(took/time.Second)) + " s"
+	}
 	if s.Total <= 0 {
 		return " " + thousands(s.Current)
 	}
@@ -123,6 +148,7 @@ func thousands(n int64) string {
 func (d *Display) endStage() {
 	d.mu.Lock()
 	defer d.mu.Unlock()
+	d.stages++
 	d.clear()
 }
 
@@ -153,5 +179,6 @@ func (d *Display) Close() {
 	d.mu.Lock()
 	defer d.mu.Unlock()
 	d.clear()
+	d.stages++
 	d.shown = false
 }

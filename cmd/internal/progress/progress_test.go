@@ -104,6 +104,27 @@ func TestLongWorkDrawsItsNameAndShare(t *testing.T) {
 	}
 }
 
+// Work that does not count shows its name, and the next stage has none of it.
+func TestLongWorkThatDoesNotCountDrawsItsName(t *testing.T) {
+	var out lockedBuffer
+	d := New(&out, true)
+	d.start = time.Now().Add(-time.Second)
+	_, finish := d.Stage("looking")
+	time.Sleep(delay + 400*time.Millisecond)
+	finish()
+	if got := out.String(); !strings.Contains(got, "looking") || !strings.Contains(got, "0 s") {
+		t.Errorf("drew %q, want the name and the time", got)
+	}
+	_, finish = d.Stage("short")
+	finish()
+	before := out.String()
+	time.Sleep(delay + 300*time.Millisecond)
+	if got := out.String(); got != before {
+		t.Errorf("drew %q after the end", got[len(before):])
+	}
+	d.Close()
+}
+
 func TestThousands(t *testing.T) {
 	for n, want := range map[int64]string{0: "0", 7: "7", 999: "999", 1000: "1 000", 1234567: "1 234 567"} {
 		if got := thousands(n); got != want {
