@@ -25,7 +25,7 @@ smallest and the largest, of all and by the texts of a role (--by class). From
 the RMSE it states
   NSSDA (FGDC-STD-007.3-1998): 1.9600 x RMSE, at least 20 checkpoints;
   ASPRS edition 2 (2023): the RMSE, combined with the checkpoints' own error where
-  --checkpoints-error gives it, at least 30 checkpoints;
+  --checkpoints-error or their column sigma gives it, at least 30 checkpoints;
   the contour interval it supports: 3 x RMSE (ASPRS 1990, class 1), 3.2898 x RMSE
   (National Map Accuracy Standards, 1947).
 The NSSDA's rules were read in a paraphrase of the whole standard, the ASPRS
@@ -67,7 +67,7 @@ func newAccuracy(p *program) *cobra.Command {
 			Text: "a file of checkpoints, - for standard input; or readings to hold out of the surface, as in code=CHK*"},
 		manual.Option{Group: group, Name: "checkpoints-columns", Value: &a.columns, Default: "the header's words",
 			Text: "what the columns of the file of checkpoints hold, like --columns"},
-		manual.Option{Group: group, Name: "checkpoints-error", Value: &a.own, Default: "not combined",
+		manual.Option{Group: group, Name: "checkpoints-error", Value: &a.own, Default: "that of their column sigma, if all have one",
 			Text: "root mean square error of the checkpoints themselves"},
 		manual.Option{Group: group, Name: "by", Value: &a.by,
 			Text: "report by the texts of this role as well: " + strings.Join(keptRoleNames(), ", ")},

@@ -14,8 +14,10 @@ import (
 	"isofacet/cmd/internal/status"
 	"isofacet/interp"
 	"isofacet/interp/accuracy"
+	"isofacet/io/numtext"
 	"isofacet/io/readings"
 	"isofacet/triangulate"
+	"isofacet/triangulate/exact"
 )
 
 // checkpoints are what the surface is compared with.
@@ -160,8 +162,48 @@ func (a *accuracyCommand) compare(ctx context.Context, l *loaded, c *checkpoints
 		return nil, status.With(status.WrongData, fmt.Errorf("%s, all outside the surface: expected some inside", counted(len(pts), "checkpoint")),
 			"are x and y of the checkpoints in the same system and order as those of the readings?")
 	}
+	if err := a.ownError(r); err != nil {
+		return nil, err
+	}
 	a.summarise(l, r)
 	return r, nil
+}
+
+// ownError settles how wrong the checkpoints are themselves: what the command line
+// says, or the root mean square of their column sigma if all that are compared have
+// one.
+func (a *accuracyCommand) ownError(r *accuracyReport) error {
+	if a.own.IsSet() {
+		r.own, r.combined = a.own.Value.Float64(), true
+		return nil
+	}
+	set := r.c.set
+	if !set.Has(readings.Sigma) {
+		return nil
+	}
+	var squares exact.Sum
+	stated := 0
+	for _, row := range r.rows {
+		text := set.Text(readings.Sigma, row.index)
+		if row.place == triangulate.Outside || text == "" {
+			continue
+		}
+		v, ok := numtext.Parse([]byte(text))
+		if !ok || !(v >= 0 && v <= triangulate.CoordinateMost) {
+			return status.With(status.WrongData, fmt.Errorf("%s: checkpoint %q: sigma %q: expected a number that is not below zero", r.c.at(row.index), set.ID(row.index), text),
+				"the column sigma is how wrong each checkpoint is itself; --checkpoints-error states one figure for all and passes over the column")
+		}
+		squares.AddProduct(v, v)
+		stated++
+	}
+	switch n := len(r.residuals); {
+	case stated == n:
+		r.own, r.combined = math.Sqrt(squares.Mean(n)), true
+		a.report.Note(fmt.Sprintf("checkpoints: their own error is the root mean square of the column sigma: %v", number{r.own, -1}), "checkpoints_error", r.own)
+	case stated > 0:
+		a.report.Warn("sigma-missing", fmt.Sprintf("sigma: %d of %s state one: not combined with the RMSE; --checkpoints-error states one figure for all", stated, counted(n, "checkpoint")), "stated", stated, "checkpoints", n)
+	}
+	return nil
 }
 
 // independent refuses checkpoints at the place of a reading or a line's vertex that
@@ -218,7 +260,7 @@ func groupNames(of map[string][]float64) []string {
 // summarise makes the figures.
 func (a *accuracyCommand) summarise(l *loaded, r *accuracyReport) {
 	xy, z := l.digits(a.decimals)
-	r.z, r.xy, r.own, r.combined = z, xy, a.own.Value.Float64(), a.own.IsSet()
+	r.z, r.xy = z, xy
 	all := r.figures("all", r.residuals)
 	r.All = &all
 	if a.by.text != "" {

@@ -1,7 +1,6 @@
 package main
 
 import (
-	"cmp"
 	"context"
 	"encoding/json"
 	"errors"
@@ -292,6 +291,9 @@ func (b *batch) summary() error {
 		}
 	}
 	text := fmt.Sprintf("tasks: %d: %d done, %d unchanged, %d failed", len(b.results), count[stepDone], count[stepUnchanged], count[stepFailed])
+	if count[stepDone] == 0 && failed != nil {
+		text += ": nothing was written"
+	}
 	if count[stepUnchanged] == len(b.results) {
 		text = fmt.Sprintf("nothing to do: %s unchanged", counted(len(b.results), "task"))
 	}
@@ -318,31 +320,6 @@ func (b *batch) describe(rec *record.Record) {
 			rec.ThisRun.Unchanged = append(rec.ThisRun.Unchanged, t.Name)
 		}
 	}
-}
-
-// refuse reports every fault of a plan, and returns them as one error.
-func (b *batch) refuse(faults []stepFault, place func(stepFault) error) error {
-	code := status.Done
-	var lines []string
-	var hints []string
-	for _, f := range faults {
-		err := f.err
-		if place != nil {
-			err = place(f)
-		}
-		c, h := explain(f.err)
-		code = max(code, c)
-		lines = append(lines, err.Error())
-		for _, hint := range h {
-			if !slices.Contains(hints, hint) {
-				hints = append(hints, hint)
-			}
-		}
-	}
-	if len(faults) == 1 && place == nil {
-		return faults[0].err
-	}
-	return status.With(cmp.Or(code, status.WrongUsage), errors.New(strings.Join(lines, "\n")), hints...)
 }
 
 // memoryText describes the limit for a run record.

@@ -16,7 +16,9 @@ import (
 const changeLong = `One round of readings minus another, or one file minus another: --to minus --from,
 positive is a rise. Wells are the same if their ids are; readings without ids if their
 places are. The table has every well: common to both with its change, added, or lost;
-those added and lost are named. Their zones, datums and units have to be the same.
+those added and lost are named. The zones have to be the same.
+Files of readings do not name their datums and units: the options state them once
+for both sides, and you have to see that they hold for both.
 
 A side is a file of readings, or round=NAME of the files named behind. Options that say
 how readings are read hold for both.

@@ -121,6 +121,7 @@ func (p *program) read(ctx context.Context, r *reading, list []*input) (*reading
 func (p *program) readParts(ctx context.Context, r *reading, list []*input, part readings.Parter) ([]readings.Part, error) {
 	var parts []readings.Part
 	err := p.withSources(ctx, r, list, func(sources []readings.Source, opt readings.Options) (err error) {
+		opt.BadApart = r.alone // one bad round does not stop the others
 		parts, err = readings.ReadParts(ctx, sources, opt, part)
 		return err
 	})

@@ -23,6 +23,8 @@ type rounds struct {
 	each eachRound
 	// apart: all rounds are being read, to be put apart.
 	apart bool
+	// alone: a bad line fails its round, not the others.
+	alone bool
 }
 
 // eachRound is --each with a way back to how the readings are read.

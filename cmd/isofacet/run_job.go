@@ -32,7 +32,7 @@ command, its files and its options:
 
 Keys are the long options of the commands without their hyphens; a list stands for
 an option given several times. File names are those of the folder that the program
-is run in, as on the command line.
+is run in, as on the command line, not of the job's: go into its folder first.
 
 Everything is checked before the first task: unknown keys, values, missing files,
 outputs that clash. Then tasks run side by side within --threads and --memory. One
@@ -169,6 +169,7 @@ func (r *runCommand) runJob(cmd *cobra.Command, name string) error {
 		}
 	}
 	if len(faults) > 0 {
+		besideTheJob(name, tasks, faults)
 		return b.refuse(faults, func(f stepFault) error { return placed(j, of, f) })
 	}
 	if !strings.HasPrefix(name, samplePrefix) {

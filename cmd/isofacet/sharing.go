@@ -146,9 +146,9 @@ func (w *sharedWork) rounds(ctx context.Context, p *program, r *reading, list []
 	s.once.Do(func() {
 		done := p.listen(list)
 		s.by = p
-		r.apart = true
+		r.apart, r.alone = true, true
 		s.parts, s.err = p.readParts(ctx, r, list, readings.ByRole(readings.Round))
-		r.apart = false
+		r.apart, r.alone = false, false
 		s.said, s.edges, s.depths = done(), r.edges, r.depths
 	})
 	if s.by != p {
@@ -160,35 +160,62 @@ func (w *sharedWork) rounds(ctx context.Context, p *program, r *reading, list []
 
 // sharedMesh is a mesh of places that several sets of values stand at.
 type sharedMesh struct {
-	once   sync.Once
-	points []orb.Point
-	mesh   *triangulate.Mesh
-	err    error
+	once    sync.Once
+	points  []orb.Point
+	byPlace []int32 // of points, made when other points are compared
+	mesh    *triangulate.Mesh
+	err     error
 }
 
 // meshesKept is how many meshes are kept for others with the same places: rounds of
 // one network come one after the other.
 const meshesKept = 8
 
-// mesh returns the mesh of places, made by the first who asks.
+// mesh returns the mesh of places, made by the first who asks. Another who has the
+// same places in another order gets the same triangles with inputs of its own.
 func (w *sharedWork) mesh(ctx context.Context, points []orb.Point, opt triangulate.Options) (*triangulate.Mesh, error) {
+	m, byPlace := w.meshAt(points)
+	m.once.Do(func() { m.mesh, m.err = triangulate.Delaunay(ctx, m.points, opt) })
+	if m.err != nil || byPlace == nil {
+		return m.mesh, m.err
+	}
+	if mesh, ok := m.mesh.Reordered(points, byPlace); ok {
+		return mesh, nil
+	}
+	return triangulate.Delaunay(ctx, points, opt)
+}
+
+// meshAt finds or begins the mesh of places. byPlace is not nil if its inputs come in
+// another order than points.
+func (w *sharedWork) meshAt(points []orb.Point) (m *sharedMesh, byPlace []int32) {
 	w.mu.Lock()
-	var m *sharedMesh
+	defer w.mu.Unlock()
 	for _, known := range w.meshes {
 		if slices.Equal(known.points, points) {
-			m = known
+			return known, nil
 		}
 	}
-	if m == nil {
-		m = &sharedMesh{points: points}
-		w.meshes = append(w.meshes, m)
-		if len(w.meshes) > meshesKept {
-			w.meshes = w.meshes[1:]
+	for _, known := range w.meshes {
+		if len(known.points) != len(points) {
+			continue
+		}
+		if byPlace == nil {
+			byPlace = triangulate.ByPlace(points)
+		}
+		if known.byPlace == nil {
+			known.byPlace = triangulate.ByPlace(known.points)
+		}
+		same := func(a, b int32) bool { return known.points[a] == points[b] }
+		if slices.EqualFunc(known.byPlace, byPlace, same) {
+			return known, byPlace
 		}
 	}
-	w.mu.Unlock()
-	m.once.Do(func() { m.mesh, m.err = triangulate.Delaunay(ctx, points, opt) })
-	return m.mesh, m.err
+	m = &sharedMesh{points: points, byPlace: byPlace}
+	w.meshes = append(w.meshes, m)
+	if len(w.meshes) > meshesKept {
+		w.meshes = w.meshes[1:]
+	}
+	return m, nil
 }
 
 // surfaceOf returns the surface of readings without lines, over a mesh that may be

@@ -40,6 +40,10 @@ type Options struct {
 	// Lenient leaves out bad lines and lists them. Otherwise they are an error of
 	// type *BadLines.
 	Lenient bool
+	// BadApart makes a bad line an error of its part alone, Part.Err, as long as every
+	// bad line could be taken apart far enough to tell its part. Only ReadParts looks at
+	// it.
+	BadApart bool
 
 	Select Selection
 	Spots  Spots // Scan does not look at it

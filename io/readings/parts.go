@@ -13,7 +13,8 @@ type Part struct {
 	Name string
 	Set  *Set
 	// Err, if not nil, is why the part has no set: readings at one place that may
-	// not be merged (*SpotError), or of several zones (*MixedError). The other parts
+	// not be merged (*SpotError), or of several zones (*MixedError), or, under
+	// Options.BadApart, lines that could not be read (*BadLines). The other parts
 	// stand.
 	Err error
 }
@@ -37,7 +38,9 @@ func ByRole(r Role) Parter {
 // Errors are those of Read, except that of Part.Err.
 func ReadParts(ctx context.Context, sources []Source, o Options, part Parter) ([]Part, error) {
 	o.part = part
-	p := parts{o: &o, sources: sources, of: map[string]*someBlocks{}}
+	apart := o.BadApart && !o.Lenient
+	o.Lenient = o.Lenient || apart // every bad line is kept, with its part
+	p := parts{o: &o, sources: sources, of: map[string]*someBlocks{}, badApart: apart}
 	total, bad := 0, false
 	s, err := newScanner(ctx, sources, &o, needValue, func(b *Block) error {
 		if total += b.Len(); total > math.MaxInt32 {
@@ -58,6 +61,11 @@ func ReadParts(ctx context.Context, sources []Source, o Options, part Parter) ([
 	if err != nil {
 		return nil, err
 	}
+	if apart && len(p.unknown) > 0 {
+		// It may belong to any of them.
+		s.bad.Good = summary.Counts.Read - s.bad.Total
+		return nil, &s.bad
+	}
 	return p.finish(ctx, summary)
 }
 
@@ -67,6 +75,8 @@ type parts struct {
 	sources []Source
 	of      map[string]*someBlocks
 	unknown []*PositionError // refused, in no part
+
+	badApart bool
 }
 
 // noteDecimals keeps how many decimals a reading is written with.
@@ -154,7 +164,10 @@ func (p *parts) finish(ctx context.Context, summary *Summary) ([]Part, error) {
 		c := collected{Set: set, blocks: some.blocks, o: p.o, sources: p.sources}
 		c.joinNumbers()
 		part := Part{Name: name, Set: set}
-		err := c.mixed()
+		err := p.badLines(set)
+		if err == nil {
+			err = c.mixed()
+		}
 		if err == nil {
 			err = c.mergeSpots(ctx)
 		}
@@ -170,6 +183,17 @@ func (p *parts) finish(ctx context.Context, summary *Summary) ([]Part, error) {
 	}
 	slices.SortFunc(all, func(a, b Part) int { return cmp.Compare(a.Name, b.Name) })
 	return all, nil
+}
+
+// badLines returns the error of a part with lines that could not be read, if bad
+// lines are a matter of their part.
+func (p *parts) badLines(set *Set) error {
+	if !p.badApart || len(set.Refused) == 0 {
+		return nil
+	}
+	return &BadLines{
+		First: set.Refused[:min(firstFew, len(set.Refused))], Total: len(set.Refused), Good: set.Counts.Read - set.Counts.Refused,
+	}
 }
 
 // number returns the number of the source of that name.

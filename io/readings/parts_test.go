@@ -91,3 +91,30 @@ func TestPartsApartInTrouble(t *testing.T) {
 		t.Error("a bad line is no error")
 	}
 }
+
+// A bad line fails its part alone under BadApart, with what Read says of the part's
+// own lines; one that cannot be taken apart fails all.
+func TestBadLinesApart(t *testing.T) {
+	const header = "id,x,y,z,round\n"
+	a, b := "A,0,0,1,R1\nB,1,0,2,R1\n", "A,0,0,x,R2\nB,1,0,2,R2\nC,0,q,2,R2\n"
+	read := func(text string, apart bool) ([]Part, error) {
+		return ReadParts(context.Background(), []Source{FromBytes("f", []byte(text))}, Options{BadApart: apart, Workers: 2, chunk: 16}, ByRole(Round))
+	}
+	all, err := read(header+a+b, true)
+	if err != nil || len(all) != 2 {
+		t.Fatalf("%d parts, %v", len(all), err)
+	}
+	if all[0].Err != nil || all[0].Set.Len() != 2 || all[0].Set.Counts.Read != 2 {
+		t.Errorf("R1: %v %+v", all[0].Err, all[0].Set)
+	}
+	const want = "f:4:7: z \"x\": expected a number such as 12.4\nf:6:5: y \"q\": expected a number such as 12.4\n2 lines bad, 1 good"
+	if all[1].Set != nil || all[1].Err == nil || all[1].Err.Error() != want {
+		t.Errorf("R2: %v\nwant %s", all[1].Err, want)
+	}
+	if _, err := read(header+a+b, false); err == nil || err.Error() != strings.Replace(want, "1 good", "3 good", 1) {
+		t.Errorf("not apart: %v", err)
+	}
+	if _, err := read(header+a+b+"D,1\n", true); err == nil || !strings.Contains(err.Error(), "\n3 lines bad, 3 good") {
+		t.Errorf("a line of no part: %v", err)
+	}
+}
