@@ -150,7 +150,7 @@ func (p *program) withSources(ctx context.Context, r *reading, list []*input, wo
 	if err := p.settleUnits(&r.measures); err != nil {
 		return err
 	}
-	opt.Transform, opt.Account = r.transform(), r.account
+	opt.Transform, opt.Account = r.transform(), r.account || p.stating
 	if err := p.reduce(r, &opt); err != nil {
 		return err
 	}

@@ -16,6 +16,7 @@ var changesNothing = []string{"threads", "memory", "progress", "quiet", "log", "
 
 // startRecord begins the run record, if one is wanted.
 func (p *program) startRecord(cmd *cobra.Command, w *writing) {
+	p.stating = stating(cmd)
 	if !w.record.set && p.step == nil && !w.statement.set {
 		return
 	}

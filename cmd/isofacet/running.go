@@ -31,6 +31,7 @@ type running struct {
 	args     []string // as given
 	listMost int      // how many readings that are not used are named one by one
 	rec      *record.Record
+	stating  bool          // the arithmetic of levels is wanted for a method statement
 	facts    *method.Facts // for a method statement, once they are known
 	opened   []*input      // every file that is read, in the order of opening
 	again    bool          // a file that was opened before may be read again

@@ -245,6 +245,9 @@ func readingKey(cmd *cobra.Command) string {
 			b.WriteString("\x01" + name + "\x00" + f.Value.String())
 		}
 	}
+	if stating(cmd) {
+		b.WriteString("\x01stating\x00") // with the arithmetic
+	}
 	return b.String()
 }
 

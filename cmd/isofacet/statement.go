@@ -1,13 +1,16 @@
 package main
 
 import (
+	"cmp"
 	"slices"
 	"strings"
 
+	"github.com/spf13/cobra"
+
 	"isofacet/cmd/internal/method"
-	"isofacet/cmd/internal/option"
 	"isofacet/io/outfile"
 	"isofacet/io/readings"
+	"isofacet/io/wells"
 )
 
 // idsMost is how many readings a caption names.
@@ -48,9 +51,38 @@ func (p *program) remember(r *reading, l *loaded) {
 	if f.SameSpot == "" {
 		f.SameSpot = "mean of those that agree"
 	}
-	_, z := l.digits(option.Decimals{})
+	z := l.decimalsZ // as measured: no more digits than that in prose
 	f.ZMin, f.ZMax = number{l.zRange[0], z}.String(), number{l.zRange[1], z}.String()
+	p.rememberValues(f, set, z)
 	p.facts = f
+}
+
+// rememberValues keeps the levels of wells with their arithmetic, if they are few.
+func (p *program) rememberValues(f *method.Facts, set *readings.Set, digits int) {
+	if !f.Groundwater || f.IDs == nil {
+		return
+	}
+	for i := range set.Len() {
+		v := method.Value{ID: set.ID(i), Z: number{set.Z[i], digits}.String()}
+		if w, ok := set.Work(i).(*wells.Work); ok && w.String() != "" {
+			f.Reduced = true
+			v.Work = w.String()
+			if w.Product != "" {
+				f.Floating = append(f.Floating, v.ID)
+			}
+		}
+		f.Values = append(f.Values, v)
+	}
+	slices.SortStableFunc(f.Values, func(a, b method.Value) int { return cmp.Or(cmp.Compare(a.ID, b.ID), cmp.Compare(a.Work, b.Work)) })
+	f.Floating = method.Sorted(f.Floating)
+}
+
+// stating reports whether a method statement is asked for, which wants the arithmetic
+// of levels.
+func stating(cmd *cobra.Command) bool {
+	_, wells := changedFlag(cmd, "wells")
+	_, statement := changedFlag(cmd, "method-statement")
+	return wells && statement
 }
 
 // writeStatement writes the method statement of what was done.

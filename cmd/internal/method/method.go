@@ -22,6 +22,12 @@ type Facts struct {
 	IDs                []string // of the readings used, if they are few
 	NotUsed            []NotUsed
 
+	// Reduced is whether values are measuring point minus depth; Floating are the
+	// wells where product floats, which was added.
+	Reduced  bool
+	Floating []string
+	Values   []Value // of wells, if they are few
+
 	System, HorizontalDatum, VerticalDatum string
 	XYUnit, ZUnit                          string
 
@@ -44,6 +50,10 @@ type Facts struct {
 // NotUsed is a reading that was left out, refused or merged.
 type NotUsed struct{ ID, What, Reason string }
 
+// Value is what was used of a well: the value, and how it came about if it was worked
+// out.
+type Value struct{ ID, Z, Work string }
+
 // Write writes the statement as plain text.
 func (f *Facts) Write(w io.Writer) error {
 	b := bufio.NewWriter(w)
@@ -52,6 +62,18 @@ func (f *Facts) Write(w io.Writer) error {
 	}
 	section("METHOD", f.method())
 	section("CAPTION", f.caption())
+	if len(f.Values) > 0 {
+		fmt.Fprintf(b, "VALUES\n\n")
+	}
+	for _, v := range f.Values {
+		fmt.Fprintf(b, "- %s: %s\n", v.ID, withUnit(v.Z, f.ZUnit))
+		if v.Work != "" {
+			fmt.Fprintf(b, "  %s\n", v.Work)
+		}
+	}
+	if len(f.Values) > 0 {
+		fmt.Fprintf(b, "\n")
+	}
 	fmt.Fprintf(b, "NOT USED\n\n")
 	if len(f.NotUsed) == 0 {
 		fmt.Fprintf(b, "Every reading was used.\n")
@@ -84,6 +106,12 @@ func (f *Facts) method() []string {
 	}
 	if n := len(f.NotUsed); n > 0 {
 		s = append(s, fmt.Sprintf("%s not used; each is listed below with its reason.", were(n, "reading")))
+	}
+	if f.Reduced {
+		s = append(s, "A level is the elevation of the measuring point minus the depth to water.")
+	}
+	if len(f.Floating) > 0 {
+		s = append(s, fmt.Sprintf("Where product floats, its thickness times its specific gravity was added: %s.", strings.Join(f.Floating, ", ")))
 	}
 	if f.SameSpot != "" && f.Merged > 0 {
 		s = append(s, fmt.Sprintf("Where several readings stand at one place, the rule %q applied (%d merged).", f.SameSpot, f.Merged))
@@ -195,7 +223,7 @@ func (f *Facts) missing() []string {
 		add(len(f.Zones) == 0, "which zone the wells tap (a column zone)")
 		add(len(f.Zones) > 1, "one zone: "+strings.Join(f.Zones, ", ")+" are mixed (--only zone=NAME chooses)")
 		add(len(f.IDs) == 0, "the wells' names (a column id)")
-		add(!f.GradientAndArrow, "gradient and direction of flow, with their uncertainty")
+		add(!f.GradientAndArrow, "gradient and direction of flow, with their uncertainty (isofacet flow)")
 		add(f.Inferred == "" && f.Interval != "", "whether any part is inferred (dashed)")
 	} else {
 		add(f.AccuracyRMSE == "", "accuracy, tested against checkpoints (isofacet accuracy)")

@@ -22,14 +22,21 @@ func TestGroundwater(t *testing.T) {
 		Read: 6, Used: 4, Merged: 1, IDs: []string{"MW-1", "MW-2", "MW-3", "MW-4"}, NotUsed: []NotUsed{{"MW-5", "left out", "dry"}, {"MW-6", "merged", "at the place of line 3"}},
 		HorizontalDatum: "NAD 83", VerticalDatum: "NAVD 88", XYUnit: "ft-us", ZUnit: "ft-us",
 		Interval: "0.5", Triangles: 3, ZMin: "403.34", ZMax: "415.63", SameSpot: "mean", Exclusions: "decisions.csv", Inferred: "200", GradientAndArrow: true,
+		Reduced: true, Floating: []string{"MW-2"}, Values: []Value{{"MW-1", "415.63", ""}, {"MW-2", "403.34", "420.00 - 16.99 + 0.40 x 0.83 = 403.342"}},
 	}
 	const want = `METHOD
 
-4 readings of groundwater levels were used, of 6 read from gauging.csv, wells.csv. 2 readings were not used; each is listed below with its reason. Where several readings stand at one place, the rule "mean" applied (1 merged). Decisions to leave readings out are recorded in decisions.csv. The surface between them is made of planes over triangles that join neighbouring readings (Delaunay triangulation) and passes through every reading; it has 3 triangles. It ends at the convex hull of the readings; nothing is drawn outside. Contours at an interval of 0.5 ft-us follow the planes by straight-line interpolation; none was smoothed. Made with isofacet 1.0.
+4 readings of groundwater levels were used, of 6 read from gauging.csv, wells.csv. 2 readings were not used; each is listed below with its reason. A level is the elevation of the measuring point minus the depth to water. Where product floats, its thickness times its specific gravity was added: MW-2. Where several readings stand at one place, the rule "mean" applied (1 merged). Decisions to leave readings out are recorded in decisions.csv. The surface between them is made of planes over triangles that join neighbouring readings (Delaunay triangulation) and passes through every reading; it has 3 triangles. It ends at the convex hull of the readings; nothing is drawn outside. Contours at an interval of 0.5 ft-us follow the planes by straight-line interpolation; none was smoothed. Made with isofacet 1.0.
 
 CAPTION
 
 Contours of groundwater levels, zone shallow, round 2024-Q1. Measured from 2024-03-12T08:10 to 2024-03-12T10:50. 4 values from 403.34 to 415.63 ft-us. Used: MW-1, MW-2, MW-3, MW-4. Contour interval 0.5 ft-us. Dashed where further than 200 ft-us from a reading: inferred. Heights refer to NAVD 88. Horizontal datum NAD 83. Between the readings the surface is straight-line interpolation and may miss what nobody measured. Levels are those of the time stated; seasons, pumping and tides change them. A licensed professional has to review and sign this before it is relied on.
+
+VALUES
+
+- MW-1: 415.63 ft-us
+- MW-2: 403.34 ft-us
+  420.00 - 16.99 + 0.40 x 0.83 = 403.342
 
 NOT USED
 
