@@ -12,6 +12,7 @@ type starts struct {
 	xMin, yMin, perX, perY float64
 	cols, rows             int
 	triangle               []Triangle
+	rim                    []HalfEdge // those without a twin: where lines come in
 }
 
 // verticesPerCell balances the index's memory against the steps of a walk.
@@ -40,6 +41,9 @@ func newStarts(m *Mesh) starts {
 	}
 	for h, e := range m.half {
 		s.triangle[s.cell(m.pos[e.origin])] = HalfEdge(h).Triangle()
+		if e.twin == NoHalfEdge {
+			s.rim = append(s.rim, HalfEdge(h))
+		}
 	}
 	// Empty cells take over a neighbour's: from below in their column, else
 	// from the left.

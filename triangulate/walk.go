@@ -274,10 +274,7 @@ func (w *walker) leave(h HalfEdge) (along, into HalfEdge) {
 // the outline that it crosses inwards, or else at the first vertex on it.
 func (w *walker) fromOutside() {
 	first := NoHalfEdge
-	for h := range HalfEdge(len(w.m.half)) {
-		if w.m.half[h].twin != NoHalfEdge {
-			continue
-		}
+	for _, h := range w.m.starts.rim {
 		o, d := w.side(w.m.Origin(h)), w.side(w.m.Dest(h))
 		if o > 0 && d < 0 && w.sideOf(h, w.a) < 0 && w.sideOf(h, w.b) >= 0 {
 			w.comeIn(h)

@@ -1,6 +1,8 @@
 package overlay
 
 import (
+	"slices"
+
 	"github.com/paulmach/orb"
 
 	"isofacet/triangulate"
@@ -16,7 +18,7 @@ type rim struct {
 }
 
 type rimCrossing struct {
-	x       *walked
+	x       int32 // in the list of walks
 	out, in triangulate.HalfEdge
 	k       int8 // the outer edge
 	done    bool // the piece that begins here has been made
@@ -42,16 +44,22 @@ func (r *rim) lookUp(h triangulate.HalfEdge) int {
 	return -1
 }
 
-// add appends the crossings of outer edge k.
-func (r *rim) add(list []walked, reversed bool, k int8) {
-	for i := range list {
-		if reversed {
-			x := &list[len(list)-1-i]
-			r.of = append(r.of, rimCrossing{x: x, out: x.in, in: x.out, k: k})
-		} else {
-			x := &list[i]
-			r.of = append(r.of, rimCrossing{x: x, out: x.out, in: x.in, k: k})
+// add appends the crossings of outer edge k, those of list from first on.
+func (r *rim) add(list []walked, first int32, reversed bool, k int8) {
+	n := len(r.of)
+	r.of = slices.Grow(r.of, len(list))[:n+len(list)]
+	to := r.of[n:]
+	if reversed {
+		last := len(list) - 1
+		for i := range to {
+			x := &list[last-i]
+			to[i] = rimCrossing{x: first + int32(last-i), out: x.in, in: x.out, k: k}
 		}
+		return
+	}
+	for i := range to {
+		x := &list[i]
+		to[i] = rimCrossing{x: first + int32(i), out: x.out, in: x.in, k: k}
 	}
 }
 
@@ -121,7 +129,7 @@ func (m *meeting) trace(total *totals, t triangulate.Triangle, at *places) bool 
 	r := &m.rim
 	r.of = r.of[:0]
 	for k := range 3 {
-		r.add(m.walks.list[s[k].from:s[k].from+s[k].n], reversed[k], int8(k))
+		r.add(m.walks.list[s[k].from:s[k].from+s[k].n], s[k].from, reversed[k], int8(k))
 	}
 	if len(r.of) == 0 {
 		m.whole(total, triangulate.Triangle(at.of[v[0]]))
@@ -164,11 +172,11 @@ func (m *meeting) whole(total *totals, f triangulate.Triangle) {
 // round adds the piece of f that begins where the rim enters f at crossing start.
 func (m *meeting) round(total *totals, start int, f triangulate.Triangle) {
 	m.poly.begin(&m.p[0], m.inner.least(f))
-	r, poly := &m.rim, &m.poly
+	r, poly, list := &m.rim, &m.poly, m.walks.list
 	for i := start; ; {
 		c := &r.of[i]
 		c.done = true
-		poly.addWalked(c.x)
+		poly.addWalked(&list[c.x])
 		i++
 		k := c.k
 		if i == len(r.of) {
@@ -181,13 +189,13 @@ func (m *meeting) round(total *totals, start int, f triangulate.Triangle) {
 			k = int8(after[k])
 			poly.add(&m.p[k], 0, 0, m.d[k])
 		}
-		poly.addWalked(c.x)
+		poly.addWalked(&list[c.x])
 		h := c.out
 		for {
 			if i = r.lookUp(h); i >= 0 {
 				break
 			}
-			h = m.inner.mesh.Next(h)
+			h += nextBy[h-h.Triangle().HalfEdge(0)]
 			v := m.inner.mesh.Origin(h)
 			poly.add(&m.inner.pos[v], 0, 0, m.inside(v, h))
 		}
@@ -197,6 +205,9 @@ func (m *meeting) round(total *totals, start int, f triangulate.Triangle) {
 	}
 	m.end(total, f)
 }
+
+// nextBy leads from a half-edge of a triangle to the next: without a branch.
+var nextBy = [3]triangulate.HalfEdge{1, 1, -2}
 
 // inside returns the difference at inner vertex v inside the outer triangle, and notes
 // it the first time; h starts there.
