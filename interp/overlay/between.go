@@ -131,9 +131,9 @@ func (t *totals) addPiece(poly *polygon, slantOuter, slantInner float64) {
 	t.pieces++
 	first, signs := poly.survey()
 	if signs == somePos|someNeg {
-		pos, neg, zero2 := poly.splitFan(first)
-		t.add(&t.pos, pos, slantOuter, slantInner)
-		t.add(&t.neg, neg, slantOuter, slantInner)
+		to, zero2 := poly.splitFan(first)
+		t.add(&t.pos, to[0], slantOuter, slantInner)
+		t.add(&t.neg, to[1], slantOuter, slantInner)
 		t.add(&t.zero, share{zero2, 0}, slantOuter, slantInner)
 		return
 	}

@@ -1,5 +1,7 @@
 package overlay
 
+import "math"
+
 // share is what a polygon contributes to one of the two sides of zero.
 type share struct {
 	area2   float64 // twice its plan area
@@ -29,9 +31,9 @@ func (p *polygon) fan(first int) (area2, volume6 float64) {
 	return area2, volume6
 }
 
-// splitFan returns what the polygon contributes where its differences are positive,
-// negative, and zero throughout (only an area).
-func (p *polygon) splitFan(first int) (pos, neg share, zero2 float64) {
+// splitFan returns what the polygon contributes where its differences are positive, to
+// the one, negative, to the other, and zero throughout (only an area).
+func (p *polygon) splitFan(first int) (to [2]share, zero2 float64) {
 	o := &p.at[first]
 	i := p.after(first)
 	q := &p.at[i]
@@ -40,10 +42,10 @@ func (p *polygon) splitFan(first int) (pos, neg share, zero2 float64) {
 		i = p.after(i)
 		q = &p.at[i]
 		cx, cy, c := q.x-o.x, q.y-o.y, q.d
-		split(float64(bx*cy)-float64(by*cx), o.d, b, c, &pos, &neg, &zero2)
+		split(float64(bx*cy)-float64(by*cx), o.d, b, c, &to, &zero2)
 		bx, by, b = cx, cy, c
 	}
-	return pos, neg, zero2
+	return to, zero2
 }
 
 func (p *polygon) after(i int) int {
@@ -68,56 +70,62 @@ func (p *polygon) after(i int) int {
 // of one sign. Or zero runs through one corner and divides the edge across in the
 // ratio of its ends. Nothing here takes one sign for the other, so that negative
 // differences give the same bits on the other side.
-func split(d, h0, h1, h2 float64, pos, neg *share, zero2 *float64) {
-	hasPos, hasNeg := h0 > 0 || h1 > 0 || h2 > 0, h0 < 0 || h1 < 0 || h2 < 0
-	switch {
-	case hasPos && !hasNeg:
-		pos.area2 += d
-		pos.volume6 += float64(d * (h0 + h1 + h2))
-		return
-	case hasNeg && !hasPos:
-		neg.area2 += d
-		neg.volume6 += float64(d * -(h0 + h1 + h2))
-		return
-	case !hasNeg:
-		*zero2 += d
+func split(d, h0, h1, h2 float64, to *[2]share, zero2 *float64) {
+	if h0 == 0 || h1 == 0 || h2 == 0 {
+		splitZero(d, h0, h1, h2, to, zero2)
 		return
 	}
-	// Turn a corner at zero, else the corner that is alone, to the front.
-	a, b, c := h0, h1, h2
-	switch {
-	case h1 == 0 || h0 != 0 && h2 != 0 && (h1 > 0) != (h0 > 0) && (h1 > 0) != (h2 > 0):
-		a, b, c = h1, h2, h0
-	case h2 == 0 || h0 != 0 && (h2 > 0) != (h0 > 0) && (h2 > 0) != (h1 > 0):
-		a, b, c = h2, h0, h1
-	}
-	alone, other := pos, neg
-	if a < 0 || a == 0 && b < 0 {
-		alone, other = neg, pos
-	}
-	if a == 0 {
-		// b is on the side of alone, c on the other.
-		b, c = size(b), size(c)
-		rb, rc := b/(b+c), c/(b+c)
-		alone.area2 += float64(d * rb)
-		alone.volume6 += float64(float64(d*rb) * b)
-		other.area2 += float64(d * rc)
-		other.volume6 += float64(float64(d*rc) * c)
+	negative := oneIf(h0 < 0) | oneIf(h1 < 0)<<1 | oneIf(h2 < 0)<<2
+	k := int(alone[negative])
+	if k < 0 {
+		s := &to[negative&1]
+		s.area2 += d
+		s.volume6 += float64(d * size(h0+h1+h2))
 		return
 	}
-	a, b, c = size(a), size(b), size(c)
+	h := [5]float64{size(h0), size(h1), size(h2), size(h0), size(h1)}
+	a, b, c := h[k], h[k+1], h[k+2]
 	s, s1 := a/(a+b), b/(a+b)
 	u, u1 := a/(a+c), c/(a+c)
 	su, q := float64(s*u), float64(s1*u)
-	alone.area2 += float64(d * su)
-	alone.volume6 += float64(d * float64(su*a))
-	other.area2 += float64(d * (u1 + q))
-	other.volume6 += float64(d * (float64(u1*(b+c)) + float64(q*b)))
+	side := negative >> k & 1
+	to[side].area2 += float64(d * su)
+	to[side].volume6 += float64(d * float64(su*a))
+	to[side^1].area2 += float64(d * (u1 + q))
+	to[side^1].volume6 += float64(d * (float64(u1*(b+c)) + float64(q*b)))
 }
 
-func size(x float64) float64 {
-	if x < 0 {
-		return -x
+// alone is the corner that is alone on its side, by bits that tell which are negative.
+var alone = [8]int8{-1, 0, 1, 2, 2, 1, 0, -1}
+
+// splitZero is split where a difference is zero.
+func splitZero(d, h0, h1, h2 float64, to *[2]share, zero2 *float64) {
+	hasPos, hasNeg := h0 > 0 || h1 > 0 || h2 > 0, h0 < 0 || h1 < 0 || h2 < 0
+	switch {
+	case hasPos && hasNeg:
+	case hasPos || hasNeg:
+		s := &to[oneIf(hasNeg)]
+		s.area2 += d
+		s.volume6 += float64(d * size(h0+h1+h2))
+		return
+	default:
+		*zero2 += d
+		return
 	}
-	return x
+	// One corner at zero, the others on either side.
+	b, c := h1, h2
+	if h1 == 0 {
+		b, c = h2, h0
+	} else if h2 == 0 {
+		b, c = h0, h1
+	}
+	side := oneIf(b < 0)
+	b, c = size(b), size(c)
+	rb, rc := b/(b+c), c/(b+c)
+	to[side].area2 += float64(d * rb)
+	to[side].volume6 += float64(float64(d*rb) * b)
+	to[side^1].area2 += float64(d * rc)
+	to[side^1].volume6 += float64(float64(d*rc) * c)
 }
+
+func size(x float64) float64 { return math.Abs(x) }

@@ -136,10 +136,11 @@ func (p *polygon) chain(c *[3]*corner, j int) {
 // begin empties the polygon, relative now to the smaller one of a and b.
 func (p *polygon) begin(a, b *orb.Point) {
 	p.n = 0
-	p.origin = *a
-	if before(b, a) {
-		p.origin = *b
+	second := oneIf(b[0] < a[0])
+	if a[0] == b[0] {
+		second = oneIf(b[1] < a[1])
 	}
+	p.origin = *[2]*orb.Point{a, b}[second] // which is as likely as not
 }
 
 func (p *polygon) add(from *orb.Point, offX, offY, d float64) {
