@@ -35,13 +35,19 @@
 //
 // # Method
 //
-// Every triangle of the one surface gathers the triangles of the other that it
-// meets: beginning where one of its corners lies it goes over edges that meet it.
-// The signs of all corners of two triangles with respect to each other's edges say
-// what polygon they have in common. A crossing of two edges is computed from the
-// four ends in (x, y) order, whichever triangle asks, its height on each edge from
-// that edge's ends. A polygon's terms are computed relative to its smallest point
-// and added exactly (exact.Sum).
+// The edges of the one surface are walked straight through the other. A triangle whose
+// corners lie inside triangles of the other, with no vertex on the lines of its edges,
+// has its pieces traced: from each crossing along its rim to the next, and inside along
+// the edges crossed.
+//
+// Any other triangle gathers the triangles of the other that it meets: beginning where
+// one of its corners lies it goes over edges that meet it. The signs of all corners of
+// two triangles with respect to each other's edges say what polygon they have in common.
+//
+// Both ways make the same numbers, bit for bit. A crossing of two edges is computed
+// from the four ends in (x, y) order, whichever triangle asks, its height on each edge
+// from that edge's ends. A polygon's terms are computed relative to its smallest point
+// and added exactly (exact.Tally).
 //
 // Time O(triangles + crossings of edges), shared out to all cores. Where one
 // surface reaches beyond the other's hull, O(edges of one hull x edges of the
