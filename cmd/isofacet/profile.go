@@ -183,7 +183,9 @@ func (c *profileCommand) loadSurfaces(ctx context.Context, job *profiling, list 
 			r = &plain
 			c.report.Note("also: " + in[0].Name)
 		}
+		c.again = i > 0 // tables of wells and of status words hold for all
 		l, err := c.load(ctx, r, in)
+		c.again = false
 		if err != nil {
 			return err
 		}

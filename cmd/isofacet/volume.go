@@ -246,7 +246,8 @@ func (c *volumeCommand) check(cmd *cobra.Command, dests []*destination) error {
 	case c.toe.values == nil && c.toeBase.text != "":
 		return usage("name the ring with --toe", "--toe-base without --toe: expected a ring that it is the base of")
 	case c.toe.values != nil && (maps || c.sections.IsSet() || c.simulate.text != ""):
-		return usage("write the surface within the ring, and the base, as files and compare them", "--toe with maps, --sections or --simulate: expected --from and --to")
+		return usage("a base through the ring is made anew for each ring and is no surface over the site, so maps, sections and draws do not know it; --sigma gives the uncertainty in closed form; for the rest compare --from level=Z --to FILE --inside the ring, or with the ground before as --from",
+			"--toe with maps, --sections or --simulate: expected --from and --to")
 	case c.toe.values == nil && !c.from.set && !(stagesOnly && c.stageStep.IsSet()):
 		return usage("isofacet volume --help has examples; a stage table alone is --stage-step D --out stages=FILE", "--from is missing: expected the surface before, such as --from FILE or --from level=100")
 	case levels:

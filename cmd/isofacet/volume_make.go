@@ -93,7 +93,11 @@ func (v *volumes) make(ctx context.Context, out *outputs) error {
 			return err
 		}
 		v.xy, v.z = max(v.xy, s.xy+2), max(v.z, s.z+2)
-		v.report.Note(s.option+": "+s.details, "side", s.option, "kind", s.kind)
+		text := s.option + ": " + s.details
+		if s.ground.Surface != nil {
+			text += fmt.Sprintf(", area %v", number{s.ground.Surface.Area(), v.decimals.Resolve(s.xy + 2)})
+		}
+		v.report.Note(text, "side", s.option, "kind", s.kind)
 	}
 	if v.from != nil {
 		if err := v.agreeSides(&v.reading, v.from, v.to); err != nil {

@@ -176,7 +176,7 @@ func (p *program) readSide(ctx context.Context, r *reading, s *surfaceSide, noDa
 	if m.NumTriangles() == 0 {
 		return status.With(status.WrongData, fmt.Errorf("%s: no triangle: expected a surface", s.text), "a raster needs squares of four nodes with values")
 	}
-	s.details = fmt.Sprintf("%s, %s, area %v", s.text, counted(m.NumTriangles(), "triangle"), number{s.ground.Surface.Area(), s.xy + 2})
+	s.details = s.text + ", " + counted(m.NumTriangles(), "triangle")
 	return nil
 }
 

@@ -75,9 +75,9 @@ func (v *volumes) figuresText(to io.Writer) error {
 		fmt.Fprintf(b, "%-12s "+format+"\n", append([]any{subject}, values...)...)
 	}
 	if v.from != nil {
-		line("from", "%s", v.from.details)
+		line("from", "%s%s", v.from.details, areaOf(v.result.From))
 	}
-	line("to", "%s", v.to.details)
+	line("to", "%s%s", v.to.details, areaOf(v.result.To))
 	line("units", "volumes %s, areas %s", v.result.VolumeUnit, v.result.AreaUnit)
 	for i := range v.result.Regions {
 		v.regionText(line, &v.result.Regions[i])
@@ -99,6 +99,14 @@ func (v *volumes) figuresText(to io.Writer) error {
 		line("warning", "%s", w.Text)
 	}
 	return b.Flush()
+}
+
+// areaOf tells the area of a surface, in the unit of all areas.
+func areaOf(s *sideResult) string {
+	if s == nil || s.Area == nil {
+		return ""
+	}
+	return fmt.Sprintf(", area %v", *s.Area)
 }
 
 // slopes are the areas on the slopes of both surfaces.
@@ -149,13 +157,17 @@ func (v *volumes) regionText(line func(string, string, ...any), r *regionResult)
 	if r.Same.v > 0 {
 		line("same", "%v of area without any difference", r.Same)
 	}
-	text := fmt.Sprintf("%v of area by both", r.Covered)
+	text, within := fmt.Sprintf("%v of area by both", r.Covered), ""
+	if r.ShareOf != nil {
+		text += fmt.Sprintf(", %s of the region", percent(r.ShareOf))
+		within = " in the region"
+	}
 	for _, s := range []struct {
 		share *number
 		of    string
-	}{{r.ShareOf, "the region"}, {r.ShareOfFrom, "from"}, {r.ShareOfTo, "to"}} {
+	}{{r.ShareOfFrom, "before"}, {r.ShareOfTo, "after"}} {
 		if s.share != nil {
-			text += fmt.Sprintf(", %s of %s", percent(s.share), s.of)
+			text += fmt.Sprintf(", %s of the surface %s%s", percent(s.share), s.of, within)
 		}
 	}
 	line("covered", "%s", text)

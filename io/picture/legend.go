@@ -119,6 +119,7 @@ func (m *Map) samples(top float64) {
 		sample(`stroke="`+trailInk+`" stroke-width="`+mm(trailWidth)+`"`, "flow line")
 	}
 	if m.hasArrow {
+		m.arrowHead(x+12, top+2.2+float64(float64(row)*legendRow), 1, 0, 1.6, indexInk)
 		sample(`stroke="`+indexInk+`" stroke-width=".25"`, "direction of flow")
 	}
 	if m.report.Dots > 0 {

@@ -72,7 +72,7 @@ func (c *rose) draw() {
 	}
 	top := marginTop + float64(float64(len(titles))*1.3*titleSize) + 6
 	c.x, c.y = width/2, top+roseRadius
-	list := c.y + roseRadius + 8
+	list := c.y + roseRadius + 12
 	height := list + float64(float64(len(c.arrows))*roseRows) + float64(float64(len(notes)+1)*row) + marginFoot
 	ws, hs := mm(width), mm(height)
 	c.put(`<svg xmlns="http://www.w3.org/2000/svg" width="`, ws, `mm" height="`, hs, `mm" viewBox="0 0 `, ws, " ", hs, `" font-family="sans-serif" fill="none">`, "\n")
@@ -90,6 +90,7 @@ func (c *rose) draw() {
 	for i := range c.arrows {
 		c.arrow(&c.arrows[i], i)
 	}
+	c.numbers()
 	for i, a := range c.arrows {
 		y := list + float64(float64(i)*roseRows)
 		ink := profileInks[i%len(profileInks)]
@@ -154,7 +155,37 @@ func (c *rose) arrow(a *RoseArrow, i int) {
 	c.put(`<path d="M`, mm(c.x), " ", mm(c.y), "L", mm(x), " ", mm(y), `" stroke="`, ink, `" stroke-width=".6"`, faint(a.Faint), `><title>`, escape(a.Name), "</title></path>\n")
 	east, north := turn(a.Azimuth)
 	c.arrowHead(x, y, east, north, 2.6, ink)
-	c.words(x+float64(2.4*east), y-float64(2.4*north)+.36*levelSize, levelSize, "middle", strconv.Itoa(i+1))
+}
+
+// numbers writes the number of each arrow beyond its tip, above all arrows; arrows
+// that end at nearly one place share one text.
+func (c *rose) numbers() {
+	type label struct {
+		x, y float64
+		text string
+	}
+	var all []label
+next:
+	for i := range c.arrows {
+		a := &c.arrows[i]
+		x, y := c.at(a.Azimuth, a.Size)
+		east, north := turn(a.Azimuth)
+		x, y = x+float64(2.4*east), y-float64(2.4*north)
+		for k := range all {
+			l := &all[k]
+			if math.Abs(l.x-x) < 1.2*levelSize && math.Abs(l.y-y) < levelSize {
+				l.text += ", " + strconv.Itoa(i+1)
+				continue next
+			}
+		}
+		all = append(all, label{x, y, strconv.Itoa(i + 1)})
+	}
+	for _, l := range all {
+		c.put(`<g stroke="#fff" stroke-width=".8" stroke-linejoin="round">`, "\n")
+		c.words(l.x, l.y+.36*levelSize, levelSize, "middle", l.text)
+		c.put("</g>\n")
+		c.words(l.x, l.y+.36*levelSize, levelSize, "middle", l.text)
+	}
 }
 
 // arrowHead draws the head of an arrow whose tip is at (x, y), in the direction of a unit vector.
