@@ -326,7 +326,7 @@ func (j *joiner) heightOn(seg int32, p orb.Point) float64 {
 	if exact.CompareXY(j.pts[a], j.pts[b]) > 0 {
 		a, b = b, a
 	}
-	return alongEdge(j.pts[a], j.pts[b], j.z[a], j.z[b], p)
+	return alongEdge(&j.pts[a], &j.pts[b], j.z[a], j.z[b], &p)
 }
 
 // settle gives the vertices made at crossings their heights.

@@ -22,10 +22,7 @@ func (s *Surface) Gradient(t triangulate.Triangle) (dzdx, dzdy float64) {
 // projections returns twice the areas of the triangle in (z, y), (x, z) and (x, y).
 func (s *Surface) projections(i, j, k triangulate.Vertex) (zy, xz, xy float64) {
 	pi, pj, pk := &s.pos[i], &s.pos[j], &s.pos[k]
-	zi, zj, zk := s.z[i], s.z[j], s.z[k]
-	return exact.Area2(zi, pi[1], zj, pj[1], zk, pk[1]),
-		exact.Area2(pi[0], zi, pj[0], zj, pk[0], zk),
-		exact.Area2(pi[0], pi[1], pj[0], pj[1], pk[0], pk[1])
+	return exact.Views2(pi[0], pi[1], s.z[i], pj[0], pj[1], s.z[j], pk[0], pk[1], s.z[k])
 }
 
 // Slope returns the rise over run of a plane with the gradient (dzdx, dzdy). It

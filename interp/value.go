@@ -44,7 +44,7 @@ func (s *Surface) ValueOnEdge(a, b triangulate.Vertex, p orb.Point) float64 {
 	if before(&s.pos[b], &s.pos[a]) {
 		a, b = b, a
 	}
-	return alongEdge(s.pos[a], s.pos[b], s.z[a], s.z[b], p)
+	return alongEdge(&s.pos[a], &s.pos[b], s.z[a], s.z[b], &p)
 }
 
 // alongEdge is ValueOnEdge for ends in order.
@@ -54,8 +54,8 @@ func (s *Surface) ValueOnEdge(a, b triangulate.Vertex, p orb.Point) float64 {
 // t dz is exact in two parts; what is left out or rounded beside it, tails of
 // tails, is some 10e² of dz. Then za + t dz is one exact sum of two parts, and
 // their tails are added before the one rounding to the result.
-func alongEdge(pa, pb orb.Point, za, zb float64, p orb.Point) float64 {
-	axis := edgeAxis(pa, pb)
+func alongEdge(pa, pb *orb.Point, za, zb float64, p *orb.Point) float64 {
+	axis := edgeAxis(*pa, *pb)
 	d, dl := twoDiff(pb[axis], pa[axis])
 	n, nl := twoDiff(p[axis], pa[axis])
 	dz, dzl := twoDiff(zb, za)

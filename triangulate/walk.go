@@ -98,11 +98,15 @@ func (m *Mesh) showing(h HalfEdge) HalfEdge {
 }
 
 // side is the side of the line a→b on which v lies.
-func (w *walker) side(v Vertex) int { return exact.Orient(w.a, w.b, w.m.pos[v]) }
+func (w *walker) side(v Vertex) int {
+	p := &w.m.pos[v]
+	return exact.OrientXY(w.a[0], w.a[1], w.b[0], w.b[1], p[0], p[1])
+}
 
 // sideOf is the side of half-edge h on which p lies; its triangle is left.
 func (w *walker) sideOf(h HalfEdge, p orb.Point) int {
-	return exact.Orient(w.m.pos[w.m.Origin(h)], w.m.pos[w.m.Dest(h)], p)
+	o, d := &w.m.pos[w.m.Origin(h)], &w.m.pos[w.m.Dest(h)]
+	return exact.OrientXY(o[0], o[1], d[0], d[1], p[0], p[1])
 }
 
 // toward tells whether v, on the line through a and b, lies on b's side of a.

@@ -190,8 +190,13 @@ func (t *Tracer) leg(al *Alignment, k int, from, to triangulate.Location) {
 
 // add adds an event.
 func (t *Tracer) add(run *ruler, at orb.Point, z float64, place triangulate.Place, into triangulate.Triangle, along triangulate.HalfEdge) {
-	t.events = append(t.events, event{Point{Station: run.station(at), At: at, Z: z, Grade: math.NaN(), Place: place, Ahead: Gap}, into, along})
-	e := &t.events[len(t.events)-1]
+	// Filled in place: a literal is made elsewhere and copied.
+	n := len(t.events)
+	t.events = slices.Grow(t.events, 1)[:n+1]
+	e := &t.events[n]
+	e.Station, e.At, e.Z, e.Grade = run.station(at), at, z, math.NaN()
+	e.Place, e.Ahead, e.Bend = place, Gap, false
+	e.into, e.along = into, along
 	switch {
 	case into != triangulate.NoTriangle:
 		dzdx, dzdy := t.s.Gradient(into)

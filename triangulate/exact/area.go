@@ -41,6 +41,20 @@ func Area2(ax, ay, bx, by, cx, cy float64) float64 {
 	return k
 }
 
+// Views2 returns twice the signed areas of a triangle in space as it is seen in
+// (z, y), in (x, z) and in (x, y): the bits that Area2 gives of each, in less time,
+// as the three share their differences.
+func Views2(ax, ay, az, bx, by, bz, cx, cy, cz float64) (zy, xz, xy float64) {
+	ux, uy, uz := bx-ax, by-ay, bz-az
+	vx, vy, vz := cx-ax, cy-ay, cz-az
+	if diffTail(bx, ax, ux) != 0 || diffTail(by, ay, uy) != 0 || diffTail(bz, az, uz) != 0 ||
+		diffTail(cx, ax, vx) != 0 || diffTail(cy, ay, vy) != 0 || diffTail(cz, az, vz) != 0 {
+		return Area2(az, ay, bz, by, cz, cy), Area2(ax, az, bx, bz, cx, cz), Area2(ax, ay, bx, by, cx, cy)
+	}
+	// Without tails Area2 stops here.
+	return differenceOfProducts(uz, vy, uy, vz), differenceOfProducts(ux, vz, uz, vx), differenceOfProducts(ux, vy, uy, vx)
+}
+
 // differenceOfProducts returns ab - cd with a relative error below 2^-52 (Kahan).
 func differenceOfProducts(a, b, c, d float64) float64 {
 	p := float64(c * d)
