@@ -28,17 +28,9 @@ func (p *program) remember(r *reading, l *loaded) {
 		Boundary: l.drawn.rings.boundaries, Voids: l.drawn.rings.voids,
 		Exclusions: r.exclude.text,
 	}
-	texts := func(role readings.Role) []string {
-		var all []string
-		if set.Has(role) {
-			for i := range set.Len() {
-				all = append(all, set.Text(role, i))
-			}
-		}
-		return all
-	}
-	f.Rounds, f.Zones = method.Sorted(texts(readings.Round)), method.Sorted(texts(readings.Zone))
-	if ids := method.Sorted(texts(readings.ID)); len(ids) <= idsMost {
+	f.Rounds, _ = distinct(set, readings.Round, set.Len())
+	f.Zones, _ = distinct(set, readings.Zone, set.Len())
+	if ids, few := distinct(set, readings.ID, idsMost); few {
 		f.IDs = ids
 	}
 	if set.Has(readings.Time) {
@@ -55,6 +47,27 @@ func (p *program) remember(r *reading, l *loaded) {
 	f.ZMin, f.ZMax = number{l.zRange[0], z}.String(), number{l.zRange[1], z}.String()
 	p.rememberValues(f, set, z)
 	p.facts = f
+}
+
+// distinct returns the texts that readings have in a role, sorted, unless there are more
+// than most: a survey of a million shots is not listed, nor looked through.
+func distinct(set *readings.Set, role readings.Role, most int) (texts []string, few bool) {
+	if !set.Has(role) {
+		return nil, true
+	}
+	seen, last := map[string]bool{}, ""
+	for i := range set.Len() {
+		text := set.Text(role, i)
+		if text == last || seen[text] {
+			continue
+		}
+		if len(seen) == most {
+			return nil, false
+		}
+		seen[text], last = true, text
+		texts = append(texts, text)
+	}
+	return method.Sorted(texts), true
 }
 
 // rememberValues keeps the levels of wells with their arithmetic, if they are few.
