@@ -40,13 +40,26 @@ func full(files []*raw) string {
 // to stand in the brief table.
 const briefSets = 3
 
+// distributions are the columns of the table for all.
+var distributions = []string{"uniform", "clustered", "scanlines", "survey", "unit-lattice", "lattice-0.1m", "circles"}
+
+// column is the distribution that a result was measured on, on two cores if that is
+// said; "" for other sets.
+func column(r *result) string {
+	set := strings.TrimSuffix(r.set, ", workers=2")
+	if slices.Contains(distributions, set) {
+		return set
+	}
+	return ""
+}
+
 // brief writes one table for all: the operations that were measured at the
 // size on several distributions, and a column for each distribution.
 func brief(files []*raw, size string) string {
 	room := func(r *result) string { return r.op + " (`" + r.pkg + "`)" }
 	var all []*result
 	for _, f := range files {
-		all = append(all, pick(f.results, func(r *result) bool { return r.size == size })...)
+		all = append(all, pick(f.results, func(r *result) bool { return r.size == size && column(r) != "" })...)
 	}
 	all = pick(all, func(r *result) bool {
 		return len(pick(all, func(o *result) bool { return room(o) == room(r) })) >= briefSets
@@ -54,7 +67,7 @@ func brief(files []*raw, size string) string {
 	if len(all) == 0 {
 		return ""
 	}
-	ops, sets := distinct(all, room), distinct(all, func(r *result) string { return r.set })
+	ops, sets := distinct(all, room), distinct(all, column)
 	var b strings.Builder
 	b.WriteString("| " + heading(size) + " |")
 	for _, s := range sets {
@@ -67,7 +80,7 @@ func brief(files []*raw, size string) string {
 		for _, s := range sets {
 			text := ""
 			for _, r := range all {
-				if room(r) == op && r.set == s {
+				if room(r) == op && column(r) == s {
 					m, spread, _ := r.median("ns/op")
 					text, widest = duration(m), max(widest, spread)
 				}
