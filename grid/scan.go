@@ -47,33 +47,11 @@ func newScan(g *Grid, s *interp.Surface, show Show) *scan {
 	}
 	f.x0, f.perX = f.xs[0], 1/g.Spec.CellX.Float64()
 	f.y0, f.perY = f.ys[0], 1/g.Spec.CellY.Float64()
-	bound := boundOf(f.pos)
+	bound := s.Bound()
 	f.tolU = tolerance(f.xs, bound.Min[0], bound.Max[0], f.perX)
 	f.tolV = tolerance(f.ys, bound.Min[1], bound.Max[1], f.perY)
 	f.moderate = math.Abs(bound.Min[0]-f.x0)*f.perX < 1<<50 && math.Abs(bound.Max[0]-f.x0)*f.perX < 1<<50
 	return f
-}
-
-// boundOf is orb's Bound, which copies at every point, five times as fast.
-func boundOf(pos []orb.Point) orb.Bound {
-	if len(pos) == 0 {
-		return orb.MultiPoint(pos).Bound()
-	}
-	x0, y0, x1, y1 := pos[0][0], pos[0][1], pos[0][0], pos[0][1]
-	for i := range pos {
-		x, y := pos[i][0], pos[i][1]
-		if x < x0 {
-			x0 = x
-		} else if x > x1 {
-			x1 = x
-		}
-		if y < y0 {
-			y0 = y
-		} else if y > y1 {
-			y1 = y
-		}
-	}
-	return orb.Bound{Min: orb.Point{x0, y0}, Max: orb.Point{x1, y1}}
 }
 
 // tolerance bounds, in cells, the rounding in a place's u (or v) and in that of a

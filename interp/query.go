@@ -78,7 +78,7 @@ func (w *walker) visit(places []orb.Point, order []uint32, samples []Sample) {
 
 // visitOrder returns the indices of places along a Hilbert curve over the mesh.
 func (s *Surface) visitOrder(places []orb.Point, workers int) []uint32 {
-	curve := newHilbert(s.bound())
+	curve := newHilbert(s.Bound())
 	keys := make([]uint64, len(places))
 	var wg sync.WaitGroup
 	for w := range workers {
@@ -98,8 +98,9 @@ func (s *Surface) visitOrder(places []orb.Point, workers int) []uint32 {
 	return order
 }
 
-// bound returns the smallest rectangle around the vertices.
-func (s *Surface) bound() orb.Bound {
+// Bound returns the smallest rectangle around the vertices, in time O(vertices); that of
+// nothing without any.
+func (s *Surface) Bound() orb.Bound {
 	if len(s.pos) == 0 {
 		return orb.Bound{}
 	}

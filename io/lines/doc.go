@@ -62,9 +62,4 @@
 // Linear, but for sorting the lengths of a line that has a long segment. Text costs
 // about as much again as parsing its rows; without heights at every row it is
 // parsed twice. Memory: the source, and 28 bytes a vertex; 44 with names of points.
-//
-// # Papers
-//
-// R. A. Wagner and M. J. Fischer, The string-to-string correction problem, JACM
-// 1974: the nearest key that a code table knows.
 package lines

@@ -11,6 +11,7 @@ import (
 	"github.com/pelletier/go-toml/v2"
 	"github.com/pelletier/go-toml/v2/unstable"
 
+	"isofacet/io/nearword"
 	"isofacet/io/readings"
 )
 
@@ -209,33 +210,10 @@ func nearest(word string, known []string) string {
 	best, fewest := "", 0
 	for _, k := range known {
 		// A key may lack the name of its table.
-		d := min(changes(word, k), changes(word, k[strings.LastIndexByte(k, '.')+1:]))
+		d := min(nearword.Distance(word, k), nearword.Distance(word, k[strings.LastIndexByte(k, '.')+1:]))
 		if best == "" || d < fewest {
 			best, fewest = k, d
 		}
 	}
 	return best
-}
-
-// changes counts the characters to insert, delete or replace that make b of a
-// (Wagner & Fischer 1974).
-func changes(a, b string) int {
-	a = a[:min(len(a), 64)]
-	row := make([]int, len(b)+1)
-	for j := range row {
-		row[j] = j
-	}
-	for i := range len(a) {
-		diagonal := row[0]
-		row[0] = i + 1
-		for j := range len(b) {
-			cost := diagonal
-			if a[i] != b[j] {
-				cost++
-			}
-			diagonal = row[j+1]
-			row[j+1] = min(cost, row[j]+1, row[j+1]+1)
-		}
-	}
-	return row[len(b)]
 }

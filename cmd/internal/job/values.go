@@ -5,6 +5,8 @@ import (
 	"strings"
 
 	"github.com/pelletier/go-toml/v2/unstable"
+
+	"isofacet/io/nearword"
 )
 
 // values returns what a key is set to as the command line would have it.
@@ -114,33 +116,10 @@ func quoted(words []string) string {
 func Nearest(word string, known []string) string {
 	best, fewest := "", 0
 	for _, k := range known {
-		d := changes(word, k)
+		d := nearword.Distance(word, k)
 		if best == "" || d < fewest || d == fewest && k < best {
 			best, fewest = k, d
 		}
 	}
 	return best
-}
-
-// changes counts the letters to insert, delete or replace that make b of a (Wagner
-// & Fischer 1974).
-func changes(a, b string) int {
-	a = a[:min(len(a), 64)]
-	row := make([]int, len(b)+1)
-	for j := range row {
-		row[j] = j
-	}
-	for i := range len(a) {
-		diagonal := row[0]
-		row[0] = i + 1
-		for j := range len(b) {
-			cost := diagonal
-			if a[i] != b[j] {
-				cost++
-			}
-			diagonal = row[j+1]
-			row[j+1] = min(cost, row[j]+1, row[j+1]+1)
-		}
-	}
-	return row[len(b)]
 }
